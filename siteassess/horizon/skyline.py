@@ -1,0 +1,106 @@
+"""The skyline as seen from the antenna: what hides the sky, obstacle by obstacle."""
+
+from dataclasses import dataclass
+from typing import Literal
+
+import numpy as np
+from numpy.typing import NDArray
+
+__all__ = ["GENERAL_SKYLINE", "Obstacle", "Outline", "Skyline"]
+
+FloatArray = NDArray[np.float64]
+
+GENERAL_SKYLINE = "general skyline"  # name of the unlabelled rows of a survey
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Obstacle:
+    """One obstacle, as break points seen from the antenna's phase centre.
+
+    Attributes
+    ----------
+    name : str
+        Label of the survey, or `GENERAL_SKYLINE`.
+    cover : str
+        "solid" or "foliage".
+    leaf : str
+        "in-leaf", "leafless" or "evergreen"; used for foliage.
+    azimuth_deg : array, shape (point,)
+        Ascending and unwrapped: the first lies in 0 <= azimuth < 360, the last may pass 360 (at most first + 360).
+        Equal neighbours are a vertical edge.
+    elevation_deg : array, shape (point,)
+        Apparent elevation of the upper edge.
+    underside_deg : array, shape (point,), or None
+        Lower edge of an obstacle that hangs free; None when it stands on the ground.
+    distance_m : array, shape (point,), or None
+        Slant distance from the antenna's phase centre to the upper edge; None when it is not known.
+        NaN where single points of the general skyline carry none.
+    depth_m : array, shape (point,), or None
+        Path through leaves; for foliage only.
+    straight_in_space : bool
+        True: neighbouring points are joined by arcs of great circles; False: linearly in azimuth and elevation.
+    width_m : float or None
+        Width of a pole or rod given as one row (its two sides are already in `azimuth_deg`).
+    source : str
+        Name of the survey file.
+    """
+
+    name: str
+    cover: Literal["solid", "foliage"]
+    leaf: Literal["in-leaf", "leafless", "evergreen"] = "in-leaf"
+    azimuth_deg: FloatArray
+    elevation_deg: FloatArray
+    underside_deg: FloatArray | None = None
+    distance_m: FloatArray | None = None
+    depth_m: FloatArray | None = None
+    straight_in_space: bool = False
+    width_m: float | None = None
+    source: str = ""
+
+    @property
+    def hangs_free(self) -> bool:
+        """Whether open sky lies below it."""
+        return self.underside_deg is not None
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Outline:
+    """The upper envelope of everything solid that stands on the ground, as pieces in ascending azimuth.
+
+    Attributes
+    ----------
+    start_deg, end_deg : array, shape (piece,)
+        Azimuths of the piece, 0 <= start < end <= 360. The pieces cover the circle without gap or overlap.
+    obstacle : integer array, shape (piece,)
+        Index in `Skyline.obstacles` of what forms the outline there; -1 where nothing does.
+    start_elevation_deg, end_elevation_deg : array, shape (piece,)
+        Elevation of the outline at both ends, -90 where nothing forms it.
+    straight_in_space : boolean array, shape (piece,)
+        Arc of a great circle (True) or linear in azimuth and elevation (False).
+    """
+
+    start_deg: FloatArray
+    end_deg: FloatArray
+    obstacle: NDArray[np.int64]
+    start_elevation_deg: FloatArray
+    end_elevation_deg: FloatArray
+    straight_in_space: NDArray[np.bool_]
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Skyline:
+    """Everything that stands between the antenna's phase centre and the sky.
+
+    Attributes
+    ----------
+    obstacles : tuple of Obstacle
+        In the order of the survey; the general skylines among them.
+    outline : Outline
+        The one solid outline of what stands on the ground.
+    unsurveyed_deg : array, shape (gap, 2)
+        Azimuth ranges that nobody looked at, 0 <= start < end <= 360, ascending and disjoint.
+    """
+
+    obstacles: tuple[Obstacle, ...]
+    outline: Outline
+    unsurveyed_deg: FloatArray
