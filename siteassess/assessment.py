@@ -3,13 +3,19 @@
 from dataclasses import dataclass
 
 from siteassess.antenna.pattern import GainPattern
+from siteassess.antenna.read import read_pattern
+from siteassess.errors import gather
+from siteassess.horizon.read import read_skyline
 from siteassess.horizon.skyline import Skyline
+from siteassess.link_budget.assemble import link_budget
 from siteassess.link_budget.budget import LinkBudget
+from siteassess.orbits.constellations import nominal_orbits
 from siteassess.site_file.model import Site
-from siteassess.sky_tracks.tracks import SkyTracks
+from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
+from siteassess.verdict.judge import judge
 from siteassess.verdict.verdict import Verdict
 
-__all__ = ["Assessment"]
+__all__ = ["Assessment", "assess", "read_inputs"]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -38,3 +44,41 @@ class Assessment:
     tracks: SkyTracks
     budget: LinkBudget
     verdict: Verdict
+
+
+def assess(site: Site) -> Assessment:
+    """Assess a site: from its skyline and antenna, through the sky above it, to a verdict.
+
+    Parameters
+    ----------
+    site : Site
+        From :func:`siteassess.read_site`.
+
+    Returns
+    -------
+    Assessment
+        Every stage's result; `verdict` holds the answer.
+
+    Raises
+    ------
+    InputError
+        If a file that the site names is wrong; it holds the mistakes of all of them.
+    """
+    skyline, pattern = read_inputs(site)
+    orbits = nominal_orbits(site.sky.systems, site.sky.start)
+    tracks = sky_tracks(orbits, site.position, days=site.sky.days, step_s=site.sky.step_s)
+    budget = link_budget(site, skyline, pattern, tracks)
+    return Assessment(
+        site=site,
+        skyline=skyline,
+        pattern=pattern,
+        tracks=tracks,
+        budget=budget,
+        verdict=judge(site, skyline, tracks, budget),
+    )
+
+
+def read_inputs(site: Site) -> tuple[Skyline, GainPattern]:
+    """Read the files that a site names, and report the mistakes of all of them together."""
+    skyline, pattern = gather(lambda: read_skyline(site), lambda: read_pattern(site))
+    return skyline, pattern

@@ -6,11 +6,9 @@ mistakes of a file before they raise, and :func:`siteassess.assess` gathers thos
 
 from collections.abc import Callable
 from dataclasses import dataclass
-from typing import TypeVar
+from typing import Any
 
 __all__ = ["InputError", "Mistake", "OutputError", "SiteAssessError", "gather"]
-
-Result = TypeVar("Result")
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -70,7 +68,7 @@ class OutputError(SiteAssessError):
     """The report cannot be written; what was there before still stands."""
 
 
-def gather(*readers: Callable[[], Result]) -> tuple[Result, ...]:
+def gather(*readers: Callable[[], Any]) -> tuple[Any, ...]:
     """Results of several readers, or one error that holds the mistakes of them all.
 
     Raises
@@ -78,7 +76,7 @@ def gather(*readers: Callable[[], Result]) -> tuple[Result, ...]:
     InputError
         If any reader raised one.
     """
-    results: list[Result] = []
+    results: list[Any] = []
     mistakes: list[Mistake] = []
     for reader in readers:
         try:

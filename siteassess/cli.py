@@ -1,0 +1,135 @@
+"""The command line: parse, call the library, print, exit code. No science lives here."""
+
+import sys
+from collections.abc import Callable, Iterator
+from contextlib import contextmanager
+from pathlib import Path
+from typing import TYPE_CHECKING, Any
+
+import click
+
+from siteassess.errors import SiteAssessError
+
+if TYPE_CHECKING:
+    from siteassess.assessment import Assessment
+
+__all__ = ["main"]
+
+EXIT_STATUS = """\b
+Exit status:
+  0  done, whatever the verdict
+  1  cannot assess: each mistake is named on standard error
+  2  wrong command line
+  3  with --require-pass, the verdict is not "pass"
+"""
+
+
+class Commands(click.Group):
+    """Prints the mistakes of an input, one a line, instead of a traceback."""
+
+    def invoke(self, ctx: click.Context) -> Any:
+        try:
+            return super().invoke(ctx)
+        except SiteAssessError as error:
+            for mistake in error.mistakes:
+                click.echo(f"Error: {mistake}", err=True)
+            ctx.exit(1)
+
+
+@click.group(cls=Commands, epilog=EXIT_STATUS, context_settings={"help_option_names": ["-h", "--help"]})
+@click.version_option(package_name="siteassess", message="%(prog)s %(version)s")
+def main() -> None:
+    """Assess an installation site for a fixed GNSS reference-station antenna.
+
+    A surveyed horizon and the antenna's gain pattern go in; the received power and C/N0 of every satellite, the
+    blocked share of the sky and a verdict come out, with a report to hand over.
+
+    \b
+    Example:
+      siteassess new my_roof
+      siteassess assess my_roof
+    """
+
+
+@main.command()
+@click.argument("folder", type=click.Path(path_type=Path))
+def new(folder: Path) -> None:
+    """Write a commented starter site into FOLDER, which must be new or empty.
+
+    \b
+    Example:
+      siteassess new my_roof
+    """
+    from siteassess.site_file.starter import write_starter
+
+    write_starter(folder)
+    click.echo(f"Starter site written to {folder}. Edit site.toml and horizon.csv there, then:", err=True)
+    click.echo(f"  siteassess assess {folder}", err=True)
+
+
+@main.command(epilog=EXIT_STATUS)
+@click.argument("site", type=click.Path(path_type=Path))
+@click.option(
+    "--out", type=click.Path(path_type=Path), metavar="FOLDER",
+    help="Write the report here instead of SITE-report beside the site file.",
+)  # fmt: skip
+@click.option("--json", "as_json", is_flag=True, help="Print the assessment as JSON; write files only with --out.")
+@click.option("--quiet", is_flag=True, help="No summary, notes or progress.")
+@click.option("--require-pass", is_flag=True, help="Exit with 3 unless the verdict is pass.")
+@click.pass_context
+def assess(
+    ctx: click.Context, site: Path, out: Path | None, as_json: bool, quiet: bool, require_pass: bool
+) -> None:
+    """Assess SITE, a site file or a folder that holds site.toml, and write its report.
+
+    The report is report.html, report.pdf, assessment.json, satellites.csv and skyplot.svg.
+
+    \b
+    Example:
+      siteassess assess roof.toml --out reports/roof
+    """
+    with _progress(shown=not quiet) as step:
+        step("reading and assessing")
+        assessment = _assess(site)
+        folder = out if out is not None or as_json else _report_folder(assessment)
+        if folder is not None:
+            from siteassess.report.write import write_report
+
+            write_report(assessment, folder, step)
+    if as_json:
+        from siteassess.report.results import json_text
+
+        click.echo(json_text(assessment), nl=False)
+    elif not quiet:
+        from siteassess.report.summary import summary_lines
+
+        for line in summary_lines(assessment):
+            click.echo(line)
+    if folder is not None and not quiet:
+        click.echo(f"Report written to {folder}", err=True)
+    if require_pass and assessment.verdict.outcome != "pass":
+        ctx.exit(3)
+
+
+def _assess(path: Path) -> "Assessment":
+    from siteassess.assessment import assess as assess_site
+    from siteassess.site_file.read import read_site
+
+    return assess_site(read_site(path))
+
+
+def _report_folder(assessment: "Assessment") -> Path:
+    path = assessment.site.path
+    return path.parent / f"{path.stem}-report"
+
+
+@contextmanager
+def _progress(*, shown: bool) -> Iterator[Callable[[str], None]]:
+    """One line on a terminal's standard error that names the step at work; nothing elsewhere."""
+    if not (shown and sys.stderr.isatty()):
+        yield lambda step: None
+        return
+    try:
+        yield lambda step: click.echo(f"\r\x1b[K{step} ...", nl=False, err=True)
+    finally:
+        click.echo("\r\x1b[K", nl=False, err=True)

@@ -1,0 +1,170 @@
+"""Findings: each criterion held against the site, with one sentence for the reader."""
+
+from typing import Literal
+
+from siteassess.horizon.shares import SkyShares
+from siteassess.site_file.model import Mount, Requirements
+from siteassess.verdict.criteria import Criterion, read_criteria
+from siteassess.verdict.verdict import Finding, ObstacleCost, SignalShares
+
+__all__ = ["site_findings", "worst_first"]
+
+# Shares are printed with one decimal of a percent; a smaller part of it is not worth naming.
+WORTH_NAMING_SHARE = 0.0005
+BY_SITE_FILE = "site file"
+
+
+def site_findings(
+    require: Requirements,
+    mount: Mount,
+    sky: SkyShares,
+    signals: tuple[SignalShares, ...],
+    obstacles: tuple[ObstacleCost, ...],
+) -> tuple[Finding, ...]:
+    """All findings of a site, signals first, in the order of the criteria table.
+
+    Parameters
+    ----------
+    require : Requirements
+        Limits of the site file; those that are None turn into advice.
+    mount : Mount
+        Heights.
+    sky : SkyShares
+        Solid angles.
+    signals, obstacles : tuple
+        Shares of satellite-time.
+    """
+    sky_fraction_above_mask = _hemisphere_share_above(require.elevation_mask_deg)
+    values = {
+        "max_blocked_sky_share": sky.blocked_share_above_mask * sky_fraction_above_mask,
+        "max_block_share": sky.largest_block_share,
+        "max_horizon_deg": sky.peak_elevation_deg,
+        "min_height_above_roof_m": mount.height_above_roof_m,
+    }
+    reasons = {
+        "max_blocked_sky_share": "Hidden sky above the mask.",
+        "max_block_share": _block_reason(sky),
+        "max_horizon_deg": f"The solid skyline peaks at azimuth {sky.peak_azimuth_deg:.0f} degrees.",
+        "min_height_above_roof_m": "Height of the antenna above the roof as given in the site file.",
+    }
+    criteria = read_criteria()
+    return tuple(
+        _signal_finding(criteria["min_usable_share"], require, signal, sky, obstacles) for signal in signals
+    ) + tuple(
+        _sky_finding(criteria[key], getattr(require, key), value, sky, reasons[key])
+        for key, value in values.items()
+        if value is not None
+    )
+
+
+def worst_first(findings: tuple[Finding, ...]) -> tuple[Finding, ...]:
+    """Required before advice, missed before unproven before met, then the largest relative shortfall."""
+    rank = {"missed": 0, "unproven": 1, "met": 2}
+    criteria = read_criteria()
+    return tuple(
+        sorted(
+            findings,
+            key=lambda finding: (
+                not finding.required,
+                rank[finding.outcome],
+                -criteria[finding.criterion].shortfall(finding.value, finding.limit),
+            ),
+        )
+    )
+
+
+def _hemisphere_share_above(elevation_deg: float) -> float:
+    """Share of the hemisphere above an elevation: the zone of a sphere."""
+    from math import radians, sin
+
+    return 1.0 - sin(radians(elevation_deg))
+
+
+def _outcome(missed: bool, depends_on_sky: bool, sky: SkyShares) -> Literal["met", "missed", "unproven"]:
+    """What nobody looked at is counted as open, so a miss stands whatever is there, and a pass does not."""
+    if missed:
+        return "missed"
+    return "unproven" if depends_on_sky and sky.unsurveyed_share > 0 else "met"
+
+
+def _signal_finding(
+    criterion: Criterion,
+    require: Requirements,
+    signal: SignalShares,
+    sky: SkyShares,
+    obstacles: tuple[ObstacleCost, ...],
+) -> Finding:
+    limit = require.min_usable_share
+    outcome = _outcome(signal.usable_share < limit, True, sky)
+    return Finding(
+        criterion=criterion.key,
+        signal=signal.signal,
+        value=signal.usable_share,
+        limit=limit,
+        unit=criterion.unit,
+        required=True,
+        outcome=outcome,
+        source=BY_SITE_FILE,
+        reason=_signal_reason(signal, require, obstacles, sky, outcome),
+    )
+
+
+def _signal_reason(
+    signal: SignalShares,
+    require: Requirements,
+    obstacles: tuple[ObstacleCost, ...],
+    sky: SkyShares,
+    outcome: str,
+) -> str:
+    min_cn0_dbhz = require.min_cn0_for(signal.signal)
+    sentences = [
+        f"Usable for {signal.usable_share:.1%} of the satellite-time above the mask; "
+        f"{require.min_usable_share:.1%} is asked."
+    ]
+    if signal.open_sky_usable_share < require.min_usable_share:
+        sentences.append(
+            f"Antenna and chain alone miss the limit: even under an open sky only {signal.open_sky_usable_share:.1%} "
+            f"reaches {min_cn0_dbhz:g} dB-Hz."
+        )
+    if signal.lost_share >= WORTH_NAMING_SHARE:
+        sentences.append(f"Obstacles take {signal.lost_share:.1%}{_worst_obstacle(signal.signal, obstacles)}.")
+    if outcome == "unproven":
+        sentences.append(
+            f"Holds only if the unsurveyed sky ({sky.unsurveyed_share:.1%} of the sky above the mask) is open."
+        )
+    return " ".join(sentences)
+
+
+def _worst_obstacle(signal: str, obstacles: tuple[ObstacleCost, ...]) -> str:
+    if not obstacles:
+        return ""
+    worst = max(obstacles, key=lambda obstacle: obstacle.lost_satellite_time_share[signal])
+    taken = worst.lost_satellite_time_share[signal]
+    return f", most of it {worst.name} ({taken:.1%})" if taken >= WORTH_NAMING_SHARE else ""
+
+
+def _block_reason(sky: SkyShares) -> str:
+    if sky.largest_block_deg is None:
+        return "Nothing solid stands above the mask."
+    start, end = sky.largest_block_deg
+    return f"It runs clockwise from azimuth {start:.0f} to {end % 360.0:.0f} degrees."
+
+
+def _sky_finding(
+    criterion: Criterion, asked: float | None, value: float, sky: SkyShares, reason: str
+) -> Finding:
+    required = asked is not None
+    limit = asked if asked is not None else criterion.advice_limit
+    assert limit is not None  # the table gives an advice for every limit that a site file may leave out
+    depends_on_sky = criterion.unit != "m"
+    return Finding(
+        criterion=criterion.key,
+        signal=None,
+        value=value,
+        limit=limit,
+        unit=criterion.unit,
+        required=required,
+        outcome=_outcome(criterion.shortfall(value, limit) > 0, depends_on_sky, sky),
+        source=BY_SITE_FILE if required else criterion.source,
+        reason=reason,
+    )

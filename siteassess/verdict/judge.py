@@ -1,0 +1,71 @@
+"""From link budget and solid angles to findings and one word."""
+
+from typing import Literal
+
+from siteassess.horizon.shares import SkyShares, sky_shares
+from siteassess.horizon.skyline import Skyline
+from siteassess.link_budget.budget import LinkBudget
+from siteassess.site_file.model import Site
+from siteassess.sky_tracks.tracks import SkyTracks
+from siteassess.verdict.causes import obstacle_costs, sector_shares
+from siteassess.verdict.counts import usable_counts
+from siteassess.verdict.findings import site_findings, worst_first
+from siteassess.verdict.shares import satellite_shares, signal_shares
+from siteassess.verdict.states import sample_states, sample_weights, share
+from siteassess.verdict.verdict import Finding, Verdict
+
+__all__ = ["judge"]
+
+
+def judge(site: Site, skyline: Skyline, tracks: SkyTracks, budget: LinkBudget) -> Verdict:
+    """Hold the site against what its file requires, and against the published advice.
+
+    Parameters
+    ----------
+    site : Site
+        Requirements.
+    skyline : Skyline
+        What hides the sky.
+    tracks : SkyTracks
+        Where the satellites stand.
+    budget : LinkBudget
+        How strong what arrives is.
+
+    Returns
+    -------
+    Verdict
+        The one word, the findings behind it, and all shares.
+    """
+    sky = sky_shares(skyline, site.require.elevation_mask_deg)
+    weight = sample_weights(budget.samples, tracks)
+    states = {
+        signal.signal.name: sample_states(
+            signal, budget.samples, weight, count_weakened=site.require.count_weakened
+        )
+        for signal in budget.signals
+    }
+    signals = tuple(signal_shares(signal, states[signal.signal.name]) for signal in budget.signals)
+    obstacles = obstacle_costs(skyline, sky, budget.samples, weight, states)
+    findings = worst_first(site_findings(site.require, site.mount, sky, signals, obstacles))
+    return Verdict(
+        outcome=_outcome(findings, sky),
+        findings=findings,
+        sky=sky,
+        blocked_satellite_time_share=share(budget.samples.hidden, weight),
+        signals=signals,
+        satellites=tuple(
+            satellite
+            for signal in budget.signals
+            for satellite in satellite_shares(signal, states[signal.signal.name], budget.samples, tracks)
+        ),
+        obstacles=obstacles,
+        sectors=sector_shares(sky, budget, states),
+        counts=usable_counts(budget, tracks, states),
+    )
+
+
+def _outcome(findings: tuple[Finding, ...], sky: SkyShares) -> Literal["pass", "fail", "unproven"]:
+    """Fail when a required criterion is missed; a pass needs that the whole sky above the mask was looked at."""
+    if any(finding.required and finding.outcome == "missed" for finding in findings):
+        return "fail"
+    return "unproven" if sky.unsurveyed_share > 0 else "pass"
