@@ -6,7 +6,7 @@ import math
 import os
 import re
 from array import array
-from collections.abc import Iterator, Mapping, Sequence
+from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from importlib import resources
 from itertools import chain, zip_longest
