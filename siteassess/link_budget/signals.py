@@ -2,8 +2,12 @@
 
 from collections.abc import Mapping
 from dataclasses import dataclass
+from functools import cache
+from types import MappingProxyType
 
-__all__ = ["Signal"]
+from siteassess.tables import packaged_rows
+
+__all__ = ["Signal", "read_signals"]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -31,6 +35,8 @@ class Signal:
         Its power relative to the whole signal.
     typical_excess_db : float
         How far satellites usually exceed the guarantee.
+    reference : str
+        How the document counts the power: reference antenna, and which components together.
     source, status : str
         Published source, and whether it was seen or is from memory.
     """
@@ -44,5 +50,38 @@ class Signal:
     tracked_component: str
     tracked_share_db: float
     typical_excess_db: float
+    reference: str
     source: str
     status: str
+
+
+@cache
+def read_signals() -> Mapping[str, Signal]:
+    """Signal table of the package, by name and in the order of the table.
+
+    Examples
+    --------
+    >>> read_signals()["BeiDou B1C"].guaranteed_dbw["IGSO"]
+    -161.0
+    """
+    signals = (_signal(row) for row in packaged_rows("link_budget/signals.csv"))
+    return MappingProxyType({signal.name: signal for signal in signals})
+
+
+def _signal(row: Mapping[str, str]) -> Signal:
+    cells = {"MEO": row["meo_dbw"], "IGSO": row["igso_dbw"], "GEO": row["geo_dbw"]}
+    included_db = row["atmosphere_included_db"]
+    return Signal(
+        name=row["signal"],
+        system=row["system"],
+        carrier_hz=float(row["carrier_hz"]),
+        guaranteed_dbw=MappingProxyType({key: float(cell) for key, cell in cells.items() if cell}),
+        atmosphere_included_db=float(included_db) if included_db else None,
+        beam=row["beam"],
+        tracked_component=row["tracked_component"],
+        tracked_share_db=float(row["tracked_share_db"]),
+        typical_excess_db=float(row["typical_excess_db"]),
+        reference=row["reference"],
+        source=row["source"],
+        status=row["status"],
+    )
