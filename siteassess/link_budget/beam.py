@@ -20,10 +20,10 @@ GPS_MINIMUM_DBW = {"gps_l1_ca_dbw": -158.5, "gps_l1_p_dbw": -161.5, "gps_l2_p_db
 
 
 def beam_gain_db(beam: str, elevation_deg: ArrayLike) -> Any:
-    """Power radiated toward a site, relative to what the guaranteed minimum at 5 degrees elevation needs [dB].
+    """Power radiated toward a site, over what the guaranteed minimum needs at 5 degrees elevation [dB].
 
-    The published curve of received power against elevation, less spreading and less gas loss. Linear between the
-    points of the table; below 5 degrees the value there holds.
+    The published curve of received power against elevation, less spreading and less gas loss. The curve is
+    linear between the points of the table; below 5 degrees the value there holds.
 
     Parameters
     ----------

@@ -20,8 +20,8 @@ SHELL_HEIGHT_M = 7_000.0
 def gas_loss_db(carrier_hz: ArrayLike, elevation_deg: ArrayLike) -> Any:
     """Loss [dB] in oxygen and water vapour on the path from space to a site at sea level.
 
-    The zenith loss times the path through a uniform spherical shell. It stays finite at and below the horizon,
-    where it is an extrapolation.
+    The zenith loss times the path through a uniform spherical shell. Below 5 degrees it is an extrapolation,
+    finite at and below the horizon.
 
     Parameters
     ----------
@@ -42,4 +42,4 @@ def gas_loss_db(carrier_hz: ArrayLike, elevation_deg: ArrayLike) -> Any:
     radius_in_shells = WGS84_SEMI_MAJOR_AXIS_M / SHELL_HEIGHT_M
     vertical = radius_in_shells * np.sin(np.deg2rad(elevation_deg))
     air_mass = np.sqrt(vertical**2 + 2.0 * radius_in_shells + 1.0) - vertical
-    return np.interp(carrier_hz, CARRIER_HZ, ZENITH_LOSS_DB) * air_mass
+    return np.interp(np.asarray(carrier_hz, float), CARRIER_HZ, ZENITH_LOSS_DB) * air_mass

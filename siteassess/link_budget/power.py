@@ -7,6 +7,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from siteassess.constants import SPEED_OF_LIGHT_M_PER_S
+from siteassess.decibels import to_db
 from siteassess.link_budget.beam import LOWEST_ELEVATION_DEG, beam_gain_db
 from siteassess.link_budget.gases import gas_loss_db
 from siteassess.link_budget.signals import Signal
@@ -50,8 +51,8 @@ def received_power(
     """Power of a whole signal at a 0 dBic antenna under an open sky.
 
     A beam of known shape follows its published curve. Elsewhere the guaranteed level is held from 5 degrees
-    elevation up: the cautious reading, since the document promises no more. Below 5 degrees the radiated power of
-    5 degrees holds, while spreading and gases go on.
+    elevation up: the cautious reading, since the document promises no more. Below 5 degrees the power
+    radiated at 5 degrees holds, while spreading and gases go on.
 
     Parameters
     ----------
@@ -60,9 +61,15 @@ def received_power(
     orbit_class : str
         "MEO", "IGSO" or "GEO"; one that sends the signal.
     elevation_deg, radius_m : array
-        Geometric elevation [deg] and distance of the satellite from the centre of the Earth [m]; shapes broadcast.
+        Geometric elevation [deg] and distance of the satellite from the centre of the Earth [m]; the two
+        shapes broadcast.
     power : str
         "guaranteed", or "typical" with the excess of the signal table.
+
+    Returns
+    -------
+    PowerTerms
+        Arrays of the broadcast shape; NaN where an argument is.
 
     Raises
     ------
@@ -80,28 +87,16 @@ def received_power(
     >>> round(float(terms.received_power_dbw), 2)
     -156.48
     """
-    elevation_deg, radius_m = np.broadcast_arrays(
-        np.asarray(elevation_deg, float), np.asarray(radius_m, float)
-    )
-    guaranteed_dbw = signal.guaranteed_dbw[orbit_class]
-    level_dbw = guaranteed_dbw + (signal.typical_excess_db if power == "typical" else 0.0)
-    held_deg = np.maximum(elevation_deg, LOWEST_ELEVATION_DEG)
-    spreading_db = free_space_loss_db(slant_range_m(radius_m, elevation_deg), signal.carrier_hz)
-    atmosphere_db = _atmosphere_loss_db(signal, elevation_deg)
-    if signal.beam == "flat":
-        reference_deg, gain_db = held_deg, 0.0
-    else:
-        reference_deg, gain_db = (
-            np.full_like(held_deg, LOWEST_ELEVATION_DEG),
-            beam_gain_db(signal.beam, held_deg),
-        )
-    reference_loss_db = free_space_loss_db(slant_range_m(radius_m, reference_deg), signal.carrier_hz)
-    eirp_dbw = level_dbw + gain_db + reference_loss_db + _atmosphere_loss_db(signal, reference_deg)
+    elevation, radius = np.broadcast_arrays(np.asarray(elevation_deg, float), np.asarray(radius_m, float))
+    level_dbw = signal.guaranteed_dbw[orbit_class] + (signal.typical_excess_db if power == "typical" else 0.0)
+    eirp_dbw = level_dbw + _radiated_excess_db(signal, elevation, radius)
+    spreading_loss_db = free_space_loss_db(slant_range_m(radius, elevation), signal.carrier_hz)
+    atmosphere_loss_db = _atmosphere_loss_db(signal, elevation)
     return PowerTerms(
         eirp_dbw=eirp_dbw,
-        spreading_loss_db=spreading_db,
-        atmosphere_loss_db=atmosphere_db,
-        received_power_dbw=eirp_dbw - spreading_db - atmosphere_db,
+        spreading_loss_db=spreading_loss_db,
+        atmosphere_loss_db=atmosphere_loss_db,
+        received_power_dbw=eirp_dbw - spreading_loss_db - atmosphere_loss_db,
     )
 
 
@@ -114,9 +109,18 @@ def power_flux_density_dbw_per_m2(power_dbw: ArrayLike, carrier_hz: ArrayLike) -
     -133.1
     """
     wavelength_m = SPEED_OF_LIGHT_M_PER_S / np.asarray(carrier_hz)
-    return np.asarray(power_dbw) - 10.0 * np.log10(
-        wavelength_m**2 / (4.0 * np.pi)
-    )  # effective area of 0 dBic
+    effective_area_m2 = wavelength_m**2 / (4.0 * np.pi)  # of a 0 dBic antenna
+    return np.asarray(power_dbw) - to_db(effective_area_m2)
+
+
+def _radiated_excess_db(signal: Signal, elevation_deg: FloatArray, radius_m: FloatArray) -> Any:
+    """Power that the satellite radiates toward the site over the power guaranteed at the ground [dB]."""
+    if signal.beam == "flat":  # the beam is taken to make up for the path, down to 5 degrees
+        made_up_deg, beam_db = np.maximum(elevation_deg, LOWEST_ELEVATION_DEG), np.zeros(())
+    else:
+        made_up_deg, beam_db = np.asarray(LOWEST_ELEVATION_DEG), beam_gain_db(signal.beam, elevation_deg)
+    spreading_loss_db = free_space_loss_db(slant_range_m(radius_m, made_up_deg), signal.carrier_hz)
+    return beam_db + spreading_loss_db + _atmosphere_loss_db(signal, made_up_deg)
 
 
 def _atmosphere_loss_db(signal: Signal, elevation_deg: ArrayLike) -> Any:

@@ -23,8 +23,8 @@ class Signal:
     carrier_hz : float
         Carrier; for GLONASS FDMA signals channel 0.
     guaranteed_dbw : mapping of str to float
-        Orbit class ("MEO", "IGSO", "GEO") to the guaranteed power of the whole signal at a 0 dBic antenna on the
-        ground at 5 degrees elevation. A class that is absent does not send the signal.
+        Orbit class ("MEO", "IGSO", "GEO") to the guaranteed power of the whole signal at a 0 dBic antenna on
+        the ground at 5 degrees elevation. A class that is absent does not send the signal.
     atmosphere_included_db : float or None
         Loss in the atmosphere that the document states to have counted; None when it states none.
     beam : str
