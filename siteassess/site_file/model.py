@@ -1,7 +1,7 @@
 """Records of a site file: one class per table, one field per key, every unit in its name.
 
-The classes say which keys there are, their types, ranges and defaults; `site_file.read` turns what they
-refuse into the tool's own words.
+The classes say which keys there are, their types, ranges and defaults; `refusals` puts what they refuse into
+the tool's own words, `checks` holds the keys against each other.
 """
 
 from dataclasses import dataclass
@@ -9,21 +9,61 @@ from datetime import date, datetime
 from pathlib import Path
 from typing import Annotated, Literal
 
-from pydantic import BaseModel, ConfigDict, Field, PrivateAttr
+from pydantic import BaseModel, BeforeValidator, ConfigDict, Discriminator, Field, PrivateAttr, Tag
 
-__all__ = ["AntennaChoice", "HorizonSource", "Mount", "Part", "Place", "Position", "Requirements", "Site", "SkyModel"]
+__all__ = [
+    "AntennaChoice",
+    "ByCarrier",
+    "HorizonSource",
+    "Mount",
+    "Part",
+    "Place",
+    "Position",
+    "Requirements",
+    "Site",
+    "SkyModel",
+]
+
+
+def _shape(value: object) -> str:
+    return "table" if isinstance(value, dict) else "number"
+
+
+def _whole_number(value: object) -> object:
+    if type(value) is not int:  # Python takes 1.0 and True for 1
+        raise ValueError("it must be 1")
+    return value
+
 
 Azimuth = Annotated[float, Field(ge=0, le=360)]
-NonNegative = Annotated[float, Field(ge=0)]
+Height = Annotated[float, Field(ge=0, le=1000)]
+Offset = Annotated[float, Field(ge=-1000, le=1000)]
+AngleError = Annotated[float, Field(ge=0, le=45)]
 Share = Annotated[float, Field(ge=0, le=1)]
 Temperature = Annotated[float, Field(ge=0, le=1000)]
+Cn0 = Annotated[float, Field(ge=0, le=70)]
+Decibels = Annotated[float, Field(ge=0, le=100)]
+# Control characters would break a report's line; a Windows path in a basic string of TOML brings them in.
+Text = Annotated[str, Field(min_length=1, max_length=200, pattern=r"^[^\u0000-\u001f\u007f]*$")]
+FilePath = Annotated[str, Field(min_length=1, max_length=4000, pattern=r"^[^\u0000-\u001f\u007f]*$")]
 # One number, or a table from the carrier in MHz, as text, to the number at that carrier.
 ByCarrier = float | dict[str, float]
+DecibelsByCarrier = Annotated[
+    Annotated[Decibels, Tag("number")] | Annotated[dict[str, Decibels], Tag("table")], Discriminator(_shape)
+]
+Cn0BySignal = Annotated[
+    Annotated[Cn0, Tag("number")] | Annotated[dict[str, Cn0], Tag("table")], Discriminator(_shape)
+]
 
 
 class Record(BaseModel):
     model_config = ConfigDict(
-        strict=True, frozen=True, extra="forbid", allow_inf_nan=False, populate_by_name=True
+        strict=True,
+        frozen=True,
+        extra="forbid",
+        allow_inf_nan=False,
+        populate_by_name=True,
+        str_strip_whitespace=True,
     )
 
 
@@ -39,28 +79,60 @@ class Position:
 class Place(Record):
     """Table `[site]`: what and where the spot is."""
 
-    name: Annotated[str, Field(min_length=1, max_length=200)]
-    latitude_deg: Annotated[float, Field(ge=-90, le=90)] | None = None
-    longitude_deg: Annotated[float, Field(ge=-180, le=360)] | None = None
-    crs: str | None = None
-    easting_m: float | None = None
-    northing_m: float | None = None
-    height_m: Annotated[float, Field(ge=-1000, le=10_000)] = 0.0
-    height_system: Literal["ellipsoidal", "orthometric"] | None = None
-    geoid_height_m: Annotated[float, Field(ge=-150, le=150)] | None = None
-    surveyed_by: str | None = None
+    name: Text = Field(description="Name of the spot, as the report prints it.")
+    latitude_deg: Annotated[float, Field(ge=-90, le=90)] | None = Field(
+        default=None, description="Latitude of the survey mark, WGS 84, north positive [deg]."
+    )
+    longitude_deg: Annotated[float, Field(ge=-180, le=360)] | None = Field(
+        default=None, description="Longitude of the survey mark, WGS 84, east positive [deg]."
+    )
+    crs: Annotated[str, Field(pattern=r"^[A-Za-z]+:[0-9A-Za-z_]+$")] | None = Field(
+        default=None,
+        description="Projected reference system of easting_m and northing_m, by authority and code: EPSG:27700.",
+    )
+    easting_m: float | None = Field(default=None, description="Easting of the survey mark in crs [m].")
+    northing_m: float | None = Field(default=None, description="Northing of the survey mark in crs [m].")
+    height_m: Annotated[float, Field(ge=-1000, le=10_000)] = Field(
+        default=0.0, description="Height of the survey mark in height_system [m]."
+    )
+    height_system: Literal["ellipsoidal", "orthometric"] | None = Field(
+        default=None,
+        description="What height_m is above: the WGS 84 ellipsoid, or sea level. Required with crs; "
+        "without it, ellipsoidal.",
+    )
+    geoid_height_m: Annotated[float, Field(ge=-150, le=150)] | None = Field(
+        default=None,
+        description="Height of the geoid above the ellipsoid, added to an orthometric height_m [m]. "
+        "Without it the orthometric height is used as it is.",
+    )
+    surveyed_by: Text | None = Field(default=None, description="Who surveyed the spot, for the report.")
 
 
 class Mount(Record):
     """Table `[mount]`: how the antenna stands on the mark."""
 
-    mast_height_m: NonNegative
-    phase_centre_above_arp_m: float = 0.0
-    heading_deg: Azimuth = 0.0
-    tilt_deg: Annotated[float, Field(ge=0, le=180)] = 0.0
-    tilt_azimuth_deg: Azimuth = 0.0
-    height_above_roof_m: NonNegative | None = None
-    roof_surface: str | None = None
+    mast_height_m: Height = Field(
+        description="Antenna reference point (ARP) above the survey mark, along the mast [m]."
+    )
+    phase_centre_above_arp_m: Annotated[float, Field(ge=-10, le=10)] = Field(
+        default=0.0,
+        description="Phase centre above the antenna reference point [m]; directions and powers refer to it.",
+    )
+    heading_deg: Azimuth = Field(
+        default=0.0, description="Azimuth of the antenna's north mark, clockwise from true north [deg]."
+    )
+    tilt_deg: Annotated[float, Field(ge=0, le=180)] = Field(
+        default=0.0, description="Angle between the antenna's axis and the zenith [deg]."
+    )
+    tilt_azimuth_deg: Azimuth = Field(
+        default=0.0, description="Azimuth toward which the antenna leans, clockwise from true north [deg]."
+    )
+    height_above_roof_m: Height | None = Field(
+        default=None, description="Antenna above the roof, for the roof rule and reflections [m]."
+    )
+    roof_surface: Text | None = Field(
+        default=None, description="What the roof below the antenna is made of, for the report."
+    )
 
     @property
     def phase_centre_height_m(self) -> float:
@@ -71,7 +143,9 @@ class Mount(Record):
 class AntennaChoice(Record):
     """Table `[antenna]`: a built-in pattern, or the path of a CSV file."""
 
-    pattern: Annotated[str, Field(min_length=1)]
+    pattern: FilePath = Field(
+        description="Name of a built-in gain pattern, or a CSV file (the value ends in .csv), relative to the site file."
+    )
 
     @property
     def is_file(self) -> bool:
@@ -81,51 +155,120 @@ class AntennaChoice(Record):
 class Part(Record):
     """One `[[chain]]` block: a part between the antenna port and the receiver, which is the last one."""
 
-    part: Annotated[str, Field(min_length=1)]
-    gain_db: ByCarrier | None = None
-    loss_db: ByCarrier | None = None
-    noise_figure_db: ByCarrier | None = None
-    physical_temperature_k: Temperature = 290.0
-    implementation_loss_db: ByCarrier | None = None
+    part: Text = Field(
+        description="What the part is. The last one must be called receiver, and only that one."
+    )
+    gain_db: DecibelsByCarrier | None = Field(
+        default=None, description="Gain [dB]; a part with gain needs noise_figure_db too."
+    )
+    loss_db: DecibelsByCarrier | None = Field(default=None, description="Loss [dB]; for parts without gain.")
+    noise_figure_db: DecibelsByCarrier | None = Field(
+        default=None,
+        description="Noise figure referred to 290 K [dB]; for parts with gain and for the receiver.",
+    )
+    physical_temperature_k: Temperature = Field(
+        default=290.0, description="Temperature of the part itself [K]; sets the noise of a lossy part."
+    )
+    implementation_loss_db: DecibelsByCarrier | None = Field(
+        default=None,
+        description="Loss inside the receiver, by quantisation and filtering [dB]; none when absent.",
+    )
 
 
 class HorizonSource(Record):
     """One `[[horizon]]` block: where part of the skyline comes from."""
 
-    source: Literal["survey", "outlines", "terrain"]
-    file: Annotated[str, Field(min_length=1)]
-    surveyed_on: date | None = None
-    bearings: Literal["true-north", "magnetic-north", "grid-north"] = "true-north"
-    complete: bool = False
-    azimuth_error_deg: NonNegative | None = None
-    elevation_error_deg: NonNegative | None = None
-    instrument_east_m: float = 0.0
-    instrument_north_m: float = 0.0
-    instrument_up_m: float | None = None  # None: at the height of the antenna's phase centre
+    source: Literal["survey", "outlines", "terrain"] = Field(
+        description="How the horizon was found. This version reads survey; outlines and terrain are reserved."
+    )
+    file: FilePath = Field(description="The readings, a CSV file, relative to the site file.")
+    surveyed_on: date | None = Field(default=None, description="Day of the survey, such as 2026-10-04.")
+    bearings: Literal["true-north", "magnetic-north", "grid-north"] = Field(
+        default="true-north",
+        description="What the azimuths of the file are counted from. This version reads true-north; the others "
+        "are reserved.",
+    )
+    complete: bool = Field(
+        default=False,
+        description="True when the crew says that every azimuth was looked at. Otherwise gaps of more than "
+        "30 deg between neighbouring rows are unsurveyed.",
+    )
+    azimuth_error_deg: AngleError | None = Field(
+        default=None, description="Uncertainty of the azimuths, one standard deviation [deg]."
+    )
+    elevation_error_deg: AngleError | None = Field(
+        default=None, description="Uncertainty of the elevations, one standard deviation [deg]."
+    )
+    instrument_east_m: Offset = Field(
+        default=0.0, description="Where the instrument stood, east of the survey mark [m]."
+    )
+    instrument_north_m: Offset = Field(
+        default=0.0, description="Where the instrument stood, north of the survey mark [m]."
+    )
+    instrument_up_m: Offset | None = Field(
+        default=None,
+        description="Height of the instrument's eye above the survey mark [m]; absent: at the phase centre.",
+    )
 
 
 class SkyModel(Record):
     """Table `[sky]`: which satellites and signals, and the window of the joint counts."""
 
-    systems: tuple[str, ...] = ("GPS", "Galileo", "GLONASS", "BeiDou")
-    signals: tuple[str, ...] = ("GPS L1 C/A", "Galileo E1", "GLONASS L1OF", "BeiDou B1C")
-    power: Literal["guaranteed", "typical"] = "guaranteed"
-    start: datetime = datetime(2026, 1, 1)
-    days: Annotated[float, Field(gt=0, le=40)] = 10.0
-    step_s: Annotated[float, Field(ge=10, le=900)] = 120.0
+    systems: tuple[Text, ...] = Field(
+        default=("GPS", "Galileo", "GLONASS", "BeiDou"),
+        description="Satellite systems; when only signals is given, the systems of these signals.",
+    )
+    signals: tuple[Text, ...] = Field(
+        default=("GPS L1 C/A", "Galileo E1", "GLONASS L1OF", "BeiDou B1C"),
+        description="Signals to judge, each by itself, by their names in the signal table; when only systems "
+        "is given, those of the default signals that belong to these systems.",
+    )
+    power: Literal["guaranteed", "typical"] = Field(
+        default="guaranteed",
+        description="Power of the satellites: the interface documents' minimum, or that plus a stated excess.",
+    )
+    start: datetime = Field(
+        default=datetime(2026, 1, 1),
+        description="Start of the window of joint counts and dilution of precision, UTC; a time with an offset "
+        "is converted.",
+    )
+    days: Annotated[float, Field(gt=0, le=40)] = Field(
+        default=10.0, description="Length of that window [days]."
+    )
+    step_s: Annotated[float, Field(ge=10, le=900)] = Field(
+        default=120.0, description="Step of time along the tracks [s]."
+    )
 
 
 class Requirements(Record):
-    """Table `[require]`: what the user asks of the spot. Limits that are None are advice."""
+    """Table `[require]`: what the user asks of the spot. Limits that are absent are reported as advice."""
 
-    elevation_mask_deg: Annotated[float, Field(ge=0, lt=90)]
-    min_cn0_dbhz: float | dict[str, float]
-    min_usable_share: Share = 0.95
-    count_weakened: bool = False
-    max_blocked_share_of_hemisphere: Share | None = None
-    max_largest_block_share: Share | None = None
-    max_horizon_deg: Annotated[float, Field(ge=0, le=90)] | None = None
-    min_height_above_roof_m: NonNegative | None = None
+    elevation_mask_deg: Annotated[float, Field(ge=0, lt=90)] = Field(
+        description="Satellites below this elevation are not counted [deg]."
+    )
+    min_cn0_dbhz: Cn0BySignal = Field(
+        description="Smallest C/N0 at which a signal is usable [dB-Hz]: one number, or a table by signal."
+    )
+    min_usable_share: Share = Field(
+        default=0.95, description="Smallest usable share of a signal's satellite-time above the mask [share]."
+    )
+    count_weakened: bool = Field(
+        default=False,
+        description="Whether signals weakened by leaves or round a solid edge count as usable.",
+    )
+    max_blocked_share_of_hemisphere: Share | None = Field(
+        default=None, description="Largest blocked part of the sky above the mask, of the hemisphere [share]."
+    )
+    max_largest_block_share: Share | None = Field(
+        default=None,
+        description="Largest single block of hidden sky above the mask, of the hemisphere [share].",
+    )
+    max_horizon_deg: Annotated[float, Field(ge=0, le=90)] | None = Field(
+        default=None, description="Highest elevation that the solid skyline may reach [deg]."
+    )
+    min_height_above_roof_m: Height | None = Field(
+        default=None, description="Smallest height of the antenna above the roof [m]."
+    )
 
     def min_cn0_for(self, signal: str) -> float:
         """Smallest C/N0 [dB-Hz] that the user asks of one signal."""
@@ -135,11 +278,13 @@ class Requirements(Record):
 class Site(Record):
     """A whole site file, checked. Made by `read_site`; `position` and `path` are filled by it."""
 
-    format: Literal[1]
-    place: Annotated[Place, Field(alias="site")]
+    format: Annotated[Literal[1], BeforeValidator(_whole_number)] = Field(
+        description="Edition of the site file's format."
+    )
+    place: Place = Field(alias="site")
     mount: Mount
     antenna: AntennaChoice
-    chain: Annotated[tuple[Part, ...], Field(min_length=1)]
+    chain: tuple[Part, ...] = Field(min_length=1)
     horizon: tuple[HorizonSource, ...] = ()
     sky: SkyModel = SkyModel()
     require: Requirements
