@@ -1,8 +1,15 @@
 """The parts between the antenna port and the receiver, and the noise they add."""
 
+from collections.abc import Sequence
 from dataclasses import dataclass
 
-__all__ = ["ChainNoise"]
+import numpy as np
+
+from siteassess.constants import REFERENCE_TEMPERATURE_K
+from siteassess.decibels import to_db, to_ratio
+from siteassess.site_file.model import Part
+
+__all__ = ["Cascade", "ChainNoise", "cascade", "value_at_carrier"]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -40,3 +47,101 @@ class ChainNoise:
     noise_density_dbw_per_hz: float
     implementation_loss_db: float
     antenna_efficiency: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Cascade:
+    """A chain of parts taken together, seen from its input.
+
+    Attributes
+    ----------
+    temperature_k : float
+        Equivalent noise temperature at the input.
+    noise_figure_db : float
+        The same as a noise figure at 290 K.
+    net_gain_db : float
+        Gain of everything ahead of the receiver.
+    """
+
+    temperature_k: float
+    noise_figure_db: float
+    net_gain_db: float
+
+
+def value_at_carrier(value: float | dict[str, float], carrier_hz: float) -> float:
+    """A value of the site file at one carrier.
+
+    Parameters
+    ----------
+    value : float or dict
+        One number, or a table from the carrier in MHz, as text, to the number there.
+    carrier_hz : float
+        Carrier [Hz].
+
+    Returns
+    -------
+    float
+        Linear between the carriers of the table; beyond its ends theirs holds.
+
+    Examples
+    --------
+    >>> value_at_carrier({"1176.45": 4.0, "1575.42": 5.0}, 1375.935e6)
+    4.5
+    """
+    if not isinstance(value, dict):
+        return value
+    points = sorted((float(carrier_mhz) * 1e6, number) for carrier_mhz, number in value.items())
+    return float(np.interp(carrier_hz, [hz for hz, _ in points], [number for _, number in points]))
+
+
+def cascade(chain: Sequence[Part], carrier_hz: float) -> Cascade:
+    """Noise and gain of a chain by Friis' formula.
+
+    Parameters
+    ----------
+    chain : sequence of Part
+        From the antenna port on; the last part is the receiver.
+    carrier_hz : float
+        Carrier [Hz].
+
+    Returns
+    -------
+    Cascade
+        Each part's noise divided by the gain ahead of it, summed.
+
+    References
+    ----------
+    [Friis 1944] Noise figures of radio receivers.
+
+    Examples
+    --------
+    >>> parts = (Part(part="preamplifier", gain_db=30.0, noise_figure_db=2.5),
+    ...          Part(part="cable", loss_db=15.0), Part(part="receiver", noise_figure_db=10.0))
+    >>> round(cascade(parts, 1575.42e6).noise_figure_db, 2)
+    3.14
+    """
+    gain_ahead, temperature_k, receiver_input = 1.0, 0.0, 1.0
+    for part in chain:
+        receiver_input = gain_ahead
+        for gain, noise_k in _stages(part, carrier_hz):
+            temperature_k += noise_k / gain_ahead
+            gain_ahead *= gain
+    return Cascade(
+        temperature_k=temperature_k,
+        noise_figure_db=float(to_db(1.0 + temperature_k / REFERENCE_TEMPERATURE_K)),
+        net_gain_db=float(to_db(receiver_input)),
+    )
+
+
+def _stages(part: Part, carrier_hz: float) -> list[tuple[float, float]]:
+    """(gain, equivalent noise temperature [K]) of a part: of what it loses, then of what it amplifies."""
+    stages = []
+    if part.loss_db is not None:
+        loss = float(to_ratio(value_at_carrier(part.loss_db, carrier_hz)))
+        # A lossy part in thermal balance gives out what it takes in: (L - 1) times its own temperature.
+        stages.append((1.0 / loss, (loss - 1.0) * part.physical_temperature_k))
+    if part.gain_db is not None or part.noise_figure_db is not None:
+        gain = float(to_ratio(value_at_carrier(part.gain_db or 0.0, carrier_hz)))
+        noise_factor = float(to_ratio(value_at_carrier(part.noise_figure_db or 0.0, carrier_hz)))
+        stages.append((gain, (noise_factor - 1.0) * REFERENCE_TEMPERATURE_K))
+    return stages
