@@ -7,9 +7,7 @@ from numpy.typing import ArrayLike
 
 __all__ = ["leaf_factor", "slant_path_loss_db", "weissberger_loss_db", "woodland_loss_db"]
 
-LEAFLESS_SHARE = (
-    1.0 / 1.2
-)  # [P.833]: at about 1 GHz a tree in leaf costs about 20 % more dB than a leafless one
+LEAFLESS_SHARE = 1.0 / 1.2  # [P.833]: near 1 GHz a tree in leaf costs about 20 % more dB than a bare one
 SHORTEST_DEPTH_M = 1.0  # the slant-path fit does not go to zero with the depth; own limit of its use
 LOWEST_ELEVATION_DEG = 1.0  # own limit of the elevation term of the fit, which vanishes at the horizon
 WEISSBERGER_BREAK_M = 14.0
@@ -21,7 +19,7 @@ def slant_path_loss_db(depth_m: ArrayLike, carrier_hz: ArrayLike, elevation_deg:
     Parameters
     ----------
     depth_m : array
-        Path through leaves [m]. Below 1 m, where the fit does not hold, the loss is in proportion to the depth.
+        Path through leaves [m]. Below 1 m, where the fit does not hold, the loss goes with the depth.
     carrier_hz : array
         Carrier [Hz].
     elevation_deg : array
@@ -57,11 +55,9 @@ def weissberger_loss_db(depth_m: ArrayLike, carrier_hz: ArrayLike) -> Any:
     5.12
     """
     depth = np.asarray(depth_m, dtype=float)
-    per_metre_db = 0.45 * depth
-    beyond_db = 1.33 * depth**0.588
-    return (np.asarray(carrier_hz) / 1e9) ** 0.284 * np.where(
-        depth <= WEISSBERGER_BREAK_M, per_metre_db, beyond_db
-    )
+    short_db, long_db = 0.45 * depth, 1.33 * depth**0.588
+    at_1_ghz_db = np.where(depth <= WEISSBERGER_BREAK_M, short_db, long_db)
+    return (np.asarray(carrier_hz) / 1e9) ** 0.284 * at_1_ghz_db
 
 
 def woodland_loss_db(depth_m: ArrayLike, rate_db_per_m: ArrayLike, largest_loss_db: ArrayLike) -> Any:
@@ -91,7 +87,7 @@ def woodland_loss_db(depth_m: ArrayLike, rate_db_per_m: ArrayLike, largest_loss_
 
 
 def leaf_factor(leaf: Literal["in-leaf", "leafless", "evergreen"]) -> float:
-    """What the loss in leaf [dB] is multiplied by in another state of the leaves; evergreen is always in leaf.
+    """Loss [dB] in a state of the leaves over that in leaf; evergreen is always in leaf.
 
     Examples
     --------

@@ -1,4 +1,4 @@
-"""Makes siteassess/link_budget/fresnel.csv: Chebyshev series of the auxiliary functions of the Fresnel integrals.
+"""Makes siteassess/link_budget/fresnel.csv: series of the auxiliary functions of the Fresnel integrals.
 
 Run from the project folder: python tests/builders/fresnel_fit.py
 """
@@ -17,7 +17,8 @@ NODES = 400
 ASYMPTOTIC_FROM = 30.0  # beyond, differences of the integrals lose digits and the leading terms have them all
 
 HEADER = """\
-# source: own Chebyshev fit to the auxiliary functions f and g of the Fresnel integrals (Abramowitz and Stegun 7.3.5, 7.3.6), over (x - 2) / (x + 2) for x >= 0
+# source: own Chebyshev fit to the auxiliary functions f and g of the Fresnel integrals
+#         (Abramowitz and Stegun 7.3.5, 7.3.6), over (x - 2) / (x + 2) for x >= 0
 # edition: degree 16, largest error 6e-8; made by tests/builders/fresnel_fit.py
 # status: computed
 order,f,g
