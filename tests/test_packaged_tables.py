@@ -1,0 +1,139 @@
+"""The tables that come with the package: their sources, their units, and that they are whole."""
+
+import csv
+import math
+from pathlib import Path
+
+import numpy as np
+import pytest
+
+import siteassess
+from siteassess.tables import packaged_columns, packaged_header, packaged_rows
+
+PACKAGE = Path(siteassess.__file__).parent
+TABLES = sorted(path.relative_to(PACKAGE).as_posix() for path in PACKAGE.rglob("*.csv"))
+
+UNIT_SUFFIXES = (
+    *("_deg", "_m", "_s", "_hz", "_k", "_db", "_dbi", "_dbic", "_dbw", "_dbhz", "_share"),
+    *("_per_day", "_utc"),
+)
+# Numbers that have no unit, or that carry it in the column beside them.
+WITHOUT_UNIT = {"slot", "advice_limit", "order", "f", "g"}
+
+# A blank cell means something in these columns; everywhere else it is a gap.
+MAY_BE_BLANK = {
+    "link_budget/beam.csv": {"gps_l1_ca_dbw", "gps_l1_p_dbw", "gps_l2_p_dbw"},  # peaks lie apart
+    "link_budget/signals.csv": {"meo_dbw", "igso_dbw", "geo_dbw", "atmosphere_included_db"},
+    "orbits/beidou.csv": {
+        *("node_deg", "argument_of_latitude_deg", "crossing_longitude_deg"),
+        *("nodal_period_s", "held_revolutions_per_day"),
+    },
+    "verdict/criteria.csv": {"advice_limit"},
+}
+PATTERNS = [name for name in TABLES if "gain_dbic" in packaged_rows(name)[0]]
+
+# Satellite navigation bands of the Radio Regulations: 1164 to 1300 and 1559 to 1610 MHz (value from memory).
+NAVIGATION_BANDS_HZ = ((1164e6, 1300e6), (1559e6, 1610e6))
+
+
+def is_number(cell: str) -> bool:
+    try:
+        return math.isfinite(float(cell))
+    except ValueError:
+        return False
+
+
+def number_columns(name: str) -> list[str]:
+    rows = packaged_rows(name)
+    filled = {column: [row[column] for row in rows if row[column]] for column in rows[0]}
+    return [column for column, cells in filled.items() if cells and all(map(is_number, cells))]
+
+
+@pytest.mark.parametrize("name", TABLES)
+def test_table_says_where_it_is_from(name: str) -> None:
+    header = packaged_header(name)
+    assert header.get("source"), "no # source: line"
+    assert header.get("edition"), "no # edition: line"
+    status = header.get("status", "")
+    assert any(word in status for word in ("seen", "memory", "computed", "own default")), status
+
+
+@pytest.mark.parametrize("name", TABLES)
+def test_table_is_plain_utf8_with_one_header_and_even_rows(name: str) -> None:
+    content = (PACKAGE / name).read_bytes()
+    assert b"\r" not in content
+    assert not content.startswith(b"\xef\xbb\xbf")
+    lines = [line for line in content.decode("utf-8").splitlines() if not line.startswith("#")]
+    widths = {len(cells) for cells in csv.reader(lines)}
+    assert len(widths) == 1, f"rows of {sorted(widths)} cells"
+    assert len(lines) > 1
+
+
+@pytest.mark.parametrize("name", TABLES)
+def test_number_columns_carry_their_unit(name: str) -> None:
+    unnamed = [
+        column
+        for column in number_columns(name)
+        if column not in WITHOUT_UNIT and not column.endswith(UNIT_SUFFIXES)
+    ]
+    assert not unnamed
+
+
+@pytest.mark.parametrize("name", TABLES)
+def test_table_has_no_gaps_where_none_is_allowed(name: str) -> None:
+    allowed = MAY_BE_BLANK.get(name, set())
+    rows = packaged_rows(name)
+    gaps = {column for row in rows for column, cell in row.items() if not cell.strip()}
+    assert gaps <= allowed
+    assert allowed <= set(rows[0]), "a column that may be blank is not there"
+
+
+@pytest.mark.parametrize("name", TABLES)
+def test_rows_are_told_apart_by_their_key(name: str) -> None:
+    rows = packaged_rows(name)
+    key = [next(iter(rows[0])), *(["arrangement"] if "arrangement" in rows[0] else [])]
+    keys = [tuple(row[column] for column in key) for row in rows]
+    assert len(set(keys)) == len(keys)
+
+
+@pytest.mark.parametrize("name", [*PATTERNS, "link_budget/beam.csv"])
+def test_elevations_ascend(name: str) -> None:
+    assert np.all(np.diff(packaged_columns(name)["elevation_deg"]) > 0)
+
+
+@pytest.mark.parametrize("name", PATTERNS)
+def test_pattern_covers_the_sphere_in_even_steps(name: str) -> None:
+    elevation_deg = packaged_columns(name)["elevation_deg"]
+    assert elevation_deg[0] == -90.0
+    assert elevation_deg[-1] == 90.0
+    assert len(set(np.diff(elevation_deg))) == 1
+
+
+def test_beam_curves_reach_from_5_degrees_to_the_zenith() -> None:
+    table = packaged_columns("link_budget/beam.csv")
+    assert table["elevation_deg"][[0, -1]].tolist() == [5.0, 90.0]
+    for column, level_dbw in table.items():
+        assert np.all(np.isfinite(level_dbw[[0, -1]])), column
+
+
+def test_signals_lie_in_the_navigation_bands_and_are_sent_by_somebody() -> None:
+    beams = {"flat", *packaged_columns("link_budget/beam.csv")}
+    for row in packaged_rows("link_budget/signals.csv"):
+        carrier_hz = float(row["carrier_hz"])
+        assert any(low <= carrier_hz <= high for low, high in NAVIGATION_BANDS_HZ), row["signal"]
+        assert row["beam"] in beams
+        assert any(row[column] for column in ("meo_dbw", "igso_dbw", "geo_dbw"))
+        assert float(row["tracked_share_db"]) <= 0.0
+
+
+def test_every_signal_has_satellites_in_the_constellation_tables() -> None:
+    for row in packaged_rows("link_budget/signals.csv"):
+        satellites = packaged_rows(f"orbits/{row['system'].lower()}.csv")
+        classes = {satellite["orbit_class"].lower() for satellite in satellites}
+        assert {name for name in ("meo", "igso", "geo") if row[f"{name}_dbw"]} <= classes
+
+
+def test_criteria_say_how_they_are_met() -> None:
+    for row in packaged_rows("verdict/criteria.csv"):
+        assert row["unit"] in {"share", "deg", "m"}
+        assert row["sense"] in {"at least", "at most"}
