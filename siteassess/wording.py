@@ -20,6 +20,8 @@ def shown(value: object) -> str:
     if isinstance(value, str):
         printable = "".join(sign if sign.isprintable() else " " for sign in value)
         return f'"{_cut(printable)}"'
+    if isinstance(value, int) and value.bit_length() > LONGEST_SHOWN:
+        return "a number of more than 18 digits"  # Python refuses to print the longest ones
     return _cut(str(value))
 
 

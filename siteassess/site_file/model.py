@@ -36,7 +36,7 @@ def _whole_number(value: object) -> object:
 
 
 Azimuth = Annotated[float, Field(ge=0, le=360)]
-Height = Annotated[float, Field(ge=0, le=1000)]
+Height = Annotated[float, Field(ge=0)]
 Offset = Annotated[float, Field(ge=-1000, le=1000)]
 AngleError = Annotated[float, Field(ge=0, le=45)]
 Share = Annotated[float, Field(ge=0, le=1)]
@@ -62,7 +62,6 @@ class Record(BaseModel):
         frozen=True,
         extra="forbid",
         allow_inf_nan=False,
-        populate_by_name=True,
         str_strip_whitespace=True,
     )
 
@@ -88,7 +87,7 @@ class Place(Record):
     )
     crs: Annotated[str, Field(pattern=r"^[A-Za-z]+:[0-9A-Za-z_]+$")] | None = Field(
         default=None,
-        description="Projected reference system of easting_m and northing_m, by authority and code: EPSG:27700.",
+        description="Projected reference system of easting_m and northing_m, such as EPSG:27700.",
     )
     easting_m: float | None = Field(default=None, description="Easting of the survey mark in crs [m].")
     northing_m: float | None = Field(default=None, description="Northing of the survey mark in crs [m].")
@@ -111,9 +110,7 @@ class Place(Record):
 class Mount(Record):
     """Table `[mount]`: how the antenna stands on the mark."""
 
-    mast_height_m: Height = Field(
-        description="Antenna reference point (ARP) above the survey mark, along the mast [m]."
-    )
+    mast_height_m: Height = Field(description="Antenna reference point (ARP) above the survey mark [m].")
     phase_centre_above_arp_m: Annotated[float, Field(ge=-10, le=10)] = Field(
         default=0.0,
         description="Phase centre above the antenna reference point [m]; directions and powers refer to it.",
@@ -144,7 +141,8 @@ class AntennaChoice(Record):
     """Table `[antenna]`: a built-in pattern, or the path of a CSV file."""
 
     pattern: FilePath = Field(
-        description="Name of a built-in gain pattern, or a CSV file (the value ends in .csv), relative to the site file."
+        description="Name of a built-in gain pattern, or a CSV file relative to the site file; the value "
+        "then ends in .csv."
     )
 
     @property
@@ -185,8 +183,8 @@ class HorizonSource(Record):
     surveyed_on: date | None = Field(default=None, description="Day of the survey, such as 2026-10-04.")
     bearings: Literal["true-north", "magnetic-north", "grid-north"] = Field(
         default="true-north",
-        description="What the azimuths of the file are counted from. This version reads true-north; the others "
-        "are reserved.",
+        description="What the azimuths of the file are counted from. This version reads true-north; the "
+        "others are reserved.",
     )
     complete: bool = Field(
         default=False,
@@ -225,12 +223,12 @@ class SkyModel(Record):
     )
     power: Literal["guaranteed", "typical"] = Field(
         default="guaranteed",
-        description="Power of the satellites: the interface documents' minimum, or that plus a stated excess.",
+        description="Power of the satellites: the interface documents' minimum, or with a stated excess.",
     )
     start: datetime = Field(
         default=datetime(2026, 1, 1),
-        description="Start of the window of joint counts and dilution of precision, UTC; a time with an offset "
-        "is converted.",
+        description="Start of the window of joint counts and dilution of precision, UTC, in the years 1980 "
+        "to 2099; a time with an offset is converted.",
     )
     days: Annotated[float, Field(gt=0, le=40)] = Field(
         default=10.0, description="Length of that window [days]."
@@ -276,7 +274,10 @@ class Requirements(Record):
 
 
 class Site(Record):
-    """A whole site file, checked. Made by `read_site`; `position` and `path` are filled by it."""
+    """A whole site file, checked.
+
+    `read_site` makes it and fills `position` and `path`.
+    """
 
     format: Annotated[Literal[1], BeforeValidator(_whole_number)] = Field(
         description="Edition of the site file's format."

@@ -1,0 +1,193 @@
+"""What the keys of a site file must be to each other and to the packaged tables."""
+
+from collections.abc import Iterator, Mapping
+from dataclasses import dataclass
+from functools import cache
+from typing import Any, TypeVar
+
+from pydantic import ValidationError
+
+from siteassess.errors import Mistake
+from siteassess.site_file.chain_checks import chain_mistakes
+from siteassess.site_file.model import (
+    AntennaChoice,
+    HorizonSource,
+    Part,
+    Place,
+    Record,
+    Requirements,
+    SkyModel,
+)
+from siteassess.site_file.refusals import key_path
+from siteassess.tables import packaged_rows
+from siteassess.wording import did_you_mean, listed, shown
+
+__all__ = ["Sections", "cross_mistakes", "signals_of", "systems_of"]
+
+YEARS = (1980, 2099)  # GPS time starts in 1980; nominal constellations say nothing of later centuries
+
+AnyRecord = TypeVar("AnyRecord", bound=Record)
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Sections:
+    """The tables of a site file, each by itself; None where a table is refused.
+
+    So one wrong key does not keep the mistakes between other keys from being found.
+    """
+
+    place: Place | None
+    antenna: AntennaChoice | None
+    chain: tuple[Part | None, ...]
+    horizon: tuple[HorizonSource | None, ...]
+    sky: SkyModel | None
+    require: Requirements | None
+
+    @classmethod
+    def of(cls, raw: Mapping[str, Any]) -> "Sections":
+        """Sections of a site file as TOML reads it, lists as tuples."""
+        return cls(
+            place=_valid(Place, raw.get("site")),
+            antenna=_valid(AntennaChoice, raw.get("antenna")),
+            chain=_valid_blocks(Part, raw.get("chain")),
+            horizon=_valid_blocks(HorizonSource, raw.get("horizon")),
+            sky=_valid(SkyModel, raw.get("sky", {})),
+            require=_valid(Requirements, raw.get("require")),
+        )
+
+
+def cross_mistakes(sections: Sections, file: str) -> list[Mistake]:
+    """Mistakes that take more than one key, or a packaged table, to see."""
+    mistakes: list[Mistake] = []
+    carriers_hz: dict[str, float] | None = None
+    if sections.sky is not None:
+        mistakes += _sky_mistakes(sections.sky, file)
+        if not mistakes:
+            carriers_hz = {name: _signal_table()[name][1] for name in signals_of(sections.sky)}
+    if sections.antenna is not None:
+        mistakes += _antenna_mistakes(sections.antenna, file)
+    mistakes += chain_mistakes(sections.chain, carriers_hz or {}, file)
+    mistakes += _horizon_mistakes(sections.horizon, file)
+    if sections.require is not None and carriers_hz is not None:
+        mistakes += _require_mistakes(sections.require, tuple(carriers_hz), file)
+    return mistakes
+
+
+def systems_of(sky: SkyModel) -> tuple[str, ...]:
+    """Systems that the site file names; else those of the signals that it names; else the default."""
+    if "systems" in sky.model_fields_set or "signals" not in sky.model_fields_set:
+        return sky.systems
+    return tuple(dict.fromkeys(_signal_table()[name][0] for name in sky.signals if name in _signal_table()))
+
+
+def signals_of(sky: SkyModel) -> tuple[str, ...]:
+    """Signals that the site file names, or the default ones of its systems."""
+    if "signals" in sky.model_fields_set:
+        return sky.signals
+    return tuple(name for name in sky.signals if _signal_table()[name][0] in sky.systems)
+
+
+@cache
+def _signal_table() -> dict[str, tuple[str, float]]:
+    """System and carrier [Hz] of every signal."""
+    rows = packaged_rows("link_budget/signals.csv")
+    return {row["signal"]: (row["system"], float(row["carrier_hz"])) for row in rows}
+
+
+def _valid(record: type[AnyRecord], raw: object) -> AnyRecord | None:
+    try:
+        return record.model_validate(raw)
+    except ValidationError:
+        return None
+
+
+def _valid_blocks(record: type[AnyRecord], raw: object) -> tuple[AnyRecord | None, ...]:
+    return tuple(_valid(record, block) for block in raw) if isinstance(raw, tuple) else ()
+
+
+def _sky_mistakes(sky: SkyModel, file: str) -> Iterator[Mistake]:
+    table = _signal_table()
+    systems = tuple(dict.fromkeys(system for system, _ in table.values()))
+    yield from _name_mistakes(file, "systems", sky.systems, systems)
+    yield from _name_mistakes(file, "signals", sky.signals, tuple(table))
+    if {"systems", "signals"} <= sky.model_fields_set:
+        for index, name in enumerate(sky.signals):
+            system = table[name][0] if name in table else None
+            if system and system not in sky.systems:
+                allowed = f"sky.systems must name {system} too"
+                yield _given(file, ("sky", "signals", index), name, allowed)
+        heard = {table[name][0] for name in sky.signals if name in table}
+        for index, system in enumerate(sky.systems):
+            if system in systems and system not in heard:
+                allowed = "sky.signals must name at least one signal of each system"
+                yield _given(file, ("sky", "systems", index), system, allowed)
+    first, last = YEARS
+    if not first <= sky.start.year <= last:
+        yield Mistake(
+            file=file,
+            where="sky.start",
+            problem=f"is {sky.start.isoformat()}",
+            allowed=f"it must lie in the years {first} to {last}",
+            value=sky.start,
+        )
+
+
+def _name_mistakes(file: str, key: str, names: tuple[str, ...], known: tuple[str, ...]) -> Iterator[Mistake]:
+    if not names:
+        yield Mistake(
+            file=file, where=f"sky.{key}", problem="is an empty list", allowed="it must name at least one"
+        )
+    for index, name in enumerate(names):
+        place = ("sky", key, index)
+        if name not in known:
+            yield _given(file, place, name, did_you_mean(name, known, f"the {key} are {listed(known)}"))
+        elif name in names[:index]:
+            yield _given(file, place, name, "it stands there twice; keep one")
+
+
+def _antenna_mistakes(antenna: AntennaChoice, file: str) -> Iterator[Mistake]:
+    names = [row["pattern"] for row in packaged_rows("antenna/builtin.csv")]
+    if not antenna.is_file and antenna.pattern not in names:
+        otherwise = f"it must be a file that ends in .csv, or {listed(names, 'or')}"
+        allowed = did_you_mean(antenna.pattern, names, otherwise)
+        yield _given(file, ("antenna", "pattern"), antenna.pattern, allowed)
+
+
+def _horizon_mistakes(horizon: tuple[HorizonSource | None, ...], file: str) -> Iterator[Mistake]:
+    for index, source in enumerate(horizon):
+        if source is None:
+            continue
+        for key, supported in (("source", "survey"), ("bearings", "true-north")):
+            value = getattr(source, key)
+            if value != supported:
+                allowed = f"this version supports {shown(supported)} only"
+                yield _given(file, ("horizon", index, key), value, allowed)
+
+
+def _require_mistakes(require: Requirements, signals: tuple[str, ...], file: str) -> Iterator[Mistake]:
+    table = require.min_cn0_dbhz
+    if not isinstance(table, dict):
+        return
+    for name in table:
+        if name not in signals:
+            yield Mistake(
+                file=file,
+                where=key_path("require", "min_cn0_dbhz", name),
+                problem="is no signal of this site",
+                allowed=did_you_mean(name, signals, f"its signals are {listed(signals)}"),
+                value=name,
+            )
+    absent = [name for name in signals if name not in table]
+    if absent:
+        yield Mistake(
+            file=file,
+            where="require.min_cn0_dbhz",
+            problem=f"has no value for {listed(absent)}",
+            allowed="a table must hold one for every signal of the site",
+        )
+
+
+def _given(file: str, steps: tuple[str | int, ...], value: str, allowed: str) -> Mistake:
+    return Mistake(
+        file=file, where=key_path(*steps), problem=f"is {shown(value)}", allowed=allowed, value=value
+    )

@@ -1,0 +1,155 @@
+"""Where the survey mark is, from whichever way the site file says it."""
+
+from typing import TYPE_CHECKING
+
+from siteassess.errors import InputError, Mistake
+from siteassess.site_file.model import Place, Position
+from siteassess.wording import listed, shown
+
+if TYPE_CHECKING:
+    from pyproj import CRS
+
+__all__ = ["survey_mark"]
+
+GEOGRAPHIC = ("latitude_deg", "longitude_deg")
+PROJECTED = ("crs", "easting_m", "northing_m")
+EITHER = "it must hold latitude_deg and longitude_deg, or crs, easting_m and northing_m"
+# Bounds of reference systems are published to about 0.01 degrees.
+BOUNDS_MARGIN_DEG = 0.02
+
+
+def survey_mark(place: Place, file: str) -> Position:
+    """Position of the survey mark in WGS 84.
+
+    Parameters
+    ----------
+    place : Place
+        Table `[site]`.
+    file : str
+        Name of the site file, for messages.
+
+    Returns
+    -------
+    Position
+        Longitude from -180 to 180; ellipsoidal height where the file gives what it takes (an orthometric
+        height without its geoid height stands as it is).
+
+    Raises
+    ------
+    InputError
+        If the position is missing, given twice, incomplete or outside the area of its reference system.
+    """
+    mistakes = [*_way_mistakes(place, file), *_height_mistakes(place, file)]
+    if mistakes:
+        raise InputError(*mistakes)
+    latitude_deg, longitude_deg = place.latitude_deg, place.longitude_deg
+    if latitude_deg is None or longitude_deg is None:
+        latitude_deg, longitude_deg = _unprojected(place, file)
+    return Position(
+        latitude_deg=latitude_deg,
+        longitude_deg=longitude_deg - 360.0 if longitude_deg > 180.0 else longitude_deg,
+        height_m=place.height_m + (place.geoid_height_m or 0.0),
+    )
+
+
+def _way_mistakes(place: Place, file: str) -> list[Mistake]:
+    geographic = [key for key in GEOGRAPHIC if getattr(place, key) is not None]
+    projected = [key for key in PROJECTED if getattr(place, key) is not None]
+    if geographic and projected:
+        problem = f"gives its position twice, by {listed(geographic)} and by {listed(projected)}"
+        return [Mistake(file=file, where="site", problem=problem, allowed=EITHER)]
+    if not geographic and not projected:
+        return [Mistake(file=file, where="site", problem="has no position", allowed=EITHER)]
+    given, way = (geographic, GEOGRAPHIC) if geographic else (projected, PROJECTED)
+    return [
+        Mistake(file=file, where=f"site.{key}", problem="is missing", allowed=f"it goes with {listed(given)}")
+        for key in way
+        if key not in given
+    ]
+
+
+def _height_mistakes(place: Place, file: str) -> list[Mistake]:
+    if place.height_system is None and place.crs is not None:
+        allowed = 'with crs it must be "ellipsoidal" or "orthometric"'
+        return [Mistake(file=file, where="site.height_system", problem="is missing", allowed=allowed)]
+    if place.geoid_height_m is not None and place.height_system != "orthometric":
+        return [
+            Mistake(
+                file=file,
+                where="site.geoid_height_m",
+                problem=f"is {shown(place.geoid_height_m)}",
+                allowed='it goes with height_system = "orthometric" only',
+                value=place.geoid_height_m,
+            )
+        ]
+    return []
+
+
+def _unprojected(place: Place, file: str) -> tuple[float, float]:
+    """Latitude and longitude [deg] of a projected position."""
+    from pyproj import Transformer
+
+    assert place.easting_m is not None and place.northing_m is not None
+    system = _projected_system(place, file)
+    metre = 1.0 / system.axis_info[0].unit_conversion_factor  # the system may count in feet
+    # always_xy: easting before northing, longitude before latitude, whatever the system's own order.
+    to_wgs84 = Transformer.from_crs(system, "EPSG:4326", always_xy=True)
+    longitude_deg, latitude_deg = to_wgs84.transform(place.easting_m * metre, place.northing_m * metre)
+    if _in_area(system, latitude_deg, longitude_deg):
+        return latitude_deg, longitude_deg
+    swapped_deg = to_wgs84.transform(place.northing_m * metre, place.easting_m * metre)
+    swapped = _in_area(system, swapped_deg[1], swapped_deg[0])
+    raise InputError(
+        Mistake(
+            file=file,
+            where="site.easting_m and northing_m",
+            problem=f"are {shown(place.easting_m)} and {shown(place.northing_m)}",
+            allowed="they lie in the area of the crs when swapped"
+            if swapped
+            else _area_words(system, place.crs),
+            value=(place.easting_m, place.northing_m),
+        )
+    )
+
+
+def _projected_system(place: Place, file: str) -> "CRS":
+    from pyproj import CRS
+    from pyproj.exceptions import CRSError
+
+    def refusal(allowed: str) -> InputError:
+        problem = f"is {shown(place.crs)}"
+        return InputError(
+            Mistake(file=file, where="site.crs", problem=problem, allowed=allowed, value=place.crs)
+        )
+
+    try:
+        system = CRS.from_user_input(place.crs)
+    except CRSError as error:
+        raise refusal("it must be a known reference system, such as EPSG:27700") from error
+    if not system.is_projected:
+        raise refusal("it must be a projected system; or give latitude_deg and longitude_deg instead of it")
+    if {axis.direction for axis in system.axis_info[:2]} != {"east", "north"}:
+        raise refusal(
+            "its axes must point east and north; or give latitude_deg and longitude_deg instead of it"
+        )
+    return system
+
+
+def _in_area(system: "CRS", latitude_deg: float, longitude_deg: float) -> bool:
+    area = system.area_of_use
+    if area is None:
+        return abs(latitude_deg) <= 90.0 and abs(longitude_deg) <= 360.0
+    width_deg = (area.east - area.west) % 360.0 or 360.0
+    east_of_west_deg = (longitude_deg - area.west + BOUNDS_MARGIN_DEG) % 360.0
+    return bool(
+        area.south - BOUNDS_MARGIN_DEG <= latitude_deg <= area.north + BOUNDS_MARGIN_DEG
+        and east_of_west_deg <= width_deg + 2.0 * BOUNDS_MARGIN_DEG
+    )
+
+
+def _area_words(system: "CRS", crs: str | None) -> str:
+    area = system.area_of_use
+    if area is None:
+        return f"they must be a place on the Earth in {crs}"
+    latitudes = f"latitude {area.south:g} to {area.north:g}"
+    return f"the area of {crs} is {latitudes} and longitude {area.west:g} to {area.east:g}"

@@ -1,0 +1,105 @@
+"""From a site file on disk to a checked `Site`."""
+
+import os
+import re
+import tomllib
+from datetime import UTC
+from pathlib import Path
+from typing import Any
+
+from pydantic import ValidationError
+
+from siteassess.errors import InputError, Mistake
+from siteassess.site_file.checks import Sections, cross_mistakes, signals_of, systems_of
+from siteassess.site_file.model import Place, Position, Site, SkyModel
+from siteassess.site_file.position import survey_mark
+from siteassess.site_file.refusals import PATH_HINT, refusals
+from siteassess.tables import read_user_text
+
+__all__ = ["read_site"]
+
+TOML_PLACE = re.compile(r"^(.*) \(at (?:line (\d+), column (\d+)|end of document)\)$", re.DOTALL)
+# A backslash in a basic string ("..."), the only place where TOML gives it a meaning.
+BACKSLASH = re.compile(r'"[^"\n]*\\')
+
+
+def read_site(path: str | os.PathLike[str]) -> Site:
+    """A site file, checked as a whole; no other file of the user is opened.
+
+    Parameters
+    ----------
+    path : str or path
+        The site file, or a folder that holds `site.toml`.
+
+    Returns
+    -------
+    Site
+        With `position` in WGS 84, times in UTC, and the default signals that belong to the chosen systems.
+
+    Raises
+    ------
+    InputError
+        With every mistake of the file.
+    """
+    path = Path(path)
+    if path.is_dir():
+        path = path / "site.toml"
+    file = path.name
+    raw = _parsed(read_user_text(path), file)
+    sections = Sections.of(raw)
+    position, mistakes = _surveyed(sections.place, file)
+    mistakes += cross_mistakes(sections, file)
+    try:
+        site = Site.model_validate(raw)
+    except ValidationError as error:
+        raise InputError(*refusals(error, file), *mistakes) from error
+    if mistakes or position is None:
+        raise InputError(*mistakes)
+    site = site.model_copy(update={"sky": _completed(site.sky)})
+    site._path, site._position = path, position
+    return site
+
+
+def _surveyed(place: Place | None, file: str) -> tuple[Position | None, list[Mistake]]:
+    try:
+        return (survey_mark(place, file) if place is not None else None), []
+    except InputError as error:
+        return None, list(error.mistakes)
+
+
+def _completed(sky: SkyModel) -> SkyModel:
+    """The sky with what follows from its own keys: signals from systems or systems from signals, and UTC."""
+    start = sky.start if sky.start.tzinfo is None else sky.start.astimezone(UTC).replace(tzinfo=None)
+    return sky.model_copy(update={"systems": systems_of(sky), "signals": signals_of(sky), "start": start})
+
+
+def _parsed(text: str, file: str) -> dict[str, Any]:
+    try:
+        raw = tomllib.loads(text)
+    except RecursionError as error:
+        mistake = Mistake(
+            file=file, where="", problem="is nested too deeply", allowed="it must be a site file"
+        )
+        raise InputError(mistake) from error
+    except ValueError as error:  # TOMLDecodeError is one; a number of thousands of digits raises a plain one
+        raise InputError(_toml_mistake(str(error), text, file)) from error
+    frozen: dict[str, Any] = _frozen(raw)
+    return frozen
+
+
+def _frozen(value: Any) -> Any:
+    """Lists as tuples, which the records ask for."""
+    if isinstance(value, list):
+        return tuple(_frozen(item) for item in value)
+    return {key: _frozen(item) for key, item in value.items()} if isinstance(value, dict) else value
+
+
+def _toml_mistake(message: str, text: str, file: str) -> Mistake:
+    found = TOML_PLACE.match(message)
+    reason, line, column = found.groups() if found else (message, None, None)
+    if line is not None and BACKSLASH.search(text.split("\n")[int(line) - 1]):
+        problem = "holds a backslash that TOML cannot read"
+        return Mistake(file=file, where=f"line {line}", problem=problem, allowed=PATH_HINT)
+    where = f"line {line}, column {column}" if line else "the end of the file" if found else ""
+    words = " ".join(reason[:200].split())
+    return Mistake(file=file, where=where, problem="is not TOML", allowed=words[:1].lower() + words[1:])
