@@ -146,12 +146,12 @@ def _holes(table: UserTable, grid: PatternGrid) -> list[Mistake]:
         )
         if name in table.numbers
     )
-    further = f", and misses {len(holes) - 1} more like it" if len(holes) > 1 else ""
+    further = f", nor for {len(holes) - 1} more directions" if len(holes) > 1 else ""
     return [
         Mistake(
             file=table.file,
             where="",
-            problem=f"has no row for {first}{further}",
+            problem=f"there is no row for {first}{further}",
             allowed="the grid of directions must be full",
         )
     ]
