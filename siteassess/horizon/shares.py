@@ -1,8 +1,18 @@
-"""How much of the sky is hidden, as solid angles."""
+"""How much of the sky is hidden, as solid angles in closed form."""
 
 from dataclasses import dataclass
 
-__all__ = ["SkyShares"]
+import numpy as np
+from numpy.typing import ArrayLike
+
+from siteassess.angles import wrap_azimuth_deg
+from siteassess.horizon.curves import FloatArray, capped_area, edge_elevation, level_azimuth
+from siteassess.horizon.regions import Region, foliage_region, solid_region
+from siteassess.horizon.skyline import Skyline
+
+__all__ = ["SkyShares", "covered_share", "sky_shares"]
+
+TOUCHING_DEG = 1e-6  # obstacles that leave less open between them are one block
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -43,3 +53,194 @@ class SkyShares:
     sector_blocked_share: tuple[float, ...]
     peak_elevation_deg: float
     peak_azimuth_deg: float
+
+
+def sky_shares(skyline: Skyline, mask_deg: float) -> SkyShares:
+    """How much of the sky the skyline takes, in closed form.
+
+    Parameters
+    ----------
+    skyline : Skyline
+        What was surveyed.
+    mask_deg : float
+        Elevation mask, 0 <= mask < 90 [deg].
+
+    Returns
+    -------
+    SkyShares
+        The blocked shares of the solid obstacles add up to the blocked share of them all.
+
+    References
+    ----------
+    The solid angle below an edge el(az) is the integral of sin(el) over azimuth; a zone of the sphere from the
+    horizon up to a level edge takes sin(el) of the hemisphere.
+    """
+    solid, leaves = solid_region(skyline), foliage_region(skyline)
+    solid_sr, leaves_sr = _area_sr(solid, mask_deg, 90.0), _area_sr(leaves, mask_deg, 90.0)
+    above_mask_sr = 2.0 * np.pi * (1.0 - np.sin(np.deg2rad(mask_deg)))
+    taken_sr = np.bincount(
+        np.concatenate([solid.obstacle, leaves.obstacle]),
+        weights=np.concatenate([solid_sr, leaves_sr]),
+        minlength=len(skyline.obstacles),
+    )
+    block_share, block_deg = _largest_block(solid, solid_sr, mask_deg)
+    peak_elevation_deg, peak_azimuth_deg = _peak(skyline)
+    return SkyShares(
+        blocked_share_of_hemisphere=_share(_area_sr(solid, 0.0, 90.0).sum() / (2.0 * np.pi)),
+        blocked_share_above_mask=_share(solid_sr.sum() / above_mask_sr),
+        largest_block_share=block_share,
+        largest_block_deg=block_deg,
+        foliage_share_above_mask=_share(leaves_sr.sum() / above_mask_sr),
+        unsurveyed_share=_share(_unsurveyed_sr(skyline, solid, mask_deg) / above_mask_sr),
+        obstacle_blocked_share_above_mask=tuple(_share(area) for area in taken_sr / above_mask_sr),
+        sector_blocked_share=tuple(
+            _share(area) for area in _sectors_sr(solid, mask_deg) / (above_mask_sr / 8)
+        ),
+        peak_elevation_deg=peak_elevation_deg,
+        peak_azimuth_deg=peak_azimuth_deg,
+    )
+
+
+def covered_share(
+    skyline: Skyline, azimuth_edges_deg: ArrayLike, elevation_edges_deg: ArrayLike
+) -> FloatArray:
+    """Fraction of each cell of the sky that solid obstacles hide.
+
+    Parameters
+    ----------
+    skyline : Skyline
+        What was surveyed.
+    azimuth_edges_deg : array_like, shape (a + 1,)
+        Ascending, within 0..360.
+    elevation_edges_deg : array_like, shape (e + 1,)
+        Ascending, within -90..90.
+
+    Returns
+    -------
+    array, shape (a, e)
+        Share of the cell's solid angle.
+    """
+    azimuth_edges_deg = np.asarray(azimuth_edges_deg, dtype=float)
+    elevation_edges_deg = np.asarray(elevation_edges_deg, dtype=float)
+    region = _cut(solid_region(skyline), azimuth_edges_deg)
+    cells = len(azimuth_edges_deg) - 1
+    cell = np.searchsorted(azimuth_edges_deg, _middle_deg(region), side="right") - 1
+    inside = (cell >= 0) & (cell < cells)
+    below_sr = np.stack(
+        [
+            np.bincount(
+                cell[inside], weights=(region.sign * _capped_sr(region, level))[inside], minlength=cells
+            )
+            for level in elevation_edges_deg.tolist()
+        ],
+        axis=1,
+    )
+    width_rad = np.deg2rad(np.diff(azimuth_edges_deg))
+    height = np.diff(np.sin(np.deg2rad(elevation_edges_deg)))
+    return np.clip(np.diff(below_sr, axis=1) / (width_rad[:, None] * height), 0.0, 1.0)
+
+
+def _share(value: float) -> float:
+    """A share without the last digits of rounding that would put it outside 0..1."""
+    return min(max(float(value), 0.0), 1.0)
+
+
+def _middle_deg(region: Region) -> FloatArray:
+    return 0.5 * (region.start_deg + region.end_deg)
+
+
+def _capped_sr(region: Region, cap_deg: float) -> FloatArray:
+    return capped_area(region.curves, region.curve, region.start_deg, region.end_deg, cap_deg)
+
+
+def _area_sr(region: Region, low_deg: float, high_deg: float) -> FloatArray:
+    """Signed solid angle of each piece between two levels."""
+    return region.sign * (_capped_sr(region, high_deg) - _capped_sr(region, low_deg))
+
+
+def _cut(region: Region, azimuth_deg: FloatArray) -> Region:
+    """The same region, its pieces cut at the given ascending azimuths."""
+    first = np.searchsorted(azimuth_deg, region.start_deg, side="right")
+    cuts = np.maximum(np.searchsorted(azimuth_deg, region.end_deg, side="left") - first, 0)
+    piece = np.repeat(np.arange(len(cuts)), cuts + 1)
+    number = np.arange(len(piece)) - np.repeat(np.cumsum(cuts + 1) - cuts - 1, cuts + 1)
+    edges_deg = np.append(azimuth_deg, 360.0)
+    index = first[piece] + number
+    start_deg = np.where(number == 0, region.start_deg[piece], edges_deg[np.maximum(index - 1, 0)])
+    end_deg = np.where(
+        number == cuts[piece], region.end_deg[piece], edges_deg[np.minimum(index, len(azimuth_deg))]
+    )
+    return Region(
+        curves=region.curves,
+        start_deg=start_deg,
+        end_deg=end_deg,
+        curve=region.curve[piece],
+        sign=region.sign[piece],
+        obstacle=region.obstacle[piece],
+    )
+
+
+def _sectors_sr(region: Region, mask_deg: float) -> FloatArray:
+    """Hidden sky above the mask in the eight sectors, north first."""
+    cut = _cut(region, np.arange(8) * 45.0 + 22.5)
+    sector = np.floor(_middle_deg(cut) / 45.0 + 0.5).astype(np.int64) % 8
+    return np.bincount(sector, weights=_area_sr(cut, mask_deg, 90.0), minlength=8)
+
+
+def _unsurveyed_sr(skyline: Skyline, region: Region, mask_deg: float) -> float:
+    """Sky above the mask in the gaps of the survey, less what known obstacles hide there."""
+    gaps_deg = skyline.unsurveyed_deg.reshape(-1, 2)
+    width_rad = np.deg2rad(gaps_deg[:, 1] - gaps_deg[:, 0]).sum()
+    cut = _cut(region, gaps_deg.ravel())
+    in_gap = np.searchsorted(gaps_deg.ravel(), _middle_deg(cut), side="right") % 2 == 1
+    hidden_sr = _area_sr(cut, mask_deg, 90.0)[in_gap].sum()
+    return float(width_rad * (1.0 - np.sin(np.deg2rad(mask_deg))) - hidden_sr)
+
+
+def _largest_block(
+    region: Region, area_sr: FloatArray, mask_deg: float
+) -> tuple[float, tuple[float, float] | None]:
+    """Share of the hemisphere and azimuths of the largest stretch that is hidden above the mask without a gap."""
+    start_deg, end_deg = _above_mask(region, mask_deg)
+    if not len(start_deg):
+        return 0.0, None
+    order = np.argsort(start_deg, kind="stable")
+    reach_deg = np.maximum.accumulate(end_deg[order])
+    new = np.append(True, start_deg[order][1:] > reach_deg[:-1] + TOUCHING_DEG)
+    block_start = start_deg[order][new]
+    block_end = reach_deg[np.append(np.flatnonzero(new)[1:] - 1, len(reach_deg) - 1)]
+    # A piece that nowhere passes the mask has no area above it, in whatever block it is counted.
+    block = np.clip(np.searchsorted(block_start, _middle_deg(region), side="right") - 1, 0, None)
+    block_sr = np.bincount(block, weights=area_sr, minlength=len(block_start))
+    if len(block_start) > 1 and block_start[0] + 360.0 <= block_end[-1] + TOUCHING_DEG:
+        block_sr[-1] += block_sr[0]
+        block_end[-1] = block_end[0] + 360.0
+        block_sr, block_start, block_end = block_sr[1:], block_start[1:], block_end[1:]
+    largest = int(np.argmax(block_sr))
+    return _share(block_sr[largest] / (2.0 * np.pi)), (float(block_start[largest]), float(block_end[largest]))
+
+
+def _above_mask(region: Region, mask_deg: float) -> tuple[FloatArray, FloatArray]:
+    """Azimuths from and to of the parts of upper edges that lie above the mask."""
+    upper = region.sign > 0.0
+    curve, start_deg, end_deg = region.curve[upper], region.start_deg[upper], region.end_deg[upper]
+    first_deg = edge_elevation(region.curves, curve, start_deg)
+    last_deg = edge_elevation(region.curves, curve, end_deg)
+    level_deg = np.clip(mask_deg, np.minimum(first_deg, last_deg), np.maximum(first_deg, last_deg))
+    pass_deg = level_azimuth(region.curves, curve, start_deg, end_deg, level_deg)
+    above = np.maximum(first_deg, last_deg) > mask_deg
+    start_deg = np.where(first_deg < mask_deg, pass_deg, start_deg)[above]
+    end_deg = np.where(last_deg < mask_deg, pass_deg, end_deg)[above]
+    return start_deg, end_deg
+
+
+def _peak(skyline: Skyline) -> tuple[float, float]:
+    """Elevation and azimuth of the highest solid edge; 0 and 0 where none is above the horizon."""
+    region = solid_region(skyline)
+    azimuth_deg = np.concatenate([region.start_deg, region.end_deg])
+    curve = np.concatenate([region.curve, region.curve])
+    elevation_deg = edge_elevation(region.curves, curve, azimuth_deg)
+    if not len(elevation_deg) or elevation_deg.max() <= 0.0:
+        return 0.0, 0.0
+    highest = int(np.argmax(elevation_deg))
+    return float(elevation_deg[highest]), float(wrap_azimuth_deg(azimuth_deg[highest]))

@@ -29,7 +29,7 @@ class Obstacle:
         Ascending and unwrapped: the first lies in 0 <= azimuth < 360, the last may pass 360 (at most first + 360).
         Equal neighbours are a vertical edge.
     elevation_deg : array, shape (point,)
-        Apparent elevation of the upper edge.
+        Apparent elevation of the upper edge; -90 along the gaps of a general skyline, where it has none.
     underside_deg : array, shape (point,), or None
         Lower edge of an obstacle that hangs free; None when it stands on the ground.
     distance_m : array, shape (point,), or None
