@@ -1,0 +1,139 @@
+"""The first page: does it pass, why, which direction is worst, and what costs the most."""
+
+from __future__ import annotations
+
+from typing import TYPE_CHECKING
+
+from siteassess.report.phrases import azimuth_range, compass_point, number, percent, plain
+from siteassess.report.pieces import Answer
+from siteassess.verdict.criteria import read_criteria
+
+if TYPE_CHECKING:
+    from siteassess.assessment import Assessment
+    from siteassess.verdict.verdict import Finding, ObstacleCost, SectorShare, Verdict
+
+__all__ = ["VERDICTS", "answers", "ranked_obstacles", "worst_direction", "worst_obstacle"]
+
+VERDICTS = {"pass": "Pass", "fail": "Fail", "unproven": "Unproven"}
+SECTOR_WORDS = {
+    "N": "north",
+    "NE": "north-east",
+    "E": "east",
+    "SE": "south-east",
+    "S": "south",
+    "SW": "south-west",
+    "W": "west",
+    "NW": "north-west",
+}
+
+
+def answers(assessment: Assessment) -> tuple[Answer, ...]:
+    """Questions of the reader and their answers, the verdict first."""
+    verdict = assessment.verdict
+    return (
+        Answer(question="Does the spot pass?", answer=_passes(verdict)),
+        Answer(question="Why?" if verdict.outcome == "pass" else "Why not?", answer=_why(verdict)),
+        Answer(question="Which direction is worst?", answer=worst_direction(verdict)),
+        Answer(question="Which obstacle costs the most?", answer=worst_obstacle(verdict)),
+        Answer(question="How much sky is hidden?", answer=_hidden(assessment)),
+    )
+
+
+def _required(verdict: Verdict) -> list[Finding]:
+    return [finding for finding in verdict.findings if finding.required]
+
+
+def _passes(verdict: Verdict) -> str:
+    required = _required(verdict)
+    asked = f"{len(required)} requirement{'s' if len(required) != 1 else ''}"
+    missed = sum(finding.outcome == "missed" for finding in required)
+    if verdict.outcome == "pass":
+        return f"Yes. It meets {'the one requirement' if len(required) == 1 else f'all {asked}'}."
+    if verdict.outcome == "fail":
+        return f"No. It misses {missed} of {asked}."
+    return (
+        "Not proven. No requirement is missed, but "
+        f"{percent(verdict.sky.unsurveyed_share)} of the sky above the mask was not surveyed."
+    )
+
+
+def _why(verdict: Verdict) -> str:
+    """The reasons of the worst findings: all that are missed, at most four, or else the closest one."""
+    missed = [finding for finding in _required(verdict) if finding.outcome == "missed"]
+    told = (missed or _required(verdict)[:1])[:4]
+    more = len(missed) - len(told)
+    reasons = [f"{finding.signal}: {plain(finding.reason)}" if finding.signal else _named(finding) for finding in told]
+    if more > 0:
+        reasons.append(f"{more} more under “Asked and found”.")
+    return " ".join(reasons)
+
+
+def _named(finding: Finding) -> str:
+    return f"{read_criteria()[finding.criterion].title}: {plain(finding.reason)}"
+
+
+def _worst_sector(verdict: Verdict) -> SectorShare | None:
+    """The sector that loses the most satellite-time; where none loses any, the one with most hidden sky."""
+    worst = max(
+        verdict.sectors, key=lambda sector: (sector.lost_satellite_time_share, sector.blocked_share), default=None
+    )
+    if worst is None or (worst.lost_satellite_time_share <= 0 and worst.blocked_share <= 0):
+        return None
+    return worst
+
+
+def worst_direction(verdict: Verdict) -> str:
+    """The sector that costs the most, in a sentence."""
+    sector = _worst_sector(verdict)
+    if sector is None:
+        return "None: nothing that was surveyed stands above the mask."
+    name = SECTOR_WORDS[sector.name]
+    text = (
+        f"The {name}: {percent(sector.blocked_share)} of its own sky above the mask is hidden, and obstacles there "
+        f"take {percent(sector.lost_satellite_time_share)} of all satellite-time."
+    )
+    if verdict.sky.peak_elevation_deg > 0:
+        text += (
+            f" The skyline is highest, {number(verdict.sky.peak_elevation_deg)}°, at azimuth "
+            f"{number(verdict.sky.peak_azimuth_deg)}° ({compass_point(verdict.sky.peak_azimuth_deg)})."
+        )
+    return text
+
+
+def _cost(obstacle: ObstacleCost) -> tuple[float, float]:
+    return max(obstacle.lost_satellite_time_share.values(), default=0.0), obstacle.blocked_share_above_mask
+
+
+def ranked_obstacles(verdict: Verdict) -> list[tuple[int, ObstacleCost]]:
+    """Obstacles with their index in the skyline, the dearest first: numbered 1, 2, ... in figures and tables."""
+    return sorted(enumerate(verdict.obstacles), key=lambda entry: _cost(entry[1]), reverse=True)
+
+
+def worst_obstacle(verdict: Verdict) -> str:
+    """The obstacle that takes the most satellite-time from one signal, in a sentence."""
+    ranked = ranked_obstacles(verdict)
+    if not ranked or _cost(ranked[0][1]) <= (0.0, 0.0):
+        return "None: no obstacle takes anything above the mask."
+    obstacle = ranked[0][1]
+    signal, lost_share = max(
+        obstacle.lost_satellite_time_share.items(), key=lambda entry: entry[1], default=("", 0.0)
+    )
+    where = azimuth_range(obstacle.azimuth_from_deg, obstacle.azimuth_to_deg)
+    text = f"“{plain(obstacle.name)}” ({where}, up to {number(obstacle.peak_elevation_deg)}°)"
+    if lost_share <= 0:
+        return f"{text}, by the sky it takes: {percent(obstacle.blocked_share_above_mask)} of that above the mask."
+    return f"{text}: it takes {percent(lost_share)} of the satellite-time of {signal}."
+
+
+def _hidden(assessment: Assessment) -> str:
+    sky, verdict = assessment.verdict.sky, assessment.verdict
+    text = (
+        f"{percent(sky.blocked_share_above_mask)} of the sky above the "
+        f"{assessment.site.require.elevation_mask_deg:g}° mask, {percent(sky.blocked_share_of_hemisphere)} of the "
+        f"hemisphere, and {percent(verdict.blocked_satellite_time_share)} of the satellite-time above the mask."
+    )
+    if sky.foliage_share_above_mask > 0:
+        text += f" Leaves stand before another {percent(sky.foliage_share_above_mask)} of the sky above the mask."
+    if sky.unsurveyed_share > 0:
+        text += f" Nobody looked at {percent(sky.unsurveyed_share)} of it."
+    return text
