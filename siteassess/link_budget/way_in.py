@@ -1,0 +1,165 @@
+"""What the obstacles of a skyline cost a signal on its way in."""
+
+import numpy as np
+from numpy.typing import NDArray
+
+from siteassess.angles import wrap_azimuth_deg, wrap_difference_deg
+from siteassess.constants import SPEED_OF_LIGHT_M_PER_S
+from siteassess.horizon.skyline import Obstacle, Skyline
+from siteassess.horizon.view import (
+    covers,
+    depth_m,
+    edge_distance_m,
+    edge_elevation_deg,
+    underside_elevation_deg,
+)
+from siteassess.link_budget.diffraction import (
+    LOSS_FREE_NU,
+    fresnel_parameter,
+    knife_edge_loss_db,
+    strip_loss_db,
+)
+from siteassess.link_budget.edges import highest_within_reach_deg, lower_edges, smallest_detour_m, upper_edges
+from siteassess.link_budget.foliage import leaf_factor, slant_path_loss_db
+
+__all__ = ["is_narrow", "skyline_loss_db"]
+
+FloatArray = NDArray[np.float64]
+IndexArray = NDArray[np.int64]
+
+# The first loss lobe beside a thin strip ends at 1.22, that beside a wide one at 0.78. Like the knife edge
+# of P.526, the strip carries none of the fainter lobes beyond, which real edges wash out.
+STRIP_REACH_NU = 1.25
+
+
+def skyline_loss_db(
+    skyline: Skyline, azimuth_deg: FloatArray, apparent_elevation_deg: FloatArray, carrier_hz: float
+) -> tuple[FloatArray, IndexArray]:
+    """Loss by diffraction and leaves toward directions; the losses of several obstacles add.
+
+    A solid obstacle of known distance acts by its nearest edge, sides and underside included, as a knife edge;
+    a narrow one by the difference of its two edges. Without a distance an edge is hard: no loss beside it, and
+    none computed behind it, where the line of sight is hidden anyway.
+
+    Parameters
+    ----------
+    skyline : Skyline
+        What stands round the antenna.
+    azimuth_deg, apparent_elevation_deg : array, shape (n,)
+        Directions of satellites, as seen through the air [deg].
+    carrier_hz : float
+        Carrier [Hz].
+
+    Returns
+    -------
+    loss_db : array, shape (n,)
+        Sum over the obstacles, at least 0; defined behind edges too.
+    costly_obstacle : integer array, shape (n,)
+        Index in `Skyline.obstacles` of the one that costs most; -1 where none costs anything.
+
+    References
+    ----------
+    [P.526] ITU-R P.526, 4.1 and 5.1. [P.833] ITU-R P.833-10, 2.2.
+    """
+    loss_db = np.zeros(azimuth_deg.shape)
+    largest_db = np.zeros(azimuth_deg.shape)
+    costly_obstacle = np.full(azimuth_deg.shape, -1, dtype=np.int64)
+    for index, obstacle in enumerate(skyline.obstacles):
+        one = _foliage_loss_db if obstacle.cover == "foliage" else _solid_loss_db
+        near, near_loss_db = one(obstacle, azimuth_deg, apparent_elevation_deg, carrier_hz)
+        loss_db[near] += near_loss_db
+        costs_most = near_loss_db > largest_db[near]
+        largest_db[near[costs_most]] = near_loss_db[costs_most]
+        costly_obstacle[near[costs_most]] = index
+    return loss_db, costly_obstacle
+
+
+def is_narrow(obstacle: Obstacle, wavelength_m: float) -> bool:
+    """Whether an obstacle of known distance is narrower than the first Fresnel zone, across or upward.
+
+    Then a wave passes on both sides of it at once.
+    """
+    if obstacle.distance_m is None or np.isnan(obstacle.distance_m).any():
+        return False
+    distance_m = float(np.mean(obstacle.distance_m))
+    horizontal_m = float(np.mean(obstacle.distance_m * np.cos(np.deg2rad(obstacle.elevation_deg))))
+    half_span_rad = np.deg2rad(obstacle.azimuth_deg[-1] - obstacle.azimuth_deg[0]) / 2.0
+    across_m = 2.0 * horizontal_m * np.sin(min(half_span_rad, np.pi / 2.0))
+    upward_m = np.inf
+    if obstacle.underside_deg is not None:
+        height_rad = np.deg2rad(np.max(obstacle.elevation_deg - obstacle.underside_deg))
+        upward_m = distance_m * height_rad
+    return bool(
+        min(across_m, upward_m) < 2.0 * np.sqrt(wavelength_m * distance_m)
+    )  # [P.526] eq. 2, both radii
+
+
+def _foliage_loss_db(
+    obstacle: Obstacle, azimuth_deg: FloatArray, elevation_deg: FloatArray, carrier_hz: float
+) -> tuple[IndexArray, FloatArray]:
+    """Indices of the directions that look through leaves, and the loss there."""
+    near = np.flatnonzero(elevation_deg < np.max(obstacle.elevation_deg))
+    near = near[covers(obstacle, azimuth_deg[near], elevation_deg[near])]
+    through_m = depth_m(obstacle, azimuth_deg[near])
+    loss_db = slant_path_loss_db(through_m, carrier_hz, elevation_deg[near])
+    return near, leaf_factor(obstacle.leaf) * loss_db
+
+
+def _solid_loss_db(
+    obstacle: Obstacle, azimuth_deg: FloatArray, elevation_deg: FloatArray, carrier_hz: float
+) -> tuple[IndexArray, FloatArray]:
+    """Indices of the directions that pass near a solid obstacle, and the loss there."""
+    if obstacle.distance_m is None:
+        return np.empty(0, dtype=np.int64), np.empty(0)
+    wavelength_m = SPEED_OF_LIGHT_M_PER_S / carrier_hz
+    narrow = is_narrow(obstacle, wavelength_m)
+    reach_nu = STRIP_REACH_NU if narrow else -LOSS_FREE_NU
+    loss_of = _strip_loss_db if narrow else _edge_loss_db
+    # nu = 2 sqrt(detour / wavelength), [P.526] 4.1
+    reach_deg = highest_within_reach_deg(upper_edges(obstacle), wavelength_m * (reach_nu / 2.0) ** 2)
+    low = np.flatnonzero(elevation_deg < np.max(reach_deg))
+    degree = wrap_azimuth_deg(azimuth_deg[low]).astype(np.int64)
+    near = low[elevation_deg[low] < reach_deg[degree]]
+    return near, loss_of(obstacle, azimuth_deg[near], elevation_deg[near], wavelength_m)
+
+
+def _edge_loss_db(
+    obstacle: Obstacle, azimuth_deg: FloatArray, elevation_deg: FloatArray, wavelength_m: float
+) -> FloatArray:
+    """Knife-edge loss over the nearest edge of an obstacle."""
+    detour_m = smallest_detour_m(upper_edges(obstacle), azimuth_deg, elevation_deg)
+    if obstacle.hangs_free:
+        detour_m = np.minimum(detour_m, smallest_detour_m(lower_edges(obstacle), azimuth_deg, elevation_deg))
+    sign = np.where(covers(obstacle, azimuth_deg, elevation_deg), 1.0, -1.0)
+    has_edge = np.isfinite(detour_m)
+    nu = 2.0 * sign * np.sqrt(np.where(has_edge, detour_m, 0.0) / wavelength_m)  # [P.526] 4.1
+    loss_db: FloatArray = np.where(has_edge, knife_edge_loss_db(nu), 0.0)
+    return loss_db
+
+
+def _strip_loss_db(
+    obstacle: Obstacle, azimuth_deg: FloatArray, elevation_deg: FloatArray, wavelength_m: float
+) -> FloatArray:
+    """Loss behind and beside a narrow obstacle, by the difference of its edges."""
+    first_deg, last_deg = obstacle.azimuth_deg[0], obstacle.azimuth_deg[-1]
+    middle_deg, half_deg = 0.5 * (first_deg + last_deg), 0.5 * (last_deg - first_deg)
+    aside_deg = wrap_difference_deg(azimuth_deg - middle_deg)
+    nearest_deg = middle_deg + np.clip(aside_deg, -half_deg, half_deg)
+    top_deg = edge_elevation_deg(obstacle, nearest_deg)
+    distance_m = edge_distance_m(obstacle, nearest_deg)
+    narrowing = np.cos(np.deg2rad(np.minimum(elevation_deg, top_deg)))  # of an azimuth gap, at the edge
+    nu_from, nu_to, nu_top, nu_bottom = (
+        fresnel_parameter(angle_deg, distance_m, wavelength_m)
+        for angle_deg in (
+            (-half_deg - aside_deg) * narrowing,
+            (half_deg - aside_deg) * narrowing,
+            top_deg - elevation_deg,
+            underside_elevation_deg(obstacle, nearest_deg) - elevation_deg,
+        )
+    )
+    is_clear = (np.maximum(nu_from, nu_bottom) > STRIP_REACH_NU) | (
+        np.minimum(nu_to, nu_top) < -STRIP_REACH_NU
+    )
+    if not obstacle.hangs_free:
+        nu_bottom = np.full_like(nu_top, -np.inf)
+    return np.where(is_clear, 0.0, strip_loss_db(nu_from, nu_to, nu_top, nu_bottom))
