@@ -36,7 +36,7 @@ def secular_rates(radius_m: ArrayLike, inclination_deg: ArrayLike) -> tuple[Any,
     --------
     >>> along_deg_per_s, node_deg_per_s = secular_rates(26_559_700.0, 55.0)
     >>> round(float(360.0 / along_deg_per_s), 1), round(float(node_deg_per_s * 86_400), 4)
-    (43075.7, -0.0387)
+    (43075.8, -0.0388)
     """
     radius_m = np.asarray(radius_m, dtype=float)
     cosine = np.cos(np.deg2rad(inclination_deg))

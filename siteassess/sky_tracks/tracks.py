@@ -86,8 +86,8 @@ def sky_tracks(
     azimuth_deg, elevation_deg, range_m = np.empty((3, len(orbits.satellite), epochs))
     blocks, within = _local_factors(orbits, position, epochs, step_s)
     for satellite in range(len(orbits.satellite)):
-        local_m = (blocks[satellite] @ within[satellite]).reshape(3, -1)[:, :epochs]
-        _look(local_m, azimuth_deg[satellite], elevation_deg[satellite], range_m[satellite])
+        west_south_up_m = (blocks[satellite] @ within[satellite]).reshape(3, -1)[:, :epochs]
+        _look(west_south_up_m, azimuth_deg[satellite], elevation_deg[satellite], range_m[satellite])
     return SkyTracks(
         satellite=orbits.satellite,
         system=orbits.system,
@@ -120,36 +120,38 @@ def _local_factors(
     within : array, shape (satellite, 7, epoch of a block)
         Rotations from the start of the block.
     """
-    satellites, fine = len(orbits.satellite), min(FINE_STEPS, epochs)
-    place_m = earth_fixed_of_geodetic_m(position.latitude_deg, position.longitude_deg, position.height_m)
+    fine = min(FINE_STEPS, epochs)
+    coarse = math.ceil(epochs / fine)
     axes = east_north_up(position.latitude_deg, position.longitude_deg) * [[-1.0], [-1.0], [1.0]]
-    amplitudes_m = np.tensordot(axes, earth_fixed_amplitudes_m(orbits), axes=1)  # (3, satellite, 3)
-    start_deg, rate_deg_per_s = phases_deg(orbits)
-    block_s = step_s * fine * np.arange(math.ceil(epochs / fine))
-    turn_rad = np.deg2rad(start_deg + rate_deg_per_s * block_s[:, None, None])  # (block, satellite, 3)
-    turned_m = amplitudes_m[:, None] * np.exp(1j * turn_rad)  # (3, block, satellite, 3)
-    constant_m = np.broadcast_to((axes @ place_m)[:, None, None, None], (*turned_m.shape[:3], 1))
-    blocks = np.concatenate([turned_m.real, turned_m.imag, constant_m], axis=-1)
-    within_rad = np.deg2rad(rate_deg_per_s[..., None] * (step_s * np.arange(fine)))  # (satellite, 3, fine)
-    # Re(z exp(ia)) = Re(z) cos(a) - Im(z) sin(a)
-    within = np.concatenate(
-        [np.cos(within_rad), -np.sin(within_rad), np.full((satellites, 1, fine), -1.0)], axis=1
-    )
-    return np.ascontiguousarray(np.moveaxis(blocks, 2, 0)).reshape(satellites, -1, 7), within
+    place_m = earth_fixed_of_geodetic_m(position.latitude_deg, position.longitude_deg, position.height_m)
+    local_m = np.einsum("ac,csr->sar", axes, earth_fixed_amplitudes_m(orbits))  # (satellite, axis, rotation)
+    start_deg, rate_deg_per_s = phases_deg(orbits)  # (satellite, rotation)
+    block_s = (step_s * fine * np.arange(coarse))[:, None]
+    # (satellite, block, rotation)
+    turn_rad = np.deg2rad(start_deg[:, None] + rate_deg_per_s[:, None] * block_s)
+    turned_m = local_m[:, :, None] * np.exp(1j * turn_rad)[:, None]  # (satellite, axis, block, rotation)
+    offset_m = np.broadcast_to(-(axes @ place_m)[:, None, None], (*turned_m.shape[:3], 1))
+    blocks = np.concatenate([turned_m.real, turned_m.imag, offset_m], axis=-1)
+    # (satellite, rotation, epoch)
+    within_rad = np.deg2rad(rate_deg_per_s[..., None] * (step_s * np.arange(fine)))
+    # The real part of z exp(ia) is Re(z) cos(a) - Im(z) sin(a); the last row carries the offset.
+    ones = np.ones((len(start_deg), 1, fine))
+    within = np.concatenate([np.cos(within_rad), -np.sin(within_rad), ones], axis=1)
+    return blocks.reshape(len(start_deg), 3 * coarse, 7), within
 
 
 def _look(
-    local_m: FloatArray, azimuth_deg: FloatArray, elevation_deg: FloatArray, range_m: FloatArray
+    west_south_up_m: FloatArray, azimuth_deg: FloatArray, elevation_deg: FloatArray, range_m: FloatArray
 ) -> None:
-    """Fill the sky coordinates of one satellite from its west, south and up."""
-    west_m, south_m, up_m = local_m
-    # Toward west and south the arctangent runs from -180 to 180 where the azimuth runs from 0 to 360.
+    """Fill the sky coordinates of one satellite in place."""
+    west_m, south_m, up_m = west_south_up_m
+    # Counted from south, the arctangent runs from -180 to 180 while the azimuth runs from 0 to 360.
     np.arctan2(west_m, south_m, out=azimuth_deg)
     azimuth_deg *= 180.0 / math.pi
     azimuth_deg += 180.0
     azimuth_deg[azimuth_deg >= 360.0] = 0.0
-    square = local_m * local_m
-    horizontal_square = square[0] + square[1]
-    np.sqrt(horizontal_square + square[2], out=range_m)
+    west_square, south_square, up_square = west_south_up_m * west_south_up_m
+    horizontal_square = west_square + south_square
+    np.sqrt(horizontal_square + up_square, out=range_m)
     np.arctan2(up_m, np.sqrt(horizontal_square), out=elevation_deg)
     elevation_deg *= 180.0 / math.pi
