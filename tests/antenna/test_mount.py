@@ -43,8 +43,8 @@ def lobed() -> GainPattern:
 def test_tilt_agrees_with_rotations_of_scipy(
     heading_deg: float, tilt_deg: float, tilt_azimuth_deg: float
 ) -> None:
-    # Authority: scipy.spatial.transform.Rotation. In east, north, up the heading turns clockwise about up, the
-    # tilt takes up toward the azimuth, so it turns about their cross product (-cos, sin, 0).
+    # Authority: scipy.spatial.transform.Rotation. In east, north, up the heading turns clockwise about up,
+    # and the tilt takes up toward the azimuth, so it turns about their cross product (-cos, sin, 0).
     from scipy.spatial.transform import Rotation
 
     toward_rad = np.deg2rad(tilt_azimuth_deg)

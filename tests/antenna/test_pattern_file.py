@@ -228,14 +228,15 @@ REFUSED = {
     "one direction missing": (
         GRID.replace("90.0,30,-3.433333333333333\n", ""),
         [
-            "roof.csv: there is no row for azimuth_deg 90, elevation_deg 30; the grid of directions must be full"
+            "roof.csv: there is no row for azimuth_deg 90, elevation_deg 30; the grid of directions"
+            " must be full"
         ],
     ),
     "an odd elevation": (
         GRID.replace("\n180.0,30", "\n180.0,33"),
         [
-            "roof.csv: there is no row for azimuth_deg 0, elevation_deg 33, nor for 3 more directions; the grid of"
-            " directions must be full"
+            "roof.csv: there is no row for azimuth_deg 0, elevation_deg 33, nor for 3 more directions;"
+            " the grid of directions must be full"
         ],
     ),
     "begins above the horizon": (
