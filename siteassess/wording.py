@@ -47,10 +47,14 @@ def did_you_mean(name: str, known: Iterable[str], otherwise: str = "") -> str:
     """
     from difflib import get_close_matches
 
-    by_folded = {candidate.casefold(): candidate for candidate in known}
+    by_letters = {_letters(candidate): candidate for candidate in known}
     # difflib compares every pair of letters: a name of a megabyte is no misspelling.
-    close = get_close_matches(name.casefold()[:200], by_folded, n=1)
-    return f"did you mean {by_folded[close[0]]}?" if close else otherwise
+    close = get_close_matches(_letters(name[:200]), by_letters, n=1)
+    return f"did you mean {by_letters[close[0]]}?" if close else otherwise
+
+
+def _letters(name: str) -> str:
+    return "".join(sign for sign in name.casefold() if sign.isalnum())
 
 
 def _cut(text: str) -> str:

@@ -108,17 +108,18 @@ def _valid_blocks(record: type[AnyRecord], raw: object) -> tuple[AnyRecord | Non
 def _sky_mistakes(sky: SkyModel, file: str) -> Iterator[Mistake]:
     table = _signal_table()
     systems = tuple(dict.fromkeys(system for system, _ in table.values()))
-    yield from _name_mistakes(file, "systems", sky.systems, systems)
-    yield from _name_mistakes(file, "signals", sky.signals, tuple(table))
-    if {"systems", "signals"} <= sky.model_fields_set:
-        for index, name in enumerate(sky.signals):
-            system = table[name][0] if name in table else None
-            if system and system not in sky.systems:
-                allowed = f"sky.systems must name {system} too"
-                yield _given(file, ("sky", "signals", index), name, allowed)
-        heard = {table[name][0] for name in sky.signals if name in table}
+    name_mistakes = [
+        *_name_mistakes(file, "systems", sky.systems, systems),
+        *_name_mistakes(file, "signals", sky.signals, tuple(table)),
+    ]
+    yield from name_mistakes
+    if not name_mistakes and {"systems", "signals"} <= sky.model_fields_set:
+        system_of = [table[name][0] for name in sky.signals]
+        for index, (name, system) in enumerate(zip(sky.signals, system_of, strict=True)):
+            if system not in sky.systems:
+                yield _given(file, ("sky", "signals", index), name, f"sky.systems must name {system} too")
         for index, system in enumerate(sky.systems):
-            if system in systems and system not in heard:
+            if system not in system_of:
                 allowed = "sky.signals must name at least one signal of each system"
                 yield _given(file, ("sky", "systems", index), system, allowed)
     first, last = YEARS

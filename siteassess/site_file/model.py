@@ -85,7 +85,7 @@ class Place(Record):
     longitude_deg: Annotated[float, Field(ge=-180, le=360)] | None = Field(
         default=None, description="Longitude of the survey mark, WGS 84, east positive [deg]."
     )
-    crs: Annotated[str, Field(pattern=r"^[A-Za-z]+:[0-9A-Za-z_]+$")] | None = Field(
+    crs: Annotated[str, Field(pattern=r"^[A-Za-z]+:[0-9A-Za-z_.]+$")] | None = Field(
         default=None,
         description="Projected reference system of easting_m and northing_m, such as EPSG:27700.",
     )

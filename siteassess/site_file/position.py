@@ -1,5 +1,6 @@
 """Where the survey mark is, from whichever way the site file says it."""
 
+import math
 from typing import TYPE_CHECKING
 
 from siteassess.errors import InputError, Mistake
@@ -7,7 +8,7 @@ from siteassess.site_file.model import Place, Position
 from siteassess.wording import listed, shown
 
 if TYPE_CHECKING:
-    from pyproj import CRS
+    from pyproj import CRS, Transformer
 
 __all__ = ["survey_mark"]
 
@@ -16,6 +17,7 @@ PROJECTED = ("crs", "easting_m", "northing_m")
 EITHER = "it must hold latitude_deg and longitude_deg, or crs, easting_m and northing_m"
 # Bounds of reference systems are published to about 0.01 degrees.
 BOUNDS_MARGIN_DEG = 0.02
+FOLD_M = 10.0
 
 
 def survey_mark(place: Place, file: str) -> Position:
@@ -87,18 +89,12 @@ def _height_mistakes(place: Place, file: str) -> list[Mistake]:
 
 def _unprojected(place: Place, file: str) -> tuple[float, float]:
     """Latitude and longitude [deg] of a projected position."""
-    from pyproj import Transformer
-
     assert place.easting_m is not None and place.northing_m is not None
-    system = _projected_system(place, file)
-    metre = 1.0 / system.axis_info[0].unit_conversion_factor  # the system may count in feet
-    # always_xy: easting before northing, longitude before latitude, whatever the system's own order.
-    to_wgs84 = Transformer.from_crs(system, "EPSG:4326", always_xy=True)
-    longitude_deg, latitude_deg = to_wgs84.transform(place.easting_m * metre, place.northing_m * metre)
-    if _in_area(system, latitude_deg, longitude_deg):
-        return latitude_deg, longitude_deg
-    swapped_deg = to_wgs84.transform(place.northing_m * metre, place.easting_m * metre)
-    swapped = _in_area(system, swapped_deg[1], swapped_deg[0])
+    system, to_wgs84 = _projected_system(place, file)
+    found_deg = _place_in_area(system, to_wgs84, place.easting_m, place.northing_m)
+    if found_deg is not None:
+        return found_deg
+    swapped = _place_in_area(system, to_wgs84, place.northing_m, place.easting_m) is not None
     raise InputError(
         Mistake(
             file=file,
@@ -112,9 +108,9 @@ def _unprojected(place: Place, file: str) -> tuple[float, float]:
     )
 
 
-def _projected_system(place: Place, file: str) -> "CRS":
-    from pyproj import CRS
-    from pyproj.exceptions import CRSError
+def _projected_system(place: Place, file: str) -> tuple["CRS", "Transformer"]:
+    from pyproj import CRS, Transformer
+    from pyproj.exceptions import CRSError, ProjError
 
     def refusal(allowed: str) -> InputError:
         problem = f"is {shown(place.crs)}"
@@ -132,19 +128,36 @@ def _projected_system(place: Place, file: str) -> "CRS":
         raise refusal(
             "its axes must point east and north; or give latitude_deg and longitude_deg instead of it"
         )
-    return system
+    try:
+        # always_xy: easting before northing, longitude before latitude, whatever the system's own order.
+        return system, Transformer.from_crs(system, "EPSG:4326", always_xy=True)
+    except ProjError as error:
+        raise refusal(
+            "no way to WGS 84 is known; give latitude_deg and longitude_deg instead of it"
+        ) from error
 
 
-def _in_area(system: "CRS", latitude_deg: float, longitude_deg: float) -> bool:
+def _place_in_area(
+    system: "CRS", to_wgs84: "Transformer", easting_m: float, northing_m: float
+) -> tuple[float, float] | None:
+    """Latitude and longitude [deg], or None where the system does not reach."""
+    metre = 1.0 / system.axis_info[0].unit_conversion_factor  # some systems count in feet
+    easting, northing = easting_m * metre, northing_m * metre
+    longitude_deg, latitude_deg = to_wgs84.transform(easting, northing)
+    # Far outside its area a projection folds over: the way back then ends elsewhere.
+    back = to_wgs84.transform(longitude_deg, latitude_deg, direction="INVERSE")
+    if not math.dist(back, (easting, northing)) <= FOLD_M * metre:
+        return None
     area = system.area_of_use
     if area is None:
-        return abs(latitude_deg) <= 90.0 and abs(longitude_deg) <= 360.0
+        return latitude_deg, longitude_deg
     width_deg = (area.east - area.west) % 360.0 or 360.0
-    east_of_west_deg = (longitude_deg - area.west + BOUNDS_MARGIN_DEG) % 360.0
-    return bool(
+    east_of_edge_deg = (longitude_deg - area.west + BOUNDS_MARGIN_DEG) % 360.0
+    inside = (
         area.south - BOUNDS_MARGIN_DEG <= latitude_deg <= area.north + BOUNDS_MARGIN_DEG
-        and east_of_west_deg <= width_deg + 2.0 * BOUNDS_MARGIN_DEG
+        and east_of_edge_deg <= width_deg + 2.0 * BOUNDS_MARGIN_DEG
     )
+    return (latitude_deg, longitude_deg) if inside else None
 
 
 def _area_words(system: "CRS", crs: str | None) -> str:

@@ -81,8 +81,11 @@ def _parsed(text: str, file: str) -> dict[str, Any]:
             file=file, where="", problem="is nested too deeply", allowed="it must be a site file"
         )
         raise InputError(mistake) from error
-    except ValueError as error:  # TOMLDecodeError is one; a number of thousands of digits raises a plain one
+    except tomllib.TOMLDecodeError as error:
         raise InputError(_toml_mistake(str(error), text, file)) from error
+    except ValueError as error:  # from the conversion of a number of thousands of digits
+        mistake = Mistake(file=file, where="", problem="holds a number of too many digits", allowed="")
+        raise InputError(mistake) from error
     frozen: dict[str, Any] = _frozen(raw)
     return frozen
 

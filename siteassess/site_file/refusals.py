@@ -19,7 +19,9 @@ PATH_HINT = "write a Windows path with / or in single quotes"
 def refusals(error: ValidationError, file: str) -> list[Mistake]:
     """One mistake for each thing that the records refused, in the order of the schema."""
     schema = site_schema()
-    return [_mistake(detail, schema, file) for detail in error.errors(include_url=False)]
+    mistakes = [_mistake(detail, schema, file) for detail in error.errors(include_url=False)]
+    # A mandatory key that is only misspelt has its message already.
+    return [mistake for mistake in mistakes if not _is_misspelt(mistake, mistakes)]
 
 
 def key_path(*steps: str | int) -> str:
@@ -67,6 +69,14 @@ def _mistake(detail: ErrorDetails, schema: Node, file: str) -> Mistake:
         case _:
             allowed = _must_be(parent if "oneOf" in parent else node, steps)
     return Mistake(file=file, where=where, problem=f"is {_given(value)}", allowed=allowed, value=value)
+
+
+def _is_misspelt(missing: Mistake, mistakes: list[Mistake]) -> bool:
+    table, _, key = missing.where.rpartition(".")
+    return missing.problem == "is missing" and any(
+        mistake.allowed == f"did you mean {key}?" and mistake.where.rpartition(".")[0] == table
+        for mistake in mistakes
+    )
 
 
 def _follow(schema: Node, loc: tuple[str | int, ...]) -> tuple[list[str | int], Node, Node]:
