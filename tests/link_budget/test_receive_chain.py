@@ -28,7 +28,7 @@ def receiver(noise_figure_db: float) -> Part:
 
 
 # Authority: worked example of a geodetic receiver's manual. Preamplifier 2.5 dB and 30 dB, cable 15 dB,
-# receiver 10 dB give 3.14 dB (3.1447). The manual counts the cable as loss without noise, which is a cable at 0 K.
+# receiver 10 dB give 3.14 dB (3.1447). The manual counts the cable as loss without noise: a cable at 0 K.
 MANUAL = (amplifier(30.0, 2.5), cable(15.0, physical_temperature_k=0.0), receiver(10.0))
 
 
@@ -70,7 +70,7 @@ def test_line_at_290_k_has_its_loss_as_noise_figure(loss_db: float) -> None:
 
 
 def test_half_power_at_a_hundred_kelvin() -> None:
-    # Authority: thermal balance: half the power lost at 100 K adds 50 K behind it, 100 K referred to its input.
+    # Authority: thermal balance: half the power lost at 100 K adds 50 K behind it, 100 K at its input.
     half = cable(10.0 * math.log10(2.0), physical_temperature_k=100.0)
     assert cascade((half, receiver(0.0)), L1_HZ).temperature_k == pytest.approx(100.0)
 
@@ -78,7 +78,8 @@ def test_half_power_at_a_hundred_kelvin() -> None:
 def test_cascade_agrees_with_scikit_rf() -> None:
     # Authority: scikit-rf, noisy two-ports in cascade. Its passive networks carry no noise until it is set,
     # so the cable is given the noise figure of its loss.
-    skrf = pytest.importorskip("skrf")
+    import skrf
+
     frequency = skrf.Frequency(1.5, 1.6, 3, unit="GHz")
 
     def two_port(gain_db: float, noise_figure_db: float) -> object:
