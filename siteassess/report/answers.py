@@ -62,20 +62,22 @@ def _why(verdict: Verdict) -> str:
     missed = [finding for finding in _required(verdict) if finding.outcome == "missed"]
     told = (missed or _required(verdict)[:1])[:4]
     more = len(missed) - len(told)
-    reasons = [f"{finding.signal}: {plain(finding.reason)}" if finding.signal else _named(finding) for finding in told]
+    reasons = [f"{_subject(finding)}: {plain(finding.reason)}" for finding in told]
     if more > 0:
         reasons.append(f"{more} more under “Asked and found”.")
     return " ".join(reasons)
 
 
-def _named(finding: Finding) -> str:
-    return f"{read_criteria()[finding.criterion].title}: {plain(finding.reason)}"
+def _subject(finding: Finding) -> str:
+    return finding.signal or read_criteria()[finding.criterion].title
 
 
 def _worst_sector(verdict: Verdict) -> SectorShare | None:
     """The sector that loses the most satellite-time; where none loses any, the one with most hidden sky."""
     worst = max(
-        verdict.sectors, key=lambda sector: (sector.lost_satellite_time_share, sector.blocked_share), default=None
+        verdict.sectors,
+        key=lambda sector: (sector.lost_satellite_time_share, sector.blocked_share),
+        default=None,
     )
     if worst is None or (worst.lost_satellite_time_share <= 0 and worst.blocked_share <= 0):
         return None
@@ -89,8 +91,8 @@ def worst_direction(verdict: Verdict) -> str:
         return "None: nothing that was surveyed stands above the mask."
     name = SECTOR_WORDS[sector.name]
     text = (
-        f"The {name}: {percent(sector.blocked_share)} of its own sky above the mask is hidden, and obstacles there "
-        f"take {percent(sector.lost_satellite_time_share)} of all satellite-time."
+        f"The {name}: {percent(sector.blocked_share)} of its own sky above the mask is hidden, and "
+        f"obstacles there take {percent(sector.lost_satellite_time_share)} of all satellite-time."
     )
     if verdict.sky.peak_elevation_deg > 0:
         text += (
@@ -105,7 +107,7 @@ def _cost(obstacle: ObstacleCost) -> tuple[float, float]:
 
 
 def ranked_obstacles(verdict: Verdict) -> list[tuple[int, ObstacleCost]]:
-    """Obstacles with their index in the skyline, the dearest first: numbered 1, 2, ... in figures and tables."""
+    """Obstacles with their index in the skyline, the dearest first: numbered so in the report."""
     return sorted(enumerate(verdict.obstacles), key=lambda entry: _cost(entry[1]), reverse=True)
 
 
@@ -121,7 +123,7 @@ def worst_obstacle(verdict: Verdict) -> str:
     where = azimuth_range(obstacle.azimuth_from_deg, obstacle.azimuth_to_deg)
     text = f"“{plain(obstacle.name)}” ({where}, up to {number(obstacle.peak_elevation_deg)}°)"
     if lost_share <= 0:
-        return f"{text}, by the sky it takes: {percent(obstacle.blocked_share_above_mask)} of that above the mask."
+        return f"{text}: it takes {percent(obstacle.blocked_share_above_mask)} of the sky above the mask."
     return f"{text}: it takes {percent(lost_share)} of the satellite-time of {signal}."
 
 
@@ -129,11 +131,14 @@ def _hidden(assessment: Assessment) -> str:
     sky, verdict = assessment.verdict.sky, assessment.verdict
     text = (
         f"{percent(sky.blocked_share_above_mask)} of the sky above the "
-        f"{assessment.site.require.elevation_mask_deg:g}° mask, {percent(sky.blocked_share_of_hemisphere)} of the "
-        f"hemisphere, and {percent(verdict.blocked_satellite_time_share)} of the satellite-time above the mask."
+        f"{assessment.site.require.elevation_mask_deg:g}° mask, {percent(sky.blocked_share_of_hemisphere)} "
+        f"of the hemisphere, and {percent(verdict.blocked_satellite_time_share)} of the satellite-time "
+        "above the mask."
     )
     if sky.foliage_share_above_mask > 0:
-        text += f" Leaves stand before another {percent(sky.foliage_share_above_mask)} of the sky above the mask."
+        text += (
+            f" Leaves stand before another {percent(sky.foliage_share_above_mask)} of the sky above the mask."
+        )
     if sky.unsurveyed_share > 0:
         text += f" Nobody looked at {percent(sky.unsurveyed_share)} of it."
     return text

@@ -83,7 +83,10 @@ def _facts(assessment: Assessment) -> tuple[tuple[str, str], ...]:
             f"{number(position.latitude_deg, 6)}°, {number(position.longitude_deg, 6)}° (WGS 84), "
             f"{number(position.height_m, 2)} m above the ellipsoid",
         ),
-        ("Antenna", f"{plain(site.antenna.pattern)}, {number(site.mount.phase_centre_height_m, 2)} m above the mark"),
+        (
+            "Antenna",
+            f"{plain(site.antenna.pattern)}, {number(site.mount.phase_centre_height_m, 2)} m above the mark",
+        ),
         ("Signals", listed(site.sky.signals)),
         ("Elevation mask", f"{site.require.elevation_mask_deg:g}°"),
         ("Minimum C/N0", _minimum_cn0(assessment)),
@@ -100,7 +103,9 @@ def _minimum_cn0(assessment: Assessment) -> str:
     asked = assessment.site.require.min_cn0_dbhz
     if isinstance(asked, float | int):
         return f"{asked:g} dB-Hz"
-    return "; ".join(f"{budget.signal.name} {budget.min_cn0_dbhz:g} dB-Hz" for budget in assessment.budget.signals)
+    return "; ".join(
+        f"{budget.signal.name} {budget.min_cn0_dbhz:g} dB-Hz" for budget in assessment.budget.signals
+    )
 
 
 def _sky_section(assessment: Assessment) -> Section:
@@ -110,10 +115,11 @@ def _sky_section(assessment: Assessment) -> Section:
         heading="The sky above the antenna",
         figure="skyplot",
         figure_caption=(
-            "Skyplot: north is up, azimuth runs clockwise, the zenith is in the centre and the horizon at the rim. "
-            f"Tracks show one day of nominal orbits above the {mask} mask. Their shade and width give the margin of "
-            "C/N0 above the minimum, for the first of the site's signals that the satellite sends; dashed means below "
-            "the minimum, dotted means hidden. Numbers at the rim are those of the obstacle table."
+            "Skyplot: north is up, azimuth runs clockwise, the zenith is in the centre and the horizon at "
+            f"the rim. Tracks show one day of nominal orbits above the {mask} mask. Their shade and width "
+            "give the margin of C/N0 above the minimum, for the first of the site's signals that the "
+            "satellite sends; dashed means below the minimum, dotted means hidden. Numbers at the rim are "
+            "those of the obstacle table."
         ),
     )
 
@@ -142,7 +148,11 @@ def _horizon_section(assessment: Assessment) -> Section:
 def _survey_section(assessment: Assessment) -> Section:
     site = assessment.site
     gaps_deg = assessment.skyline.unsurveyed_deg
-    sentences = [f"Surveyed by: {plain(site.place.surveyed_by)}." if site.place.surveyed_by else "Surveyed by: not given."]
+    sentences = [
+        f"Surveyed by: {plain(site.place.surveyed_by)}."
+        if site.place.surveyed_by
+        else "Surveyed by: not given."
+    ]
     if not site.horizon:
         sentences.append("The site file names no horizon. Nothing is known about what hides the sky.")
     if len(gaps_deg):
@@ -152,7 +162,16 @@ def _survey_section(assessment: Assessment) -> Section:
         sentences.append("Every azimuth was looked at.")
     table = Table(
         caption="Sources of the horizon. Errors are one standard deviation.",
-        header=("Source", "File", "Date", "Bearings from", "Azimuth error", "Elevation error", "Complete", "Instrument"),
+        header=(
+            "Source",
+            "File",
+            "Date",
+            "Bearings from",
+            "Azimuth error",
+            "Elevation error",
+            "Complete",
+            "Instrument",
+        ),
         rows=tuple(_source_row(source) for source in site.horizon),
         align="llllrrll",
     )

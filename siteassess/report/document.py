@@ -29,5 +29,4 @@ def document_pdf(content: Content, figures: dict[str, str]) -> bytes:
         format="pdf",
         ignore_system_fonts=True,
         sys_inputs={"content": json.dumps(asdict(content)), "figures": json.dumps(figures)},
-        timestamp=0,
     )

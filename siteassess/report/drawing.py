@@ -5,25 +5,42 @@ from __future__ import annotations
 import io
 import warnings
 from collections.abc import Callable
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
-from numpy.typing import NDArray
+from numpy.typing import ArrayLike, NDArray
 
 if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
-    from siteassess.horizon.skyline import Obstacle, Outline
+    from siteassess.horizon.skyline import Obstacle, Skyline
 
-__all__ = ["INK", "LEAVES", "QUIET", "SOLID", "drawn_svg", "obstacle_edges", "outline_points", "shortened"]
+__all__ = [
+    "FREE_HANGING_LOOK",
+    "INK",
+    "LEAVES_LOOK",
+    "QUIET",
+    "SOLID",
+    "UNSURVEYED_LOOK",
+    "drawn_svg",
+    "obstacle_edges",
+    "on_paper",
+    "outline_points",
+    "shortened",
+]
 
 FloatArray = NDArray[np.float64]
+Look = dict[str, Any]
 
 INK = "#20262b"
 QUIET = "#8b949b"
 SOLID = "#c9c3ba"
-LEAVES = "#dfe6cf"
+UNSURVEYED_LOOK: Look = {"facecolor": "none", "edgecolor": "#b9bfc4", "hatch": "////", "linewidth": 0.0}
+LEAVES_LOOK: Look = {"facecolor": "#dfe6cf", "edgecolor": "#7c8c5c", "hatch": "....", "linewidth": 0.6}
+FREE_HANGING_LOOK: Look = {"facecolor": SOLID, "edgecolor": INK, "linewidth": 0.6}
+
 STEP_DEG = 1.0
+BESIDE_DEG = 1e-6
 # Not settings of the look: naming them would make matplotlib choose a window system.
 NOT_OURS = frozenset({"backend", "backend_fallback", "toolbar", "interactive"})
 
@@ -31,7 +48,7 @@ NOT_OURS = frozenset({"backend", "backend_fallback", "toolbar", "interactive"})
 def drawn_svg(draw: Callable[[], Figure], *, hash_salt: str) -> str:
     """A figure as SVG: the same text for the same figure, whatever the user's settings of matplotlib.
 
-    Letters become outlines, so that the figure looks alike everywhere and no name can carry markup into a page.
+    Letters become outlines, so that the figure looks alike everywhere and no name carries markup into a page.
 
     Parameters
     ----------
@@ -50,9 +67,8 @@ def drawn_svg(draw: Callable[[], Figure], *, hash_salt: str) -> str:
         # A name may hold letters that the packaged font lacks; a box stands for them.
         warnings.filterwarnings("ignore", message="Glyph .* missing from", category=UserWarning)
         figure = draw()
-        FigureCanvasSVG(figure).print_svg(
-            stream, metadata={"Date": None, "Creator": None, "Format": None, "Type": None}
-        )
+        canvas: Any = FigureCanvasSVG(figure)
+        canvas.print_svg(stream, metadata={"Date": None, "Creator": None, "Format": None, "Type": None})
     return stream.getvalue()
 
 
@@ -61,58 +77,46 @@ def shortened(text: str, letters: int) -> str:
     return text if len(text) <= letters else text[: letters - 1].rstrip() + "…"
 
 
-def outline_points(outline: Outline) -> tuple[FloatArray, FloatArray]:
-    """Azimuth and elevation of points along the solid outline, from 0 to 360, close enough to look curved."""
-    pieces = [
-        edge_points(start, end, low, high, straight)
-        for start, end, low, high, straight in zip(
-            outline.start_deg,
-            outline.end_deg,
-            outline.start_elevation_deg,
-            outline.end_elevation_deg,
-            outline.straight_in_space,
-            strict=True,
-        )
-    ]
-    if not pieces:
-        return np.array([0.0, 360.0]), np.array([-90.0, -90.0])
-    return np.concatenate([piece[0] for piece in pieces]), np.concatenate([piece[1] for piece in pieces])
+def on_paper(azimuth_deg: ArrayLike, elevation_deg: ArrayLike) -> Any:
+    """Place of a direction on the skyplot: x and y, the zenith at 0 and 0, the horizon at radius 1.
+
+    Examples
+    --------
+    >>> x, y = on_paper(90.0, 45.0)
+    >>> round(float(x), 6), round(float(y), 6)
+    (0.5, 0.0)
+    """
+    azimuth_rad = np.deg2rad(azimuth_deg)
+    radius = 1.0 - np.asarray(elevation_deg) / 90.0
+    return radius * np.sin(azimuth_rad), radius * np.cos(azimuth_rad)
+
+
+def outline_points(skyline: Skyline) -> tuple[FloatArray, FloatArray]:
+    """Azimuth and elevation of points along the solid outline, from 0 to 360, close enough to look curved.
+
+    The elevation is 0 where nothing rises above the horizon.
+    """
+    from siteassess.horizon.view import outline_elevation_deg
+
+    azimuth_deg = _close_points(0.0, 360.0, skyline.outline.start_deg)
+    return azimuth_deg, np.maximum(outline_elevation_deg(skyline, azimuth_deg), 0.0)
 
 
 def obstacle_edges(obstacle: Obstacle) -> tuple[FloatArray, FloatArray, FloatArray]:
-    """Azimuth, upper and lower elevation of points along an obstacle; azimuths are not wrapped.
+    """Azimuth, upper and lower elevation of points along an obstacle, none below 0.
 
-    The lower edge is the horizon where the obstacle stands on the ground.
+    Azimuths are not wrapped: an obstacle that runs through north ends beyond 360.
     """
-    azimuth_deg, upper_deg = _chained(obstacle.azimuth_deg, obstacle.elevation_deg, obstacle.straight_in_space)
-    if obstacle.underside_deg is None:
-        return azimuth_deg, upper_deg, np.zeros_like(upper_deg)
-    _, lower_deg = _chained(obstacle.azimuth_deg, obstacle.underside_deg, obstacle.straight_in_space)
-    return azimuth_deg, upper_deg, lower_deg
+    from siteassess.horizon.view import edge_elevation_deg, underside_elevation_deg
+
+    azimuth_deg = _close_points(obstacle.azimuth_deg[0], obstacle.azimuth_deg[-1], obstacle.azimuth_deg)
+    upper_deg = np.maximum(edge_elevation_deg(obstacle, azimuth_deg), 0.0)
+    return azimuth_deg, upper_deg, np.maximum(underside_elevation_deg(obstacle, azimuth_deg), 0.0)
 
 
-def _chained(azimuth_deg: FloatArray, elevation_deg: FloatArray, straight: bool) -> tuple[FloatArray, FloatArray]:
-    pieces = [
-        edge_points(*ends, straight)
-        for ends in zip(azimuth_deg[:-1], azimuth_deg[1:], elevation_deg[:-1], elevation_deg[1:], strict=True)
-    ]
-    if not pieces:
-        return azimuth_deg, elevation_deg
-    return np.concatenate([piece[0] for piece in pieces]), np.concatenate([piece[1] for piece in pieces])
-
-
-def edge_points(
-    start_deg: float, end_deg: float, low_deg: float, high_deg: float, straight: bool
-) -> tuple[FloatArray, FloatArray]:
-    """Points between two break points: an arc of a great circle, or linear in azimuth and elevation."""
-    count = max(2, int(np.ceil((end_deg - start_deg) / STEP_DEG)) + 1)
-    azimuth_deg = np.linspace(start_deg, end_deg, count)
-    span_deg = end_deg - start_deg
-    if straight and 0.0 < span_deg < 179.0 and min(low_deg, high_deg) > -89.0:
-        # The tangent of elevation along a great circle is a sinusoid of azimuth.
-        to_start, to_end = np.deg2rad(azimuth_deg - start_deg), np.deg2rad(end_deg - azimuth_deg)
-        tangent = (
-            np.tan(np.deg2rad(low_deg)) * np.sin(to_end) + np.tan(np.deg2rad(high_deg)) * np.sin(to_start)
-        ) / np.sin(np.deg2rad(span_deg))
-        return azimuth_deg, np.rad2deg(np.arctan(tangent))
-    return azimuth_deg, np.linspace(low_deg, high_deg, count)
+def _close_points(start_deg: float, end_deg: float, breaks_deg: FloatArray) -> FloatArray:
+    """Azimuths a degree apart, and both sides of every break, where an edge may be vertical."""
+    azimuth_deg = np.concatenate(
+        [np.arange(start_deg, end_deg, STEP_DEG), breaks_deg - BESIDE_DEG, breaks_deg + BESIDE_DEG]
+    )
+    return np.unique(np.clip(azimuth_deg, start_deg + BESIDE_DEG, end_deg - BESIDE_DEG))

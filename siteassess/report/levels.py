@@ -35,11 +35,16 @@ def budget_section(assessment: Assessment) -> Section:
 
 
 def _budget_table(budget: SignalBudget, lines: BudgetLines) -> Table:
-    at = [int(np.flatnonzero(np.isclose(lines.elevation_deg, wanted))[0]) for wanted in PRINTED_ELEVATIONS_DEG]
+    at = [
+        int(np.flatnonzero(np.isclose(lines.elevation_deg, wanted))[0]) for wanted in PRINTED_ELEVATIONS_DEG
+    ]
     signal, noise = budget.signal, budget.noise
 
     def row(label: str, values: np.ndarray | float) -> tuple[str, ...]:
-        return (label, *(number(value, 2) for value in np.broadcast_to(values, lines.elevation_deg.shape)[at]))
+        return (
+            label,
+            *(number(value, 2) for value in np.broadcast_to(values, lines.elevation_deg.shape)[at]),
+        )
 
     return Table(
         caption=f"{signal.name}, {lines.orbit_class} satellites, {number(signal.carrier_hz / 1e6, 3)} MHz",
@@ -54,7 +59,10 @@ def _budget_table(budget: SignalBudget, lines: BudgetLines) -> Table:
             row("less noise density N0, dBW/Hz", -noise.noise_density_dbw_per_hz),
             row("less loss inside the receiver, dB", -noise.implementation_loss_db),
             row("C/N0, dB-Hz", lines.cn0_open_sky_dbhz),
-            row(f"Margin above {budget.min_cn0_dbhz:g} dB-Hz, dB", lines.cn0_open_sky_dbhz - budget.min_cn0_dbhz),
+            row(
+                f"Margin above {budget.min_cn0_dbhz:g} dB-Hz, dB",
+                lines.cn0_open_sky_dbhz - budget.min_cn0_dbhz,
+            ),
         ),
         align="lrrrrr",
         tones=("", "", "", "total", "", "", "", "", "total", ""),
@@ -65,8 +73,20 @@ def noise_section(assessment: Assessment) -> Section:
     """Noise by carrier."""
     by_carrier = {budget.noise.carrier_hz: budget.noise for budget in assessment.budget.signals}
     table = Table(
-        caption="Noise referred to the antenna port. Efficiency: mean of co- plus cross-polar gain over the sphere.",
-        header=("Carrier, MHz", "Antenna, K", "Chain, K", "System, K", "Noise figure, dB", "N0, dBW/Hz", "Net gain, dB", "Efficiency"),
+        caption=(
+            "Noise referred to the antenna port. "
+            "Efficiency: mean of co- plus cross-polar gain over the sphere."
+        ),
+        header=(
+            "Carrier, MHz",
+            "Antenna, K",
+            "Chain, K",
+            "System, K",
+            "Noise figure, dB",
+            "N0, dBW/Hz",
+            "Net gain, dB",
+            "Efficiency",
+        ),
         rows=tuple(
             (
                 number(noise.carrier_hz / 1e6, 3),
@@ -105,7 +125,9 @@ def antenna_section(assessment: Assessment) -> Section:
         rows=tuple(_part_row(part) for part in assessment.site.chain),
         align="lrrrrr",
     )
-    return Section(key="antenna", heading="Antenna, mount and chain", sentences=tuple(sentences), tables=(table,))
+    return Section(
+        key="antenna", heading="Antenna, mount and chain", sentences=tuple(sentences), tables=(table,)
+    )
 
 
 def _part_row(part: Part) -> tuple[str, ...]:
@@ -121,5 +143,7 @@ def _part_row(part: Part) -> tuple[str, ...]:
 
 def _by_carrier(value: ByCarrier | None) -> str:
     if isinstance(value, dict):
-        return "; ".join(f"{number(level_db, 2)} at {plain(carrier)} MHz" for carrier, level_db in value.items())
+        return "; ".join(
+            f"{number(level_db, 2)} at {plain(carrier)} MHz" for carrier, level_db in value.items()
+        )
     return number(value, 2)

@@ -79,10 +79,10 @@ def signals_section(assessment: Assessment) -> Section:
     )
     table = Table(
         caption=(
-            "Shares of the open-sky satellite-time above the mask. “Open sky” is what antenna and chain alone would "
-            "leave usable, “of open sky” the usable part of that; “lost” is what obstacles and leaves take from it. "
-            "C/N0 in dB-Hz, of what is not hidden: 5 % of the time lies below the first figure, half below the second, "
-            "95 % below the third."
+            "Shares of the open-sky satellite-time above the mask. “Open sky” is what antenna and chain "
+            "alone would leave usable, “of open sky” the usable part of that; “lost” is what obstacles and "
+            "leaves take from it. C/N0 in dB-Hz, of what is not hidden: 5 % of the time lies below the "
+            "first figure, half below the second, 95 % below the third."
         ),
         header=(
             "Signal",
@@ -125,9 +125,9 @@ def obstacles_section(verdict: Verdict) -> Section:
         )
     table = Table(
         caption=(
-            "The dearest first. Sky: the part of the sky above the mask where the obstacle is the highest; for leaves, "
-            "the part they stand before. Satellite-time hidden: all satellites together. Lost: satellite-time usable "
-            "without obstacles that this one takes, for the signal that loses most."
+            "The dearest first. Sky: the part of the sky above the mask where the obstacle is the highest; "
+            "for leaves, the part they stand before. Satellite-time hidden: all satellites together. Lost: "
+            "satellite-time usable without obstacles that this one takes, for the signal that loses most."
         ),
         header=("No.", "Obstacle", "Kind", "Azimuths", "Highest", "Sky", "Satellite-time hidden", "Lost"),
         rows=tuple(rows),
@@ -140,8 +140,9 @@ def sectors_section(verdict: Verdict) -> Section:
     """Losses by compass point."""
     table = Table(
         caption=(
-            "Sectors of 45°, all signals pooled. Hidden sky: of the sector's own sky above the mask. Satellite-time: "
-            "the sector's part of all satellite-time above the mask, and how much of all that time obstacles take there."
+            "Sectors of 45°, all signals pooled. Hidden sky: of the sector's own sky above the mask. "
+            "Satellite-time: the sector's part of all satellite-time above the mask, and how much of all "
+            "that time obstacles take there."
         ),
         header=("Sector", "Azimuths", "Hidden sky", "Satellite-time", "Lost there"),
         rows=tuple(
@@ -164,8 +165,8 @@ def counts_section(assessment: Assessment) -> Section:
     counts = assessment.verdict.counts
     table = Table(
         caption=(
-            f"Counted over {assessment.site.sky.days:g} days. A satellite counts when at least one of the site's "
-            "signals from it is usable. “95 % of the time”: at least so many are."
+            f"Counted over {assessment.site.sky.days:g} days. A satellite counts when at least one of the "
+            "site's signals from it is usable. “95 % of the time”: at least so many are."
         ),
         header=("System", "Above the mask, mean", "Usable, mean", "95 % of the time", "Fewest"),
         rows=tuple(
@@ -188,8 +189,9 @@ def satellites_section(verdict: Verdict) -> Section:
     """Every satellite, for the appendix."""
     table = Table(
         caption=(
-            "Nominal slots, signal by signal: hours above the mask a day, usable share of that time, power of the "
-            "whole signal at a 0 dBic antenna, and C/N0 where it is not hidden. The same table is in satellites.csv."
+            "Nominal slots, signal by signal: hours above the mask a day, usable share of that time, power "
+            "of the whole signal at a 0 dBic antenna, and C/N0 where it is not hidden. The same table is "
+            "in satellites.csv."
         ),
         header=(
             "Satellite",

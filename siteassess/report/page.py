@@ -23,9 +23,13 @@ def page_html(content: Content, figures: dict[str, str]) -> str:
 
     layout = resources.files("siteassess.report").joinpath("page.html").read_text(encoding="utf-8")
     environment = Environment(
-        autoescape=True, undefined=StrictUndefined, trim_blocks=True, lstrip_blocks=True, keep_trailing_newline=True
+        autoescape=True,
+        undefined=StrictUndefined,
+        trim_blocks=True,
+        lstrip_blocks=True,
+        keep_trailing_newline=True,
     )
-    drawn = {name: Markup(inlined(svg, name)) for name, svg in figures.items()}  # noqa: S704
+    drawn = {name: Markup(inlined(svg, name)) for name, svg in figures.items()}
     return environment.from_string(layout).render(content=content, figures=drawn)
 
 

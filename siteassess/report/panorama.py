@@ -2,21 +2,26 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from dataclasses import dataclass
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
+from numpy.typing import NDArray
 
 from siteassess.report.answers import ranked_obstacles
 from siteassess.report.drawing import (
+    FREE_HANGING_LOOK,
     INK,
-    LEAVES,
+    LEAVES_LOOK,
     QUIET,
     SOLID,
+    UNSURVEYED_LOOK,
     drawn_svg,
     obstacle_edges,
     outline_points,
     shortened,
 )
+from siteassess.report.labels import label_rows
 from siteassess.report.phrases import plain
 
 if TYPE_CHECKING:
@@ -24,17 +29,30 @@ if TYPE_CHECKING:
     from matplotlib.figure import Figure
 
     from siteassess.assessment import Assessment
-    from siteassess.verdict.verdict import ObstacleCost
+    from siteassess.horizon.skyline import Skyline
+    from siteassess.verdict.verdict import ObstacleCost, Verdict
 
-__all__ = ["label_rows", "panorama_svg"]
+__all__ = ["panorama_svg"]
 
-SIZE_IN = (7.1, 3.0)
+FloatArray = NDArray[np.float64]
+
+WIDTH_IN = 7.1
+SKY_IN, BELOW_IN, ROW_IN = 1.75, 0.36, 0.145  # heights: of the sky, of what is below it, of a row of labels
 LOWEST_TOP_DEG = 30.0
 MOST_LABELS = 16
 LABEL_LETTERS = 24
 LETTER_DEG = 3.0  # width of a letter of a label, in degrees of azimuth on paper
 LABEL_ROWS = 5
-ROW_STEP = 0.085  # of the height of the axes
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Label:
+    """Name of an obstacle and its place above the sky."""
+
+    text: str
+    centre_deg: float
+    row: int
+    obstacle: ObstacleCost
 
 
 def panorama_svg(assessment: Assessment) -> str:
@@ -45,71 +63,54 @@ def panorama_svg(assessment: Assessment) -> str:
 def _figure(assessment: Assessment) -> Figure:
     from matplotlib.figure import Figure
 
-    figure = Figure(figsize=SIZE_IN)
-    axes = figure.add_axes((0.065, 0.13, 0.92, 0.55))
+    labels = _labels(assessment.verdict)
+    rows = 1 + max((label.row for label in labels), default=0)
+    height_in = BELOW_IN + SKY_IN + ROW_IN * (rows + 0.6)
+    figure = Figure(figsize=(WIDTH_IN, height_in))
+    axes = figure.add_axes((0.065, BELOW_IN / height_in, 0.92, SKY_IN / height_in))
     mask_deg = assessment.site.require.elevation_mask_deg
     peaks_deg = [obstacle.peak_elevation_deg for obstacle in assessment.verdict.obstacles]
     top_deg = min(90.0, max(LOWEST_TOP_DEG, 1.15 * max(peaks_deg, default=0.0), 1.5 * mask_deg))
-    axes.set(xlim=(0.0, 360.0), ylim=(0.0, top_deg), xlabel="azimuth", ylabel="elevation")
+    axes.set(xlim=(0.0, 360.0), ylim=(0.0, top_deg), ylabel="elevation")
     ticks_deg = np.arange(0, 361, 30)
     names = {0: "N", 90: "E", 180: "S", 270: "W", 360: "N"}
     axes.set_xticks(ticks_deg, [f"{tick}°\n{names.get(tick, '')}".rstrip() for tick in ticks_deg.tolist()])
     axes.yaxis.set_major_formatter("{x:.0f}°")
     axes.grid(color=QUIET, linewidth=0.3)
     axes.spines[["top", "right"]].set_visible(False)
-    _draw_skyline(axes, assessment, top_deg)
+    _draw_skyline(axes, assessment.skyline, top_deg)
     axes.axhline(mask_deg, color=INK, linewidth=0.9, dashes=(5, 2), zorder=5)
-    axes.text(359.0, mask_deg + 0.01 * top_deg, f"mask {mask_deg:g}°", ha="right", va="bottom", fontsize=6, zorder=7)
-    _draw_labels(axes, ranked_obstacles(assessment.verdict)[:MOST_LABELS], top_deg)
+    axes.text(
+        359.0, mask_deg + 0.01 * top_deg, f"mask {mask_deg:g}°", ha="right", va="bottom", fontsize=6, zorder=7
+    )
+    _draw_labels(axes, labels, top_deg)
     return figure
 
 
-def _draw_skyline(axes: Axes, assessment: Assessment, top_deg: float) -> None:
-    skyline = assessment.skyline
-    for start, end in skyline.unsurveyed_deg:
-        axes.fill_between(
-            [start, end], 0.0, top_deg, facecolor="none", edgecolor="#b9bfc4", hatch="////", linewidth=0.0, zorder=1
-        )
+def _draw_skyline(axes: Axes, skyline: Skyline, top_deg: float) -> None:
+    for start_deg, end_deg in skyline.unsurveyed_deg:
+        axes.fill_between([start_deg, end_deg], 0.0, top_deg, **UNSURVEYED_LOOK, zorder=1)
     for obstacle in skyline.obstacles:
-        azimuth_deg, upper_deg, lower_deg = obstacle_edges(obstacle)
-        # An obstacle that runs through north is drawn once at each end; what lies outside is cut off.
-        for turn_deg in (0.0, -360.0) if azimuth_deg[-1] > 360.0 else (0.0,):
-            if obstacle.cover == "foliage":
-                look = {"facecolor": LEAVES, "edgecolor": "#7c8c5c", "hatch": "....", "linewidth": 0.6, "zorder": 2}
-            elif obstacle.hangs_free:
-                look = {"facecolor": SOLID, "edgecolor": INK, "linewidth": 0.6, "zorder": 3}
-            else:
-                continue
-            axes.fill_between(azimuth_deg + turn_deg, np.maximum(lower_deg, 0.0), upper_deg, **look)
-    azimuth_deg, outline_deg = outline_points(skyline.outline)
-    axes.fill_between(azimuth_deg, 0.0, np.maximum(outline_deg, 0.0), facecolor=SOLID, linewidth=0, zorder=3)
-    axes.plot(azimuth_deg, np.maximum(outline_deg, 0.0), color=INK, linewidth=0.8, zorder=4)
+        if obstacle.cover == "foliage":
+            _draw_strip(axes, *obstacle_edges(obstacle), LEAVES_LOOK | {"zorder": 2})
+        elif obstacle.hangs_free:
+            _draw_strip(axes, *obstacle_edges(obstacle), FREE_HANGING_LOOK | {"zorder": 3})
+    azimuth_deg, outline_deg = outline_points(skyline)
+    axes.fill_between(azimuth_deg, 0.0, outline_deg, facecolor=SOLID, linewidth=0, zorder=3)
+    axes.plot(azimuth_deg, outline_deg, color=INK, linewidth=0.8, zorder=4)
 
 
-def label_rows(centre_deg: list[float], width_deg: list[float], rows: int) -> list[int | None]:
-    """The lowest row in which each label finds room beside those placed before; None where no row has any.
-
-    Examples
-    --------
-    >>> label_rows([10.0, 20.0, 100.0], [30.0, 30.0, 30.0], rows=1)
-    [0, None, 0]
-    """
-    taken: list[list[tuple[float, float]]] = [[] for _ in range(rows)]
-    found: list[int | None] = []
-    for centre, width in zip(centre_deg, width_deg, strict=True):
-        left, right = centre - width / 2, centre + width / 2
-        free = (
-            row for row in range(rows) if all(right <= start or left >= end for start, end in taken[row])
-        )
-        row = next(free, None)
-        if row is not None:
-            taken[row].append((left, right))
-        found.append(row)
-    return found
+def _draw_strip(
+    axes: Axes, azimuth_deg: FloatArray, upper_deg: FloatArray, lower_deg: FloatArray, look: dict[str, Any]
+) -> None:
+    """One obstacle; what runs through north is drawn at both ends, and cut off there."""
+    for turn_deg in (0.0, -360.0) if azimuth_deg[-1] > 360.0 else (0.0,):
+        axes.fill_between(azimuth_deg + turn_deg, lower_deg, upper_deg, **look)
 
 
-def _draw_labels(axes: Axes, ranked: list[tuple[int, ObstacleCost]], top_deg: float) -> None:
-    """Names above the figure, with a line down to the highest point; the dearest obstacles are served first."""
+def _labels(verdict: Verdict) -> list[Label]:
+    """Names of the dearest obstacles; who costs more is served first, who finds no room stays without."""
+    ranked = ranked_obstacles(verdict)[:MOST_LABELS]
     texts = [
         f"{rank} {shortened(plain(obstacle.name), LABEL_LETTERS)}"
         for rank, (_, obstacle) in enumerate(ranked, start=1)
@@ -120,13 +121,35 @@ def _draw_labels(axes: Axes, ranked: list[tuple[int, ObstacleCost]], top_deg: fl
         for (_, obstacle), width in zip(ranked, widths_deg, strict=True)
     ]
     rows = label_rows(centres_deg, widths_deg, LABEL_ROWS)
+    return [
+        Label(text=text, centre_deg=centre_deg, row=row, obstacle=obstacle)
+        for text, centre_deg, row, (_, obstacle) in zip(texts, centres_deg, rows, ranked, strict=True)
+        if row is not None
+    ]
+
+
+def _draw_labels(axes: Axes, labels: list[Label], top_deg: float) -> None:
+    """Names above the sky, each with a line down to its highest point."""
     box = {"boxstyle": "square,pad=0.15", "facecolor": "white", "edgecolor": "none"}
-    for text, centre_deg, row, (_, obstacle) in zip(texts, centres_deg, rows, ranked, strict=True):
-        if row is None:
-            continue
-        height_deg = top_deg * (1.06 + ROW_STEP * row)
-        peak = obstacle.peak_azimuth_deg, max(obstacle.peak_elevation_deg, 0.0)
-        axes.plot([peak[0], peak[0]], [peak[1], height_deg], color=INK, linewidth=0.4, zorder=6, clip_on=False)
+    for label in labels:
+        height_deg = top_deg * (1.0 + ROW_IN / SKY_IN * (label.row + 0.8))
+        azimuth_deg, peak_deg = label.obstacle.peak_azimuth_deg, max(label.obstacle.peak_elevation_deg, 0.0)
+        axes.plot(
+            [azimuth_deg, azimuth_deg],
+            [peak_deg, height_deg],
+            color=INK,
+            linewidth=0.4,
+            zorder=6,
+            clip_on=False,
+        )
         axes.text(
-            centre_deg, height_deg, text, ha="center", va="center", fontsize=6.5, bbox=box, zorder=8, parse_math=False
+            label.centre_deg,
+            height_deg,
+            label.text,
+            ha="center",
+            va="center",
+            fontsize=6.5,
+            bbox=box,
+            zorder=8,
+            parse_math=False,
         )

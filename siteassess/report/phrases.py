@@ -2,7 +2,17 @@
 
 import unicodedata
 
-__all__ = ["NOTHING", "azimuth_range", "compass_point", "decibels", "in_unit", "number", "percent", "plain", "told_apart"]
+__all__ = [
+    "NOTHING",
+    "azimuth_range",
+    "compass_point",
+    "decibels",
+    "in_unit",
+    "number",
+    "percent",
+    "plain",
+    "told_apart",
+]
 
 NOTHING = "–"
 COMPASS_POINTS = (
@@ -54,7 +64,9 @@ def percent(share: float | None, decimals: int = 1) -> str:
     >>> percent(0.1234)
     '12.3\\xa0%'
     """
-    return NOTHING if share is None or share != share else f"{number(100 * share, decimals)}\N{NO-BREAK SPACE}%"
+    return (
+        NOTHING if share is None or share != share else f"{number(100 * share, decimals)}\N{NO-BREAK SPACE}%"
+    )
 
 
 def decibels(value_db: float | None) -> str:

@@ -16,7 +16,7 @@ FORMULA_SIGNS = ("=", "+", "-", "@", "\t", "\r")
 
 
 def satellite_frame(assessment: Assessment) -> pd.DataFrame:
-    """One row a satellite and signal, in the order of the site file; columns are the fields of `SatelliteShare`.
+    """One row a satellite and signal; columns are the fields of `SatelliteShare`.
 
     Values are rounded as in the JSON; NaN where a satellite is never seen.
     """
@@ -28,7 +28,9 @@ def satellite_frame(assessment: Assessment) -> pd.DataFrame:
 
     columns = [field.name for field in fields(SatelliteShare)]
     shares = assessment.verdict.satellites
-    frame = pd.DataFrame({name: [getattr(share, name) for share in shares] for name in columns}, columns=columns)
+    frame = pd.DataFrame(
+        {name: [getattr(share, name) for share in shares] for name in columns}, columns=columns
+    )
     for name in columns:
         decimals = DECIMALS.get(name.rsplit("_", 1)[-1])
         if decimals is not None:

@@ -13,11 +13,14 @@ if TYPE_CHECKING:
 __all__ = ["CAUTIONS", "LIMITS", "assumptions"]
 
 CAUTIONS = (
-    "Work on roofs and masts, lifting, work near overhead lines, lightning protection and earthing follow the local "
-    "codes and are for licensed people.",
-    "Near transmitters, keep the local limits of exposure to radio-frequency fields, and have them checked by those "
-    "who are licensed to do so.",
-    "This is a radio assessment. It approves no structure, no electrical installation and no protection against falls.",
+    "Work on roofs and masts, lifting, work near overhead lines, lightning protection and earthing follow "
+    "the local codes and are for licensed people.",
+    "Near transmitters, keep the local limits of exposure to radio-frequency fields, and have them "
+    "checked by those who are licensed to do so.",
+    (
+        "This is a radio assessment. It approves no structure, no electrical installation and no protection "
+        "against falls."
+    ),
     "The predictions rest on the survey and on the models named here; they are no measurement.",
     "Only a trial log, recorded at the spot with the antenna in place, confirms them.",
 )
@@ -25,7 +28,10 @@ CAUTIONS = (
 LIMITS = (
     "Interference, jamming and reflections from walls, roofs and water are not part of C/N0 here.",
     "Rain, wet snow and ice on the antenna or in trees, and ionospheric scintillation, are not counted.",
-    "The skyline is as good as its survey. Errors of the instrument are printed, and are not carried into the shares.",
+    (
+        "The skyline is as good as its survey. Errors of the instrument are printed, and are not carried "
+        "into the shares."
+    ),
     "Diffraction treats each edge as a straight, perfectly absorbing knife edge, one obstacle at a time.",
     "Losses in leaves differ from tree to tree and with wind and season by several decibels.",
     "Nominal orbits say how often and how long satellites stand where, never at what time of day. "
@@ -65,7 +71,8 @@ def _power(assessment: Assessment) -> list[str]:
     texts = []
     if assessment.site.sky.power == "typical":
         texts.append(
-            "Satellites send as much above the guaranteed power as is typical of their signal: more than is promised."
+            "Satellites send as much above the guaranteed power as is typical of their signal: more than "
+            "is promised."
         )
     else:
         texts.append("Satellites deliver the power that their interface documents guarantee, and no more.")
@@ -126,6 +133,6 @@ def _usable(assessment: Assessment) -> str:
         else "signals that an obstacle or leaves weaken by 1 dB or more do not count"
     )
     return (
-        "A signal is usable when its satellite stands above the mask, is not hidden and reaches the minimum C/N0; "
-        f"{weakened}."
+        "A signal is usable when its satellite stands above the mask, is not hidden and reaches the "
+        f"minimum C/N0; {weakened}."
     )

@@ -2,7 +2,6 @@
 
 from __future__ import annotations
 
-import os
 import secrets
 import shutil
 from collections.abc import Callable
@@ -73,9 +72,7 @@ def _write(assessment: Assessment, folder: Path, tell: Callable[[str], None]) ->
         shutil.rmtree(fresh, ignore_errors=True)
 
 
-def _makers(
-    assessment: Assessment, tell: Callable[[str], None]
-) -> list[tuple[str, Callable[[], bytes]]]:
+def _makers(assessment: Assessment, tell: Callable[[str], None]) -> list[tuple[str, Callable[[], bytes]]]:
     """Names of the files and what makes them, the figures being drawn once."""
     from siteassess.report.content import report_content
     from siteassess.report.document import document_pdf
@@ -122,12 +119,12 @@ def _put_in_place(fresh: Path, folder: Path) -> None:
     swapped: list[str] = []
     try:
         for name in FILES:
-            os.replace(fresh / name, folder / name)
+            (fresh / name).replace(folder / name)
             swapped.append(name)
     except BaseException:
         for name in swapped:
             if name in stood:
-                os.replace(before / name, folder / name)
+                (before / name).replace(folder / name)
             else:
                 (folder / name).unlink()
         raise
