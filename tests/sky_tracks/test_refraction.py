@@ -19,6 +19,16 @@ def test_bend_at_sea_level(elevation_deg: float, bend_arcmin: float) -> None:
     assert bend_deg * 60 == pytest.approx(bend_arcmin, abs=HUNDREDTH_ARCMIN)
 
 
+@pytest.mark.parametrize(
+    ("elevation_deg", "height_m", "bend_arcmin"),
+    [(0.0, 1000.0, 31.14), (5.0, 2000.0, 8.24), (10.0, 1000.0, 4.56)],
+)
+def test_bend_on_a_mountain(elevation_deg: float, height_m: float, bend_arcmin: float) -> None:
+    # Authority: the same formula, evaluated by hand: 1 / 1.92677, 1 / 7.27929 and 1 / 13.15085 degrees.
+    bend_deg = apparent_elevation_deg(elevation_deg, height_m) - elevation_deg
+    assert bend_deg * 60 == pytest.approx(bend_arcmin, abs=HUNDREDTH_ARCMIN)
+
+
 @pytest.mark.parametrize("height_m", [0.0, 500.0, 1500.0, 3000.0])
 @pytest.mark.parametrize("elevation_deg", [0.0, 1.0, 3.0, 6.0, 10.0])
 def test_bend_agrees_with_the_inverse_formula(elevation_deg: float, height_m: float) -> None:
