@@ -5,11 +5,12 @@ from typing import Any
 import numpy as np
 from numpy.typing import ArrayLike
 
+from siteassess.decibels import to_db
 from siteassess.link_budget.gases import gas_loss_db
 from siteassess.link_budget.spreading import free_space_loss_db, slant_range_m
 from siteassess.tables import packaged_columns
 
-__all__ = ["LOWEST_ELEVATION_DEG", "beam_gain_db"]
+__all__ = ["LOWEST_ELEVATION_DEG", "beam_gain_db", "even_cone_gain_dbi"]
 
 LOWEST_ELEVATION_DEG = 5.0  # interface documents guarantee nothing below; the beam is held from here down
 
@@ -47,6 +48,17 @@ def beam_gain_db(beam: str, elevation_deg: ArrayLike) -> Any:
     curve_db = np.interp(held_deg, table["elevation_deg"][known], table[beam][known]) - GPS_MINIMUM_DBW[beam]
     carrier_hz = GPS_CARRIER_HZ[beam]
     return curve_db + _path_loss_db(carrier_hz, held_deg) - _path_loss_db(carrier_hz, LOWEST_ELEVATION_DEG)
+
+
+def even_cone_gain_dbi(half_angle_deg: ArrayLike) -> Any:
+    """Gain [dBi] of a lossless beam that fills a cone evenly: the sphere's solid angle over that of the cone.
+
+    Examples
+    --------
+    >>> round(float(even_cone_gain_dbi(21.3)), 1)
+    14.7
+    """
+    return to_db(2.0 / (1.0 - np.cos(np.deg2rad(half_angle_deg))))
 
 
 def _path_loss_db(carrier_hz: float, elevation_deg: ArrayLike) -> Any:

@@ -37,9 +37,9 @@ def skyline_loss_db(
 ) -> tuple[FloatArray, IndexArray]:
     """Loss by diffraction and leaves toward directions; the losses of several obstacles add.
 
-    A solid obstacle of known distance acts by its nearest edge, sides and underside included, as a knife edge;
-    a narrow one by the difference of its two edges. Without a distance an edge is hard: no loss beside it, and
-    none computed behind it, where the line of sight is hidden anyway.
+    A solid obstacle of known distance acts by its nearest edge, sides and underside included, as a knife
+    edge; a narrow one by the difference of its two edges. Without a distance an edge is hard: no loss beside
+    it, and none computed behind it, where the line of sight is hidden anyway.
 
     Parameters
     ----------
