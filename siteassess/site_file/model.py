@@ -254,12 +254,12 @@ class Requirements(Record):
         default=False,
         description="Whether signals weakened by leaves or round a solid edge count as usable.",
     )
-    max_blocked_share_of_hemisphere: Share | None = Field(
-        default=None, description="Largest blocked part of the sky above the mask, of the hemisphere [share]."
+    max_blocked_sky_share: Share | None = Field(
+        default=None, description="Largest hidden sky above the mask, as a share of the hemisphere [share]."
     )
-    max_largest_block_share: Share | None = Field(
+    max_block_share: Share | None = Field(
         default=None,
-        description="Largest single block of hidden sky above the mask, of the hemisphere [share].",
+        description="Largest stretch of hidden sky above the mask, as a share of the hemisphere [share].",
     )
     max_horizon_deg: Annotated[float, Field(ge=0, le=90)] | None = Field(
         default=None, description="Highest elevation that the solid skyline may reach [deg]."

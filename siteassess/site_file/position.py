@@ -149,8 +149,7 @@ def _place_in_area(
     if not math.dist(back, (easting, northing)) <= FOLD_M * metre:
         return None
     area = system.area_of_use
-    if area is None:
-        return latitude_deg, longitude_deg
+    assert area is not None  # every projected system of the registry has one
     width_deg = (area.east - area.west) % 360.0 or 360.0
     east_of_edge_deg = (longitude_deg - area.west + BOUNDS_MARGIN_DEG) % 360.0
     inside = (
@@ -162,7 +161,6 @@ def _place_in_area(
 
 def _area_words(system: "CRS", crs: str | None) -> str:
     area = system.area_of_use
-    if area is None:
-        return f"they must be a place on the Earth in {crs}"
+    assert area is not None
     latitudes = f"latitude {area.south:g} to {area.north:g}"
     return f"the area of {crs} is {latitudes} and longitude {area.west:g} to {area.east:g}"
