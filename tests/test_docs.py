@@ -64,7 +64,7 @@ def table_rows(text: str) -> Iterator[list[str]]:
     lines = text.splitlines()
     for line, following in zip(lines, [*lines[1:], ""], strict=True):
         if line.startswith("|") and not line.startswith("| ---") and not following.startswith("| ---"):
-            yield [cell.strip() for cell in line.strip("|").split(" | ")]
+            yield [cell.strip() for cell in line.strip("|").split("|")]
 
 
 # Command line
@@ -167,7 +167,7 @@ def docstrings(name: str) -> Iterator[str]:
 
 
 def cited_keys(name: str) -> set[str]:
-    """Keys in References sections of docstrings, and keys with a number in any comment or text."""
+    """Keys in References sections of docstrings, and keys with a number in any other prose."""
     cited = set()
     for text in docstrings(name):
         for section in re.findall(r"References\n-+\n(.*?)(?=\n\n\S|\Z)", text, re.DOTALL):
@@ -176,7 +176,7 @@ def cited_keys(name: str) -> set[str]:
     assert path is not None
     with tokenize.open(path) as source:
         for token in tokenize.generate_tokens(source.readline):
-            if token.type in (tokenize.COMMENT, tokenize.STRING):
+            if token.type == tokenize.COMMENT or token.string.startswith('"""'):
                 cited |= set(re.findall(r"\[([A-Z][A-Za-z&. -]*\d[\w.-]*)\]", token.string))
     return cited
 

@@ -16,10 +16,10 @@ from pathlib import Path
 import numpy as np
 from numpy.typing import NDArray
 from scipy.special import fresnel
-from siteassess.horizon.read import read_skyline
 
 from siteassess import assess, read_site
 from siteassess.constants import BOLTZMANN_J_PER_K, SPEED_OF_LIGHT_M_PER_S
+from siteassess.horizon.read import read_skyline
 from siteassess.horizon.shares import SkyShares, sky_shares
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.view import outline_elevation_deg
@@ -65,8 +65,8 @@ class Row:
 
     def __str__(self) -> str:
         ours, authority = (f"{value:.{self.decimals}f}" for value in (self.ours, self.authority))
-        # Adding 0 makes -0.00 a plain 0.00, whichever side of zero the last digits fall on.
-        difference = f"{round(self.ours - self.authority, self.decimals) + 0.0:.{self.decimals}f}"
+        # Of the printed values; adding 0 makes -0.00 a plain 0.00.
+        difference = f"{round(float(ours) - float(authority), self.decimals) + 0.0:.{self.decimals}f}"
         ours, authority = f"{ours} {self.unit}".strip(), f"{authority} {self.unit}".strip()
         return f"| {self.quantity} | {ours} | {authority} | {difference} | {self.source} |"
 
@@ -203,7 +203,7 @@ def _orbit_rows() -> Iterator[Row]:
         )
     for system, radius_m in (("GPS", 26_559_700.0), ("GLONASS", 25_508_000.0), ("Galileo", 29_599_801.0)):
         yield Row(
-            quantity=f"share of {system} satellites above 5 degrees, mean over the Earth",
+            quantity=f"share of {system} satellites above 5 deg, mean over the Earth",
             ours=_mean_visible_share(system),
             authority=_visible_share(radius_m, 5.0),
             unit="",
@@ -214,12 +214,12 @@ def _orbit_rows() -> Iterator[Row]:
 
 def _mean_visible_share(system: str) -> float:
     """Share of satellites above 5 degrees, averaged over a cycle, over latitude and over longitude."""
-    node, weight = np.polynomial.legendre.leggauss(8)
+    node, weight = np.polynomial.legendre.leggauss(16)
     orbits = nominal_orbits([system], START)
     shares = []
     for latitude_deg in np.rad2deg(np.arcsin(node)):
         above = []
-        for longitude_deg in (0.0, 90.0, 180.0, 270.0):
+        for longitude_deg in (0.0, 120.0, 240.0):
             position = Position(latitude_deg=float(latitude_deg), longitude_deg=longitude_deg, height_m=0.0)
             tracks = sky_tracks(orbits, position, days=1.0, step_s=600.0)
             above.append(np.mean(tracks.elevation_deg >= 5.0))
@@ -240,7 +240,7 @@ def _power_rows() -> Iterator[Row]:
     for elevation_deg, expected_dbw in figure.items():
         terms = received_power(signal, "MEO", float(elevation_deg), 26_559.7e3)
         yield Row(
-            quantity=f"received power of GPS L1 C/A at {elevation_deg} degrees",
+            quantity=f"received power of GPS L1 C/A at {elevation_deg} deg",
             ours=float(terms.received_power_dbw),
             authority=expected_dbw,
             unit="dBW",
@@ -252,7 +252,7 @@ def _power_rows() -> Iterator[Row]:
 def _air_rows() -> Iterator[Row]:
     for elevation_deg, expected_db in {90: 0.0344, 45: 0.0487, 10: 0.195, 5: 0.370}.items():
         yield Row(
-            quantity=f"gas loss at 1575.42 MHz, {elevation_deg} degrees",
+            quantity=f"gas loss at 1575.42 MHz, {elevation_deg} deg",
             ours=float(gas_loss_db(L1_HZ, float(elevation_deg))),
             authority=expected_db,
             unit="dB",
@@ -262,7 +262,7 @@ def _air_rows() -> Iterator[Row]:
     for elevation_deg, expected_arcmin in {0: 34.72, 1: 26.02, 2: 20.28, 5: 11.19, 10: 5.52}.items():
         bend_deg = float(apparent_elevation_deg(float(elevation_deg), 0.0)) - elevation_deg
         yield Row(
-            quantity=f"refraction at {elevation_deg} degrees, sea level",
+            quantity=f"refraction at {elevation_deg} deg, sea level",
             ours=60.0 * bend_deg,
             authority=expected_arcmin,
             unit="arcmin",
@@ -272,7 +272,7 @@ def _air_rows() -> Iterator[Row]:
     for elevation_deg in (20, 45):
         bend_deg = float(apparent_elevation_deg(float(elevation_deg), 0.0)) - elevation_deg
         yield Row(
-            quantity=f"refraction at {elevation_deg} degrees, against light",
+            quantity=f"refraction at {elevation_deg} deg, against light",
             ours=60.0 * bend_deg,
             authority=_bend_of_light_arcmin(float(elevation_deg)),
             unit="arcmin",
@@ -305,7 +305,7 @@ def _obstacle_rows() -> Iterator[Row]:
             source="[P.526] 4.1, Fresnel integrals of scipy",
         )
     yield Row(
-        quantity="edge 20 m away, satellite 1 degree below it, 1575.42 MHz",
+        quantity="edge 20 m away, satellite 1 deg below it, 1575.42 MHz",
         ours=float(knife_edge_loss_db(fresnel_parameter(1.0, 20.0, L1_M))),
         authority=8.22,
         unit="dB",
@@ -337,7 +337,7 @@ def _obstacle_rows() -> Iterator[Row]:
             source="[Weissberger]",
         )
     yield Row(
-        quantity="leaves, slant path of 10 m at 30 degrees, 1575.42 MHz",
+        quantity="leaves, slant path of 10 m at 30 deg, 1575.42 MHz",
         ours=float(slant_path_loss_db(10.0, L1_HZ, 30.0)),
         authority=9.306,
         unit="dB",
@@ -358,15 +358,15 @@ def _strip_db(half_nu: float) -> float:
 
 
 def _noise_rows() -> Iterator[Row]:
-    manual = "worked example of a receiver manual, Friis' formula"
+    manual = "worked example of a receiver manual, which leaves out the noise of the cable itself"
     chain = (
         Part(part="preamplifier", gain_db=30.0, noise_figure_db=2.5),
-        Part(part="cable", loss_db=15.0),
+        Part(part="cable", loss_db=15.0, physical_temperature_k=0.0),
         Part(part="receiver", noise_figure_db=10.0),
     )
     parts = cascade(chain, L1_HZ)
     yield Row(
-        quantity="noise figure of preamplifier, cable and receiver",
+        quantity="noise figure of preamplifier, noiseless cable and receiver",
         ours=parts.noise_figure_db,
         authority=3.1447,
         unit="dB",
@@ -413,7 +413,7 @@ def _horizon_rows() -> Iterator[Row]:
     level, mask_5 = "azimuth_deg,elevation_deg\n0,10\n", 5.0
     sector = "azimuth_deg,elevation_deg,obstacle\n45,30,wall\n135,30,wall\n"
     yield Row(
-        quantity="hemisphere below a level horizon of 10 degrees",
+        quantity="hemisphere below a level horizon of 10 deg",
         ours=_shares(level, mask_5).blocked_share_of_hemisphere,
         authority=math.sin(math.radians(10.0)),
         unit="",
@@ -421,7 +421,7 @@ def _horizon_rows() -> Iterator[Row]:
         source=zone,
     )
     yield Row(
-        quantity="hemisphere behind a 90 degree sector up to 30 degrees",
+        quantity="hemisphere behind a 90 deg sector up to 30 deg",
         ours=_shares(sector, mask_5).blocked_share_of_hemisphere,
         authority=0.125,
         unit="",
@@ -430,7 +430,7 @@ def _horizon_rows() -> Iterator[Row]:
     )
     low, high = math.sin(math.radians(10.0)), math.sin(math.radians(30.0))
     yield Row(
-        quantity="the same sector, of the sky above 10 degrees",
+        quantity="the same sector, of the sky above 10 deg",
         ours=_shares(sector, 10.0).blocked_share_above_mask,
         authority=(high - low) / (1.0 - low) / 4.0,
         unit="",
@@ -441,7 +441,7 @@ def _horizon_rows() -> Iterator[Row]:
     end = f"{math.degrees(math.atan2(3.0, end_m))},{end_m},wall"
     wall = f"azimuth_deg,elevation_deg,distance_m,obstacle\n45,{end}\n135,{end}\n"
     yield Row(
-        quantity="middle of a straight wall 3 m high, 10 m away, from its ends 45 degrees to either side",
+        quantity="middle of a straight wall 3 m high, 10 m away, from its ends 45 deg to either side",
         ours=float(outline_elevation_deg(_skyline(wall), 90.0)),
         authority=math.degrees(math.atan2(3.0, 10.0)),
         unit="deg",

@@ -1,8 +1,8 @@
 """Open-sky C/N0 against a permanent reference station, with nothing fitted.
 
 Authority: tests/authorities/measured_cn0_utah_2018.csv, C/N0 as the receiver recorded it on 2018-07-29.
-The chain is not published; tests/link_budget/measured_station.toml states ordinary parts, those of the starter
-site.
+The chain is not published: tests/link_budget/measured_station.toml states ordinary parts, those of the
+starter site.
 """
 
 import csv
