@@ -11,7 +11,12 @@ import siteassess
 from siteassess.tables import packaged_columns, packaged_header, packaged_rows
 
 PACKAGE = Path(siteassess.__file__).parent
-TABLES = sorted(path.relative_to(PACKAGE).as_posix() for path in PACKAGE.rglob("*.csv"))
+# A starter site is an example for users, not a table.
+TABLES = sorted(
+    path.relative_to(PACKAGE).as_posix()
+    for path in PACKAGE.rglob("*.csv")
+    if "starter" not in path.parent.name
+)
 
 UNIT_SUFFIXES = (
     *("_deg", "_m", "_s", "_hz", "_k", "_db", "_dbi", "_dbic", "_dbw", "_dbhz", "_share"),
