@@ -27,8 +27,8 @@ def crossing_azimuths(
     Returns
     -------
     array, shape (pair, 2)
-        Crossings inside the interval [deg]; NaN where there are fewer. Two curves of one kind cross at most once,
-        a line and an arc twice.
+        Crossings inside the interval [deg]; NaN where there are fewer. Two curves of one kind cross at most
+        once, a line and an arc twice.
     """
     found = np.full((len(first), 2), np.nan)
     at_start = _difference(curves, first, second, start_deg)

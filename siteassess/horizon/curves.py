@@ -1,8 +1,8 @@
 """Edges on the sky as curves of elevation over azimuth: their values, their areas, their level crossings.
 
 Two kinds: linear in azimuth and elevation, and straight in space, which is an arc of a great circle,
-tan(el) = c cos(az - az0) + s sin(az - az0). Arcs are cut at their highest point and at the horizon, so that every
-curve is monotonic and bends one way only; that is what makes all crossings unique or closed.
+tan(el) = c cos(az - az0) + s sin(az - az0). Arcs are cut at their highest point and at the horizon, so that
+every curve is monotonic and bends one way only; that is what makes crossings unique or closed.
 """
 
 from dataclasses import dataclass, fields
@@ -13,7 +13,11 @@ from numpy.typing import NDArray
 
 __all__ = [
     "NOTHING_DEG",
+    "BoolArray",
     "Curves",
+    "FloatArray",
+    "IndexArray",
+    "between_on_great_circle",
     "capped_area",
     "curves_between",
     "edge_elevation",
@@ -31,7 +35,7 @@ NOTHING_DEG = -90.0  # elevation of the outline where nothing forms it
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Curves:
-    """A table of monotonic curves within 0..360 degrees of azimuth; the last one is "nothing", at -90 degrees.
+    """A table of monotonic curves within 0..360 degrees of azimuth; the last one is "nothing", at -90.
 
     The index -1 therefore means "nothing" wherever curves are named by index.
 
@@ -142,6 +146,14 @@ def join_curves(*tables: Curves) -> Curves:
     return Curves(**columns)
 
 
+def between_on_great_circle(
+    azimuth_deg: FloatArray, start_deg: FloatArray, end_deg: FloatArray, start: FloatArray, end: FloatArray
+) -> FloatArray:
+    """A quantity c cos(az) + s sin(az), such as the tangent of elevation, from its values at two azimuths."""
+    before, behind = np.deg2rad(azimuth_deg - start_deg), np.deg2rad(end_deg - azimuth_deg)
+    return np.asarray((start * np.sin(behind) + end * np.sin(before)) / np.sin(before + behind))
+
+
 def tangent_terms(
     curves: Curves, index: IndexArray, azimuth_deg: FloatArray
 ) -> tuple[FloatArray, FloatArray]:
@@ -179,7 +191,7 @@ def _area(curves: Curves, index: IndexArray, start_deg: FloatArray, end_deg: Flo
         ends = []
         for azimuth_deg in (start_deg[arc], end_deg[arc]):
             tangent, derivative = tangent_terms(curves, index[arc], azimuth_deg)
-            # int t / sqrt(1 + t^2) d az = -arcsin(t' / sqrt(1 + t^2 + t'^2)), written without loss near the horizon
+            # int t / sqrt(1 + t^2) d az = -arctan(t' / sqrt(1 + t^2))
             ends.append(-np.arctan2(derivative, np.hypot(1.0, tangent)))
         area[arc] = ends[1] - ends[0]
     return area
@@ -188,7 +200,7 @@ def _area(curves: Curves, index: IndexArray, start_deg: FloatArray, end_deg: Flo
 def level_azimuth(
     curves: Curves, index: IndexArray, start_deg: FloatArray, end_deg: FloatArray, level_deg: FloatArray
 ) -> FloatArray:
-    """Azimuth [deg] between start and end at which a curve passes a level that lies between its end values."""
+    """Azimuth [deg] between start and end at which a curve passes a level between its end values."""
     with np.errstate(divide="ignore", invalid="ignore"):
         azimuth_deg: FloatArray = (
             curves.origin_deg[index] + (level_deg - curves.level[index]) / curves.slope[index]

@@ -66,7 +66,7 @@ def upper_envelope(obstacles: Sequence[Obstacle]) -> Outline:
 def obstacle_curves(
     obstacles: Sequence[Obstacle], which: Iterable[int], *, underside: bool = False
 ) -> Curves:
-    """Curves of the upper edges (or undersides) of some obstacles, owned by their positions in the sequence."""
+    """Curves of the upper edges (or undersides) of some obstacles, owned by their positions."""
     chosen = [(index, obstacles[index]) for index in which]
     azimuth_deg = np.concatenate([np.empty(0), *(one.azimuth_deg for _, one in chosen)])
     edges = [one.underside_deg if underside else one.elevation_deg for _, one in chosen]
@@ -163,7 +163,8 @@ def _merged_pairs(
         other = np.where(pair == pair[-1], -1, other)
     end_deg = _ends(pair, start_deg)
     wide = end_deg > start_deg
-    pair, start_deg, end_deg, one, other = (x[wide] for x in (pair, start_deg, end_deg, one, other))
+    pair, one, other = pair[wide], one[wide], other[wide]
+    start_deg, end_deg = start_deg[wide], end_deg[wide]
 
     contested = np.flatnonzero((one >= 0) & (other >= 0))
     crossing_deg = crossing_azimuths(
@@ -173,8 +174,9 @@ def _merged_pairs(
     split = contested[row]
     pair, one, other = (np.append(x, x[split]) for x in (pair, one, other))
     start_deg = np.append(start_deg, crossing_deg[row, column])
-    order = np.lexsort((start_deg, pair)) if len(row) else slice(None)
-    pair, one, other, start_deg = pair[order], one[order], other[order], start_deg[order]
+    if len(row):
+        order = np.lexsort((start_deg, pair))
+        pair, one, other, start_deg = pair[order], one[order], other[order], start_deg[order]
 
     higher = _higher(curves, one, other, 0.5 * (start_deg + _ends(pair, start_deg)))
     changes = np.append(True, (higher[1:] != higher[:-1]) | (pair[1:] != pair[:-1]))

@@ -1,7 +1,7 @@
 """Which obstacle takes which part of the sky: disjoint regions between an upper and a lower edge.
 
-Where several hide a direction, the one with the highest upper edge counts. At one azimuth what that leaves of an
-obstacle is one interval: from its own underside up to its top, or to the lowest underside among the higher ones.
+Where several hide a direction, the one with the highest upper edge counts. At one azimuth that leaves one
+interval of each: from its own underside up to its top, or to the lowest underside among the higher ones.
 """
 
 from collections.abc import Sequence
@@ -32,7 +32,8 @@ class Region:
     curve : integer array
         The edge.
     sign : array
-        1 for an upper edge, -1 for a lower one: the sky between two levels is the signed sum of what lies below.
+        1 for an upper edge, -1 for a lower one: the part between two levels is the signed sum of what lies
+        below.
     obstacle : integer array
         Index in `Skyline.obstacles` of what takes this part.
     """
@@ -162,7 +163,7 @@ def _all_breaks(curves: Curves, bands: list[_Band]) -> FloatArray:
             found.append(
                 crossing_azimuths(curves, one[both], other[both], start_deg[both], end_deg[both]).ravel()
             )
-    azimuth_deg = np.unique(np.concatenate(found))
+    azimuth_deg: FloatArray = np.unique(np.concatenate(found))
     return azimuth_deg[~np.isnan(azimuth_deg)]
 
 

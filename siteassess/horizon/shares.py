@@ -26,21 +26,23 @@ class SkyShares:
     blocked_share_above_mask : float
         Sky hidden by solid obstacles above the mask, as a share of the sky above the mask.
     largest_block_share : float
-        The largest stretch of hidden sky above the mask that is contiguous in azimuth, as a share of the hemisphere.
+        The largest stretch of hidden sky above the mask that is contiguous in azimuth, as a share of the
+        hemisphere.
     largest_block_deg : tuple of float, or None
-        Azimuths from and to of that stretch, clockwise (the second may pass 360); None when nothing is hidden.
+        Azimuths from and to of that stretch, clockwise (the second may pass 360); None when nothing is
+        hidden.
     foliage_share_above_mask : float
         Sky above the mask that is open but for leaves, as a share of the sky above the mask.
     unsurveyed_share : float
-        Sky above the mask in directions that nobody looked at and that nothing known hides, as a share of the sky
-        above the mask.
+        Sky above the mask in directions that nobody looked at and that nothing known hides, as a share of the
+        sky above the mask.
     obstacle_blocked_share_above_mask : tuple of float
-        One element an obstacle of the skyline: the sky above the mask where it is the highest that hides (or, for
-        foliage, the highest foliage over open sky), as a share of the sky above the mask.
+        One element an obstacle of the skyline: the sky above the mask where it is the highest that hides (or,
+        for foliage, the highest foliage over open sky), as a share of the sky above the mask.
     sector_blocked_share : tuple of float
-        Hidden share of the sky above the mask in each of the eight 45 degree sectors centred on N, NE, E, ... NW.
+        Hidden share of the sky above the mask in each of the eight 45 degree sectors round N, NE, ... NW.
     peak_elevation_deg, peak_azimuth_deg : float
-        Highest point of the outline of what is solid (0 and 0 when there is none above the horizon).
+        Highest point of all solid edges, hanging ones too (0 and 0 when there is none above the horizon).
     """
 
     blocked_share_of_hemisphere: float
@@ -72,8 +74,8 @@ def sky_shares(skyline: Skyline, mask_deg: float) -> SkyShares:
 
     References
     ----------
-    The solid angle below an edge el(az) is the integral of sin(el) over azimuth; a zone of the sphere from the
-    horizon up to a level edge takes sin(el) of the hemisphere.
+    The solid angle below an edge el(az) is the integral of sin(el) over azimuth; the zone of the sphere from
+    the horizon up to a level edge takes sin(el) of the hemisphere.
     """
     solid, leaves = solid_region(skyline), foliage_region(skyline)
     solid_sr, leaves_sr = _area_sr(solid, mask_deg, 90.0), _area_sr(leaves, mask_deg, 90.0)
@@ -137,7 +139,8 @@ def covered_share(
     )
     width_rad = np.deg2rad(np.diff(azimuth_edges_deg))
     height = np.diff(np.sin(np.deg2rad(elevation_edges_deg)))
-    return np.clip(np.diff(below_sr, axis=1) / (width_rad[:, None] * height), 0.0, 1.0)
+    share: FloatArray = np.clip(np.diff(below_sr, axis=1) / (width_rad[:, None] * height), 0.0, 1.0)
+    return share
 
 
 def _share(value: float) -> float:
@@ -182,9 +185,9 @@ def _cut(region: Region, azimuth_deg: FloatArray) -> Region:
 
 def _sectors_sr(region: Region, mask_deg: float) -> FloatArray:
     """Hidden sky above the mask in the eight sectors, north first."""
-    cut = _cut(region, np.arange(8) * 45.0 + 22.5)
+    cut = _cut(region, np.linspace(22.5, 337.5, 8))
     sector = np.floor(_middle_deg(cut) / 45.0 + 0.5).astype(np.int64) % 8
-    return np.bincount(sector, weights=_area_sr(cut, mask_deg, 90.0), minlength=8)
+    return np.bincount(sector, weights=_area_sr(cut, mask_deg, 90.0), minlength=8).astype(np.float64)
 
 
 def _unsurveyed_sr(skyline: Skyline, region: Region, mask_deg: float) -> float:
@@ -200,7 +203,7 @@ def _unsurveyed_sr(skyline: Skyline, region: Region, mask_deg: float) -> float:
 def _largest_block(
     region: Region, area_sr: FloatArray, mask_deg: float
 ) -> tuple[float, tuple[float, float] | None]:
-    """Share of the hemisphere and azimuths of the largest stretch that is hidden above the mask without a gap."""
+    """Share of the hemisphere and azimuths of the largest stretch hidden above the mask without a gap."""
     start_deg, end_deg = _above_mask(region, mask_deg)
     if not len(start_deg):
         return 0.0, None

@@ -1,6 +1,6 @@
 """The skyline as seen from the antenna: what hides the sky, obstacle by obstacle."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, fields
 from typing import Literal
 
 import numpy as np
@@ -13,8 +13,20 @@ FloatArray = NDArray[np.float64]
 GENERAL_SKYLINE = "general skyline"  # name of the unlabelled rows of a survey
 
 
+class _ReadOnlyArrays:
+    """A record whose arrays cannot be changed in place."""
+
+    __slots__ = ()
+
+    def __post_init__(self) -> None:
+        for field in fields(self):  # type: ignore[arg-type]
+            value = getattr(self, field.name)
+            if isinstance(value, np.ndarray):
+                value.flags.writeable = False
+
+
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class Obstacle:
+class Obstacle(_ReadOnlyArrays):
     """One obstacle, as break points seen from the antenna's phase centre.
 
     Attributes
@@ -26,8 +38,8 @@ class Obstacle:
     leaf : str
         "in-leaf", "leafless" or "evergreen"; used for foliage.
     azimuth_deg : array, shape (point,)
-        Ascending and unwrapped: the first lies in 0 <= azimuth < 360, the last may pass 360 (at most first + 360).
-        Equal neighbours are a vertical edge.
+        Ascending and unwrapped: the first lies in 0 <= azimuth < 360, the last may pass 360 (at most
+        first + 360). Equal neighbours are a vertical edge.
     elevation_deg : array, shape (point,)
         Apparent elevation of the upper edge; -90 along the gaps of a general skyline, where it has none.
     underside_deg : array, shape (point,), or None
@@ -38,7 +50,8 @@ class Obstacle:
     depth_m : array, shape (point,), or None
         Path through leaves; for foliage only.
     straight_in_space : bool
-        True: neighbouring points are joined by arcs of great circles; False: linearly in azimuth and elevation.
+        True: neighbouring points are joined by arcs of great circles; False: linearly in azimuth and
+        elevation.
     width_m : float or None
         Width of a pole or rod given as one row (its two sides are already in `azimuth_deg`).
     source : str
@@ -64,7 +77,7 @@ class Obstacle:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class Outline:
+class Outline(_ReadOnlyArrays):
     """The upper envelope of everything solid that stands on the ground, as pieces in ascending azimuth.
 
     Attributes
@@ -88,7 +101,7 @@ class Outline:
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class Skyline:
+class Skyline(_ReadOnlyArrays):
     """Everything that stands between the antenna's phase centre and the sky.
 
     Attributes

@@ -9,7 +9,7 @@ import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
 from siteassess.angles import wrap_azimuth_deg
-from siteassess.horizon.curves import NOTHING_DEG, FloatArray, IndexArray
+from siteassess.horizon.curves import NOTHING_DEG, FloatArray, IndexArray, between_on_great_circle
 from siteassess.horizon.skyline import Obstacle, Outline, Skyline
 
 __all__ = [
@@ -67,7 +67,7 @@ def underside_elevation_deg(obstacle: Obstacle, azimuth_deg: ArrayLike) -> Float
 
 
 def depth_m(obstacle: Obstacle, azimuth_deg: ArrayLike) -> FloatArray:
-    """Path through the leaves of foliage [m], linear between its points; NaN outside and for what is solid."""
+    """Path through the leaves of foliage [m], linear between points; NaN outside and for what is solid."""
     if obstacle.depth_m is None:
         return np.full(np.shape(azimuth_deg), np.nan)
     place = _locate(obstacle, azimuth_deg)
@@ -77,8 +77,8 @@ def depth_m(obstacle: Obstacle, azimuth_deg: ArrayLike) -> FloatArray:
 def edge_distance_m(obstacle: Obstacle, azimuth_deg: ArrayLike) -> FloatArray:
     """Slant distance from the antenna to an obstacle's upper edge [m].
 
-    NaN outside its azimuths and where the survey gives none. Along a straight edge it is the distance to that edge;
-    else it is linear between the points.
+    NaN outside its azimuths and where the survey gives none. Along a straight edge it is the distance to that
+    edge; else it is linear between the points.
     """
     if obstacle.distance_m is None:
         return np.full(np.shape(azimuth_deg), np.nan)
@@ -111,7 +111,7 @@ def foliage_obstacles(skyline: Skyline) -> tuple[int, ...]:
 
 
 def outline_elevation_deg(skyline: Skyline, azimuth_deg: ArrayLike) -> FloatArray:
-    """Elevation of the solid outline [deg]; -90 where nothing forms it. At a vertical edge the higher value."""
+    """Elevation of the solid outline [deg]; -90 where nothing forms it; at a vertical edge the higher one."""
     return _outline_at(skyline.outline, np.asarray(azimuth_deg, dtype=float))[0]
 
 
@@ -128,8 +128,8 @@ def hiding_obstacle(skyline: Skyline, azimuth_deg: ArrayLike, elevation_deg: Arr
     Returns
     -------
     integer array
-        Index in `Skyline.obstacles` of the obstacle with the highest upper edge among those that hide the direction;
-        -1 where the sky is open, and for NaN.
+        Index in `Skyline.obstacles` of the obstacle with the highest upper edge among those that hide the
+        direction; -1 where the sky is open, and for NaN.
     """
     azimuth_deg, elevation_deg = np.broadcast_arrays(
         np.asarray(azimuth_deg, dtype=float), np.asarray(elevation_deg, dtype=float)
@@ -178,7 +178,7 @@ def _outline_at(outline: Outline, azimuth_deg: FloatArray) -> tuple[FloatArray, 
     )
     arc = outline.straight_in_space[piece]
     if arc.any():
-        tangent = _between_on_great_circle(
+        tangent = between_on_great_circle(
             azimuth_deg[arc],
             start_deg[arc],
             end_deg[arc],
@@ -188,14 +188,6 @@ def _outline_at(outline: Outline, azimuth_deg: FloatArray) -> tuple[FloatArray, 
         elevation_deg[arc] = np.rad2deg(np.arctan(tangent))
     elevation_deg = np.where(at_break, outline.end_elevation_deg[before], elevation_deg)
     return elevation_deg, np.where(at_break, outline.obstacle[before], outline.obstacle[piece])
-
-
-def _between_on_great_circle(
-    azimuth_deg: FloatArray, start_deg: FloatArray, end_deg: FloatArray, start: FloatArray, end: FloatArray
-) -> FloatArray:
-    """A quantity c cos(az) + s sin(az), such as the tangent of the elevation, from its values at two azimuths."""
-    before, behind = np.deg2rad(azimuth_deg - start_deg), np.deg2rad(end_deg - azimuth_deg)
-    return np.asarray((start * np.sin(behind) + end * np.sin(before)) / np.sin(before + behind))
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -219,7 +211,7 @@ class _Place:
         wide = end > start
         end = np.where(wide, end, start + 1.0)  # any width: only its own azimuth is asked for
         first, last = values[self.left], np.where(wide, values[self.left + 1], values[self.left])
-        return _between_on_great_circle(np.where(wide, self.unwrapped_deg, start), start, end, first, last)
+        return between_on_great_circle(np.where(wide, self.unwrapped_deg, start), start, end, first, last)
 
     def filled(self, values: FloatArray) -> FloatArray:
         result = np.full(self.inside.shape, np.nan)

@@ -1,0 +1,55 @@
+"""The skyline of a site, from all the files that its site file names."""
+
+from functools import partial
+
+import numpy as np
+
+from siteassess.errors import gather
+from siteassess.horizon.curves import FloatArray
+from siteassess.horizon.outline import upper_envelope
+from siteassess.horizon.skyline import Skyline
+from siteassess.horizon.survey import read_survey
+from siteassess.site_file.model import Site
+
+__all__ = ["read_skyline"]
+
+NARROWEST_GAP_DEG = 1e-9  # narrower ones are rounding
+
+
+def read_skyline(site: Site) -> Skyline:
+    """Everything that the site's horizon files put between the antenna and the sky.
+
+    Parameters
+    ----------
+    site : Site
+        Its files lie beside the site file. Without any, the whole sky is unsurveyed.
+
+    Raises
+    ------
+    InputError
+        With the mistakes of all the files.
+    """
+    surveys = gather(
+        *(partial(read_survey, site.path.parent / block.file, block, site.mount) for block in site.horizon)
+    )
+    obstacles = tuple(obstacle for survey in surveys for obstacle in survey.obstacles)
+    return Skyline(
+        obstacles=obstacles,
+        outline=upper_envelope(obstacles),
+        unsurveyed_deg=_gaps(
+            np.concatenate([np.empty((0, 2)), *(survey.surveyed_deg for survey in surveys)])
+        ),
+    )
+
+
+def _gaps(surveyed_deg: FloatArray) -> FloatArray:
+    """Azimuth ranges that no stretch covers, shape (gap, 2)."""
+    from_deg = surveyed_deg[:, 0] - 360.0 * np.floor(surveyed_deg[:, 0] / 360.0)
+    to_deg = from_deg + (surveyed_deg[:, 1] - surveyed_deg[:, 0])
+    from_deg, to_deg = np.append(from_deg, from_deg - 360.0), np.append(to_deg, to_deg - 360.0)
+    order = np.argsort(from_deg, kind="stable")
+    reached_deg = np.maximum.accumulate(np.append(0.0, to_deg[order]))
+    start_deg = np.clip(reached_deg, 0.0, 360.0)
+    end_deg = np.clip(np.append(from_deg[order], 360.0), 0.0, 360.0)
+    is_gap = end_deg > start_deg + NARROWEST_GAP_DEG
+    return np.stack([start_deg[is_gap], end_deg[is_gap]], axis=1)

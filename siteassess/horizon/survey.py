@@ -1,0 +1,246 @@
+"""One survey file: the obstacles as the antenna sees them, and the azimuths that somebody looked at."""
+
+import math
+import re
+from dataclasses import dataclass, replace
+from pathlib import Path
+
+import numpy as np
+
+from siteassess.errors import InputError, Mistake
+from siteassess.horizon.carry import Points, carried, turned_short_way
+from siteassess.horizon.curves import NOTHING_DEG, BoolArray, FloatArray, IndexArray
+from siteassess.horizon.silhouette import is_ascending, silhouette
+from siteassess.horizon.skyline import GENERAL_SKYLINE, Obstacle
+from siteassess.horizon.survey_checks import cover_of, general_mistakes, leaf_of, obstacle_mistakes
+from siteassess.horizon.survey_rows import Rows, cell_mistake, read_rows
+from siteassess.site_file.model import HorizonSource, Mount
+from siteassess.tables import MOST_MISTAKES
+from siteassess.wording import shown
+
+__all__ = ["Survey", "read_survey"]
+
+WIDEST_STEP_DEG = 30.0  # rows of the general skyline further apart leave the sky between them unsurveyed
+NEAREST_M = 0.001  # a point nearer to the antenna's vertical axis has no azimuth
+HALF_TURN_TOLERANCE_DEG = 1e-6
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Survey:
+    """What one survey file says.
+
+    Attributes
+    ----------
+    obstacles : tuple of Obstacle
+        As seen from the antenna, in the order of the file.
+    surveyed_deg : array, shape (stretch, 2)
+        Azimuths from and to of what was looked at: from <= to; any turn of the circle, any order, overlaps.
+    """
+
+    obstacles: tuple[Obstacle, ...]
+    surveyed_deg: FloatArray
+
+
+def read_survey(path: Path, source: HorizonSource, mount: Mount) -> Survey:
+    """A survey file, carried from the instrument to the antenna's phase centre.
+
+    Parameters
+    ----------
+    path : Path
+        The file.
+    source : HorizonSource
+        Where the instrument stood, and whether the crew looked at every azimuth.
+    mount : Mount
+        Where the antenna stands.
+
+    Raises
+    ------
+    InputError
+        With all the mistakes of the file.
+    """
+    rows, mistakes = read_rows(path)
+    labels = dict.fromkeys(rows.texts["obstacle"])
+    members = rows.by_label()
+    for label in labels:
+        check = general_mistakes if label is None else obstacle_mistakes
+        mistakes += check(rows, members[label])
+    if mistakes:
+        raise InputError(*_listed(mistakes, rows.file))
+    up_m = mount.phase_centre_height_m if source.instrument_up_m is None else source.instrument_up_m
+    offset_m = (source.instrument_east_m, source.instrument_north_m, up_m - mount.phase_centre_height_m)
+    obstacles: list[Obstacle] = []
+    surveyed_deg = np.array([[0.0, 360.0]]) if source.complete else np.empty((0, 2))
+    for label in labels:
+        try:
+            if label is None:
+                general, looked_at_deg = _general(rows, members[None], offset_m, complete=source.complete)
+                surveyed_deg = np.concatenate([surveyed_deg, looked_at_deg])
+                obstacles += general
+            else:
+                obstacles.append(_named(rows, members[label], offset_m))
+        except InputError as error:
+            mistakes += error.mistakes
+    if mistakes:
+        raise InputError(*_listed(mistakes, rows.file))
+    return Survey(obstacles=tuple(obstacles), surveyed_deg=surveyed_deg)
+
+
+def _listed(mistakes: list[Mistake], file: str) -> list[Mistake]:
+    """One mistake for each place of the file, in its order, and not too many."""
+    at_place: dict[str, Mistake] = {}
+    for mistake in mistakes:
+        at_place.setdefault(mistake.where or mistake.problem, mistake)
+    kept = sorted(at_place.values(), key=_line)
+    further = len(kept) - MOST_MISTAKES
+    if further <= 0:
+        return kept
+    closing = Mistake(
+        file=file,
+        where="",
+        problem=f"has {further} more mistakes",
+        allowed="the first are listed",
+        value=further,
+    )
+    return [*kept[:MOST_MISTAKES], closing]
+
+
+def _line(mistake: Mistake) -> float:
+    """Line of the file that a mistake names; those without one stand last."""
+    found = re.match(r"line (\d+)", mistake.where)
+    return float(found[1]) if found else math.inf
+
+
+def _points(rows: Rows, which: IndexArray, offset_m: tuple[float, float, float]) -> Points:
+    """The rows as points, seen from the antenna."""
+    given_deg = rows.numbers["azimuth_deg"][which]
+    points = carried(
+        Points(
+            azimuth_deg=given_deg + 360.0 * np.append(0, np.cumsum(given_deg[1:] < given_deg[:-1])),
+            elevation_deg=rows.numbers["elevation_deg"][which],
+            underside_deg=rows.numbers["underside_deg"][which],
+            distance_m=rows.slant_m[which],
+            depth_m=rows.numbers["depth_m"][which],
+        ),
+        offset_m,
+    )
+    near = points.horizontal_m < NEAREST_M
+    if near.any():
+        places = [f"line {line}" for line in rows.line[which[near]].tolist()]
+        raise InputError(*(_misplaced(rows, place, "lies on the antenna's own axis") for place in places))
+    return points
+
+
+def _misplaced(rows: Rows, where: str, problem: str) -> Mistake:
+    return Mistake(
+        file=rows.file,
+        where=where,
+        problem=f"{problem}, seen from the antenna",
+        allowed="check the distances and where the instrument stood",
+    )
+
+
+def _general(
+    rows: Rows, which: IndexArray, offset_m: tuple[float, float, float], *, complete: bool
+) -> tuple[list[Obstacle], FloatArray]:
+    """The general skyline, if it forms an edge anywhere, and the azimuths that it covers."""
+    if len(which) == 1:  # level all round: only the height of the instrument matters
+        points = _points(rows, np.repeat(which, 2), (0.0, 0.0, offset_m[2]))
+        points = replace(points, azimuth_deg=np.array([0.0, 360.0]))
+        return [_obstacle(rows, which, points)], points.azimuth_deg[None, :]
+    given_deg = rows.numbers["azimuth_deg"][which]
+    step_deg = np.diff(np.append(given_deg, given_deg[0] + 360.0))
+    gap = (step_deg > WIDEST_STEP_DEG) & (not complete)
+    if gap.all():
+        return [], np.empty((0, 2))
+    points = _points(rows, which, offset_m)
+    ends_deg = np.stack(
+        [points.azimuth_deg, np.append(points.azimuth_deg[1:], points.azimuth_deg[0] + 360.0)]
+    )
+    points = _opened(points, gap) if gap.any() else _closed(points)
+    if not is_ascending(points):
+        points = silhouette(points, straight_in_space=False, closed=True)
+    return [_obstacle(rows, which, points)], np.sort(ends_deg[:, ~gap].T, axis=1)
+
+
+def _closed(points: Points) -> Points:
+    """A ring that ends where it begins, one turn further."""
+    closed = points.taken(np.append(np.arange(len(points.azimuth_deg)), 0))
+    return replace(closed, azimuth_deg=np.append(points.azimuth_deg, points.azimuth_deg[0] + 360.0))
+
+
+def _opened(points: Points, gap: BoolArray) -> Points:
+    """A ring with gaps behind some of its points: it starts behind one, and lies at -90 along the others."""
+    joined = ~(gap & np.roll(gap, 1))
+    points, gap = points.taken(joined), gap[joined]
+    begin = (int(np.flatnonzero(gap)[-1]) + 1) % len(gap)
+    order = np.roll(np.arange(len(gap)), -begin)
+    points = replace(points, azimuth_deg=points.azimuth_deg + 360.0 * (np.arange(len(gap)) < begin))
+    points, gap = points.taken(order), gap[order]
+    # The point on either side of a gap stands there twice: its copy on the side of the gap drops.
+    behind = np.flatnonzero(gap[:-1])
+    twice = np.sort(np.concatenate([np.arange(len(gap)), behind, behind + 1]))
+    dropped = np.zeros(len(twice), dtype=np.bool_)
+    dropped[np.searchsorted(twice, behind, side="right") - 1] = True
+    dropped[np.searchsorted(twice, behind + 1, side="left")] = True
+    points = points.taken(twice)
+    return replace(
+        points,
+        elevation_deg=np.where(dropped, NOTHING_DEG, points.elevation_deg),
+        distance_m=np.where(dropped, np.nan, points.distance_m),
+    )
+
+
+def _named(rows: Rows, which: IndexArray, offset_m: tuple[float, float, float]) -> Obstacle:
+    """One named obstacle."""
+    points = _points(rows, which, offset_m)
+    if len(which) == 1:
+        return _pole(rows, which, points)
+    straight_in_space = not np.isnan(points.distance_m).any()
+    if straight_in_space:
+        points = replace(points, azimuth_deg=turned_short_way(points.azimuth_deg))
+        step_deg = np.diff(points.azimuth_deg)
+        name = f"obstacle {shown(rows.texts['obstacle'][which[0]])}"
+        if (np.abs(step_deg) > 180.0 - HALF_TURN_TOLERANCE_DEG).any():
+            raise InputError(_misplaced(rows, name, "runs through the antenna's own axis"))
+        # Sighted clockwise but seen anticlockwise through half the circle: from within.
+        if step_deg.sum() <= -180.0:
+            raise InputError(_misplaced(rows, name, "closes round the antenna"))
+        if (step_deg <= 0.0).all():
+            points = points.taken(np.arange(len(which))[::-1])
+    if not is_ascending(points):
+        points = silhouette(points, straight_in_space=straight_in_space, closed=False)
+    return _obstacle(rows, which, points, straight_in_space=straight_in_space)
+
+
+def _pole(rows: Rows, which: IndexArray, points: Points) -> Obstacle:
+    """A pole or rod: two sides about its middle."""
+    width_m, horizontal_m = float(rows.numbers["width_m"][which[0]]), float(points.horizontal_m[0])
+    if horizontal_m <= 0.5 * width_m:
+        raise InputError(
+            cell_mistake(rows, int(which[0]), "width_m", "the antenna would stand in the obstacle")
+        )
+    half_deg = float(np.rad2deg(np.arctan2(0.5 * width_m, horizontal_m)))
+    points = points.taken(np.array([0, 0]))
+    points = replace(points, azimuth_deg=points.azimuth_deg + np.array([-half_deg, half_deg]))
+    return replace(_obstacle(rows, which, points), width_m=width_m)
+
+
+def _obstacle(rows: Rows, which: IndexArray, points: Points, *, straight_in_space: bool = False) -> Obstacle:
+    label = rows.texts["obstacle"][which[0]]
+    is_foliage = label is not None and cover_of(rows, which) == "foliage"
+
+    def known(values: FloatArray) -> FloatArray | None:
+        return None if np.isnan(values).all() else values
+
+    return Obstacle(
+        name=GENERAL_SKYLINE if label is None else label,
+        cover="foliage" if is_foliage else "solid",
+        leaf=leaf_of(rows, which),
+        azimuth_deg=points.azimuth_deg - 360.0 * np.floor(points.azimuth_deg[0] / 360.0),
+        elevation_deg=points.elevation_deg,
+        underside_deg=known(points.underside_deg),
+        distance_m=known(points.distance_m),
+        depth_m=points.depth_m if is_foliage else None,
+        straight_in_space=straight_in_space,
+        source=rows.file,
+    )
