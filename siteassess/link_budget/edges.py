@@ -17,7 +17,7 @@ FloatArray = NDArray[np.float64]
 LONGEST_ARC_DEG = 5.0  # an arc of a great circle leaves a linear edge of this length by at most 0.03 degrees
 GROUND_DEG = -45.0  # sides of what stands on the ground run down to here, out of reach of any satellite
 NOTHING_DEG = -89.0  # points of a skyline that lie lower say that there is no edge
-MOST_NEIGHBOURS = 3  # arcs looked at on either side of a direction; a survey that is finer bends smoothly
+MOST_NEIGHBOURS = 12  # arcs looked at on either side of a direction; a survey that is finer bends smoothly
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -70,7 +70,9 @@ def lower_edges(obstacle: Obstacle) -> Edges:
     return _arcs(*nodes, closed=_is_closed(obstacle))
 
 
-def smallest_detour_m(edges: Edges, azimuth_deg: FloatArray, elevation_deg: FloatArray) -> FloatArray:
+def smallest_detour_m(
+    edges: Edges, azimuth_deg: FloatArray, elevation_deg: FloatArray, within_m: float
+) -> FloatArray:
     """Smallest detour [m] over the edges of an obstacle from directions at infinity.
 
     The detour over a point at distance d and angle theta from the line of sight is d (1 - cos theta).
@@ -81,6 +83,8 @@ def smallest_detour_m(edges: Edges, azimuth_deg: FloatArray, elevation_deg: Floa
         Of one obstacle.
     azimuth_deg, elevation_deg : array, shape (n,)
         Lines of sight.
+    within_m : float
+        Up to here the smallest detour is found; a larger one may come out too large.
 
     Returns
     -------
@@ -95,7 +99,7 @@ def smallest_detour_m(edges: Edges, azimuth_deg: FloatArray, elevation_deg: Floa
     unwrapped_deg = middle_deg + wrap_difference_deg(azimuth_deg - middle_deg)
     nearest = np.searchsorted(edges.start_deg, unwrapped_deg, side="right") - 1
     line = direction(azimuth_deg, elevation_deg).T
-    neighbours = min(MOST_NEIGHBOURS, count // 2)
+    neighbours = _neighbours(edges, within_m)
     for offset in range(-neighbours, neighbours + 1):
         arc = np.mod(nearest + offset, count) if edges.closed else np.clip(nearest + offset, 0, count - 1)
         np.minimum(smallest_m, _detour_m(edges, arc, line), out=smallest_m)
@@ -111,17 +115,35 @@ def highest_within_reach_deg(edges: Edges, detour_m: float) -> FloatArray:
         Elevations [deg]; -90 where no edge is near.
     """
     highest_deg = np.full(360, -90.0)
-    reach_rad = np.arccos(np.maximum(1.0 - detour_m / np.minimum(edges.start_m, edges.end_m), -1.0))
-    top_rad = np.deg2rad(np.maximum(edges.top_deg, 0.0))
-    over_zenith = top_rad + reach_rad >= np.pi / 2.0
-    sideways = np.where(over_zenith, 1.0, np.sin(np.minimum(reach_rad, np.pi / 2.0)) / np.cos(top_rad))
-    sideways_deg = np.where(over_zenith, 180.0, np.rad2deg(np.arcsin(np.minimum(sideways, 1.0))))
+    reach_deg, sideways_deg = _reach_deg(edges, detour_m)
     first = np.floor(edges.start_deg - sideways_deg).astype(int)
     last = np.minimum(np.floor(edges.end_deg + sideways_deg).astype(int), first + 359)
-    for low, high, level_deg in zip(first, last, edges.top_deg + np.rad2deg(reach_rad), strict=True):
+    for low, high, level_deg in zip(first, last, edges.top_deg + reach_deg, strict=True):
         degree = np.arange(low, high + 1) % 360
         highest_deg[degree] = np.maximum(highest_deg[degree], level_deg)
     return highest_deg
+
+
+def _reach_deg(edges: Edges, detour_m: float) -> tuple[FloatArray, FloatArray]:
+    """How far from each arc a detour may begin, as an angle and as an azimuth at the elevation of the arc."""
+    reach_rad = np.arccos(np.maximum(1.0 - detour_m / np.minimum(edges.start_m, edges.end_m), -1.0))
+    top_rad = np.deg2rad(np.maximum(edges.top_deg, 0.0))
+    over_zenith = top_rad + reach_rad >= np.pi / 2.0
+    sine = np.where(over_zenith, 0.0, np.sin(reach_rad) / np.cos(top_rad))
+    return np.rad2deg(reach_rad), np.where(over_zenith, 180.0, np.rad2deg(np.arcsin(np.clip(sine, 0.0, 1.0))))
+
+
+def _neighbours(edges: Edges, within_m: float) -> int:
+    """Number of arcs to look at on either side of a direction, so that none within reach is left out."""
+    _, sideways_deg = _reach_deg(edges, within_m)
+    count = len(edges.start_deg)
+    starts_deg, before = edges.start_deg, 0
+    if edges.closed:
+        starts_deg, before = np.concatenate([starts_deg - 360.0, starts_deg, starts_deg + 360.0]), count
+    own = np.arange(before, before + count)
+    first = np.searchsorted(starts_deg, edges.start_deg - sideways_deg, side="right") - 1
+    last = np.searchsorted(starts_deg, edges.end_deg + sideways_deg, side="right") - 1
+    return int(min(np.max([own - first, last - own]), MOST_NEIGHBOURS, count - 1))
 
 
 def _is_closed(obstacle: Obstacle) -> bool:
@@ -133,7 +155,8 @@ def _nodes(
 ) -> tuple[FloatArray, FloatArray, FloatArray]:
     """Azimuth, elevation and distance of break points and of points between that cut long edges."""
     width_deg = np.diff(obstacle.azimuth_deg)
-    pieces = np.maximum(np.ceil(width_deg / LONGEST_ARC_DEG), 1.0).astype(int)
+    rise_deg = np.where((width_deg > 0.0) & (not obstacle.straight_in_space), np.abs(np.diff(edge_deg)), 0.0)
+    pieces = np.maximum(np.ceil(np.maximum(width_deg, rise_deg) / LONGEST_ARC_DEG), 1.0).astype(int)
     segment = np.repeat(np.arange(len(width_deg)), pieces)
     part = (np.arange(len(segment)) - np.repeat(np.cumsum(pieces) - pieces, pieces)) / pieces[segment]
     azimuth_deg = np.append(

@@ -127,9 +127,11 @@ def _edge_loss_db(
     obstacle: Obstacle, azimuth_deg: FloatArray, elevation_deg: FloatArray, wavelength_m: float
 ) -> FloatArray:
     """Knife-edge loss over the nearest edge of an obstacle."""
-    detour_m = smallest_detour_m(upper_edges(obstacle), azimuth_deg, elevation_deg)
+    zone_m = wavelength_m / 2.0  # detour over the rim of the first Fresnel zone
+    detour_m = smallest_detour_m(upper_edges(obstacle), azimuth_deg, elevation_deg, zone_m)
     if obstacle.hangs_free:
-        detour_m = np.minimum(detour_m, smallest_detour_m(lower_edges(obstacle), azimuth_deg, elevation_deg))
+        below_m = smallest_detour_m(lower_edges(obstacle), azimuth_deg, elevation_deg, zone_m)
+        detour_m = np.minimum(detour_m, below_m)
     sign = np.where(covers(obstacle, azimuth_deg, elevation_deg), 1.0, -1.0)
     has_edge = np.isfinite(detour_m)
     nu = 2.0 * sign * np.sqrt(np.where(has_edge, detour_m, 0.0) / wavelength_m)  # [P.526] 4.1
