@@ -117,6 +117,6 @@ def obstacle_edges(obstacle: Obstacle) -> tuple[FloatArray, FloatArray, FloatArr
 def _close_points(start_deg: float, end_deg: float, breaks_deg: FloatArray) -> FloatArray:
     """Azimuths a degree apart, and both sides of every break, where an edge may be vertical."""
     azimuth_deg = np.concatenate(
-        [np.arange(start_deg, end_deg, STEP_DEG), breaks_deg - BESIDE_DEG, breaks_deg + BESIDE_DEG]
+        [np.arange(start_deg, end_deg, STEP_DEG), [end_deg], breaks_deg - BESIDE_DEG, breaks_deg + BESIDE_DEG]
     )
     return np.unique(np.clip(azimuth_deg, start_deg + BESIDE_DEG, end_deg - BESIDE_DEG))

@@ -68,9 +68,17 @@ def _figure(assessment: Assessment) -> Figure:
     height_in = BELOW_IN + SKY_IN + ROW_IN * (rows + 0.6)
     figure = Figure(figsize=(WIDTH_IN, height_in))
     axes = figure.add_axes((0.065, BELOW_IN / height_in, 0.92, SKY_IN / height_in))
-    mask_deg = assessment.site.require.elevation_mask_deg
     peaks_deg = [obstacle.peak_elevation_deg for obstacle in assessment.verdict.obstacles]
+    mask_deg = assessment.site.require.elevation_mask_deg
     top_deg = min(90.0, max(LOWEST_TOP_DEG, 1.15 * max(peaks_deg, default=0.0), 1.5 * mask_deg))
+    _draw_frame(axes, top_deg)
+    _draw_skyline(axes, assessment.skyline, top_deg)
+    _draw_mask(axes, mask_deg)
+    _draw_labels(axes, labels, top_deg)
+    return figure
+
+
+def _draw_frame(axes: Axes, top_deg: float) -> None:
     axes.set(xlim=(0.0, 360.0), ylim=(0.0, top_deg), ylabel="elevation")
     ticks_deg = np.arange(0, 361, 30)
     names = {0: "N", 90: "E", 180: "S", 270: "W", 360: "N"}
@@ -78,13 +86,12 @@ def _figure(assessment: Assessment) -> Figure:
     axes.yaxis.set_major_formatter("{x:.0f}°")
     axes.grid(color=QUIET, linewidth=0.3)
     axes.spines[["top", "right"]].set_visible(False)
-    _draw_skyline(axes, assessment.skyline, top_deg)
+
+
+def _draw_mask(axes: Axes, mask_deg: float) -> None:
+    box = {"boxstyle": "square,pad=0.1", "facecolor": "white", "edgecolor": "none", "alpha": 0.85}
     axes.axhline(mask_deg, color=INK, linewidth=0.9, dashes=(5, 2), zorder=5)
-    axes.text(
-        359.0, mask_deg + 0.01 * top_deg, f"mask {mask_deg:g}°", ha="right", va="bottom", fontsize=6, zorder=7
-    )
-    _draw_labels(axes, labels, top_deg)
-    return figure
+    axes.text(358.5, mask_deg, f"mask {mask_deg:g}°", ha="right", va="center", fontsize=6, bbox=box, zorder=7)
 
 
 def _draw_skyline(axes: Axes, skyline: Skyline, top_deg: float) -> None:
