@@ -114,6 +114,20 @@ def test_a_pole_through_north_costs_half_a_decibel_all_round_it() -> None:
     assert loss_db(pole, 0.0, 75.0) == 0.0
 
 
+def test_a_mast_seen_steeply_spans_more_azimuth_for_its_width() -> None:
+    # Geometry: at 60 degrees of elevation an azimuth gap is half as wide on the sky, so a mast of twice the
+    # azimuth span costs what it costs at the horizon: 2 m at 60 m, 3.6 dB.
+    half_deg = 2.0 * np.rad2deg(1.0 / 60.0)
+    mast = solid([90.0 - half_deg, 90.0 + half_deg], [85.0, 85.0], [60.0, 60.0])
+    assert loss_db(mast, 90.0, 60.0) == pytest.approx(3.6, abs=2 * TENTH_DB)
+
+
+def test_an_obstacle_that_costs_nothing_is_not_named() -> None:
+    canopy = solid([90.0, 270.0], [60.0, 60.0], [20.0, 20.0], underside_deg=[30.0, 30.0])
+    loss, costly = skyline_loss_db(skyline(canopy), np.array([180.0]), np.array([10.0]), L1_HZ)
+    assert (loss.tolist(), costly.tolist()) == ([0.0], [-1])
+
+
 def test_a_thin_jib_costs_as_much_lying_as_a_mast_standing() -> None:
     # Symmetry: a bar 1 m deep at 50 m overhead loses by its two long edges what a mast 1 m wide loses.
     half_deg = np.rad2deg(0.5 / 50.0)
