@@ -119,11 +119,13 @@ def antenna_section(assessment: Assessment) -> Section:
             else "not tilted."
         ),
     ]
+    rows = tuple(_part_row(part) for part in assessment.site.chain)
+    columns = list(zip(*rows, strict=True))[1:]
     table = Table(
         caption="The chain, from the antenna port to the receiver.",
         header=("Part", "Gain, dB", "Loss, dB", "Noise figure, dB", "At, K", "Loss inside the receiver, dB"),
-        rows=tuple(_part_row(part) for part in assessment.site.chain),
-        align="lrrrrr",
+        rows=rows,
+        align="l" + "".join("l" if any(";" in cell for cell in column) else "r" for column in columns),
     )
     return Section(
         key="antenna", heading="Antenna, mount and chain", sentences=tuple(sentences), tables=(table,)

@@ -4,6 +4,8 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from siteassess.report.phrases import plain
+
 if TYPE_CHECKING:
     import pandas as pd
 
@@ -12,7 +14,7 @@ if TYPE_CHECKING:
 __all__ = ["csv_text", "satellite_frame", "spreadsheet_safe"]
 
 DECIMALS = {"share": 6, "dbw": 3, "dbhz": 3, "day": 3}
-FORMULA_SIGNS = ("=", "+", "-", "@", "\t", "\r")
+FORMULA_SIGNS = ("=", "+", "-", "@")
 
 
 def satellite_frame(assessment: Assessment) -> pd.DataFrame:
@@ -47,11 +49,12 @@ def csv_text(assessment: Assessment) -> str:
 
 
 def spreadsheet_safe(text: str) -> str:
-    """A text that no spreadsheet takes for a formula.
+    """A text on one line that no spreadsheet takes for a formula.
 
     Examples
     --------
     >>> spreadsheet_safe("=1+1"), spreadsheet_safe("GPS A1")
     ("'=1+1", 'GPS A1')
     """
+    text = plain(text)
     return f"'{text}" if text.startswith(FORMULA_SIGNS) else text

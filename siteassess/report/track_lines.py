@@ -40,10 +40,10 @@ class LineLook:
 # width and dash say the same again.
 MARGIN_CLASSES = (
     LineLook(name="below the minimum", below_db=0.0, color="#e2a04e", width=1.1, dash=(0.0, (3.0, 1.6))),
-    LineLook(name="0 to 3 dB above", below_db=3.0, color="#b3a84a", width=0.7),
-    LineLook(name="3 to 6 dB above", below_db=6.0, color="#62977f", width=0.9),
-    LineLook(name="6 to 9 dB above", below_db=9.0, color="#3a7a99", width=1.1),
-    LineLook(name="more than 9 dB above", color="#1d3f73", width=1.3),
+    LineLook(name="0 to 4 dB above", below_db=4.0, color="#b3a84a", width=0.7),
+    LineLook(name="4 to 8 dB above", below_db=8.0, color="#62977f", width=0.9),
+    LineLook(name="8 to 12 dB above", below_db=12.0, color="#3a7a99", width=1.1),
+    LineLook(name="more than 12 dB above", color="#1d3f73", width=1.3),
 )
 HIDDEN = LineLook(name="hidden", color="#6a6660", width=0.5, dash=(0.0, (0.8, 1.8)))
 

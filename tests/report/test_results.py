@@ -81,7 +81,7 @@ def test_numbers_have_no_more_decimals_than_promised(markup_assessment):
         if not found:
             continue
         key, number, decimals = found[1], float(found[2]), len(found[3])
-        allowed = {"share": 6, "value": 6, "limit": 6, "deg": 4}.get(key.rsplit("_", 1)[-1], 3)
+        allowed = 4 if key.endswith("_deg") else 6 if "share" in key or key in ("value", "limit") else 3
         assert decimals <= allowed, line
         assert str(number) != "-0.0", line
 
