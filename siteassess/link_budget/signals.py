@@ -77,7 +77,7 @@ def glonass_carrier_hz(channel_0_hz: float, channel: int) -> float:
 
     References
     ----------
-    [GLONASS-ICD] GLONASS ICD 5.1: steps of 9/16 MHz from 1602 MHz and of 7/16 MHz from 1246 MHz; channels
+    [GLONASS ICD] GLONASS ICD 5.1: steps of 9/16 MHz from 1602 MHz and of 7/16 MHz from 1246 MHz; channels
     run from -7 to 6.
 
     Examples
