@@ -75,19 +75,14 @@ def _completed(sky: SkyModel) -> SkyModel:
 
 def _parsed(text: str, file: str) -> dict[str, Any]:
     try:
-        raw = tomllib.loads(text)
+        return {key: _frozen(value) for key, value in tomllib.loads(text).items()}
     except RecursionError as error:
-        mistake = Mistake(
-            file=file, where="", problem="is nested too deeply", allowed="it must be a site file"
-        )
-        raise InputError(mistake) from error
+        raise InputError(Mistake(file=file, where="", problem="is nested too deeply", allowed="")) from error
     except tomllib.TOMLDecodeError as error:
         raise InputError(_toml_mistake(str(error), text, file)) from error
     except ValueError as error:  # from the conversion of a number of thousands of digits
         mistake = Mistake(file=file, where="", problem="holds a number of too many digits", allowed="")
         raise InputError(mistake) from error
-    frozen: dict[str, Any] = _frozen(raw)
-    return frozen
 
 
 def _frozen(value: Any) -> Any:
