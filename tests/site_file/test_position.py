@@ -54,6 +54,13 @@ def test_area_that_crosses_the_date_line(easting_m: float) -> None:
     assert (mark.longitude_deg < 0.0) == (easting_m > 2_000_000.0)
 
 
+def test_place_beside_an_area_that_crosses_the_date_line() -> None:
+    assert refusal(projected("EPSG:3460", 1_000_000.0, 4_000_000.0)) == (
+        "roof.toml: site.easting_m and northing_m are 1000000.0 and 4000000.0;"
+        " the area of EPSG:3460 is latitude -20.81 to -12.42 and longitude 176.81 to -178.15"
+    )
+
+
 @pytest.mark.parametrize(
     ("given_deg", "longitude_deg"),
     [(0.0, 0.0), (180.0, 180.0), (-180.0, -180.0), (181.0, -179.0), (360.0, 0.0)],
