@@ -1,10 +1,13 @@
 """Where the survey mark is."""
 
+from pathlib import Path
+
 import pytest
 
 from siteassess.errors import InputError
 from siteassess.site_file.model import Place
 from siteassess.site_file.position import survey_mark
+from siteassess.site_file.read import read_site
 
 TENTH_OF_A_METRE_DEG = 0.1 / 111_000.0
 AREA_OF_BRITAIN = "the area of EPSG:27700 is latitude 49.75 to 61.01 and longitude -9.01 to 2.01"
@@ -136,9 +139,7 @@ def test_position_that_is_refused(place: Place, message: str) -> None:
     assert refusal(place) == f"roof.toml: {message}"
 
 
-def test_crs_is_an_authority_and_a_code(tmp_path) -> None:
-    from siteassess.site_file.read import read_site
-
+def test_crs_is_an_authority_and_a_code(tmp_path: Path) -> None:
     path = tmp_path / "roof.toml"
     path.write_text('[site]\nname = "Roof"\ncrs = "27700"\n', encoding="utf-8")
     with pytest.raises(InputError) as caught:
