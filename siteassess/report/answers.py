@@ -31,11 +31,23 @@ def answers(assessment: Assessment) -> tuple[Answer, ...]:
     """Questions of the reader and their answers, the verdict first."""
     verdict = assessment.verdict
     return (
-        Answer(question="Does the spot pass?", answer=_passes(verdict)),
-        Answer(question="Why?" if verdict.outcome == "pass" else "Why not?", answer=_why(verdict)),
-        Answer(question="Which direction is worst?", answer=worst_direction(verdict)),
-        Answer(question="Which obstacle costs the most?", answer=worst_obstacle(verdict)),
-        Answer(question="How much sky is hidden?", answer=_hidden(assessment)),
+        Answer(label="Result", question="Does the spot pass?", answer=_passes(verdict)),
+        Answer(
+            label="Reason",
+            question="Why?" if verdict.outcome == "pass" else "Why not?",
+            answer=_why(verdict),
+        ),
+        Answer(
+            label="Worst direction",
+            question="Which direction is worst?",
+            answer=worst_direction(verdict),
+        ),
+        Answer(
+            label="Worst obstacle",
+            question="Which obstacle costs the most?",
+            answer=worst_obstacle(verdict),
+        ),
+        Answer(label="Hidden", question="How much sky is hidden?", answer=_hidden(assessment)),
     )
 
 
@@ -88,10 +100,10 @@ def worst_direction(verdict: Verdict) -> str:
     """The sector that costs the most, in a sentence."""
     sector = _worst_sector(verdict)
     if sector is None:
-        return "None: nothing that was surveyed stands above the mask."
-    name = SECTOR_WORDS[sector.name]
+        return "None; nothing that was surveyed stands above the mask."
+    name = SECTOR_WORDS[sector.name].capitalize()
     text = (
-        f"The {name}: {percent(sector.blocked_share)} of its own sky above the mask is hidden, and "
+        f"{name}: {percent(sector.blocked_share)} of its own sky above the mask is hidden, and "
         f"obstacles there take {percent(sector.lost_satellite_time_share)} of all satellite-time."
     )
     if verdict.sky.peak_elevation_deg > 0:
@@ -115,7 +127,7 @@ def worst_obstacle(verdict: Verdict) -> str:
     """The obstacle that takes the most satellite-time from one signal, in a sentence."""
     ranked = ranked_obstacles(verdict)
     if not ranked or _cost(ranked[0][1]) <= (0.0, 0.0):
-        return "None: no obstacle takes anything above the mask."
+        return "None; no obstacle takes anything above the mask."
     obstacle = ranked[0][1]
     signal, lost_share = max(
         obstacle.lost_satellite_time_share.items(), key=lambda entry: entry[1], default=("", 0.0)

@@ -36,7 +36,7 @@ INK = "#20262b"
 QUIET = "#8b949b"
 SOLID = "#c9c3ba"
 UNSURVEYED_LOOK: Look = {"facecolor": "none", "edgecolor": "#b9bfc4", "hatch": "////", "linewidth": 0.0}
-LEAVES_LOOK: Look = {"facecolor": "#dfe6cf", "edgecolor": "#7c8c5c", "hatch": "....", "linewidth": 0.6}
+LEAVES_LOOK: Look = {"facecolor": "#dfe6cf", "edgecolor": "#7c8c5c", "hatch": "..", "linewidth": 0.6}
 FREE_HANGING_LOOK: Look = {"facecolor": SOLID, "edgecolor": INK, "linewidth": 0.6}
 
 STEP_DEG = 1.0

@@ -63,8 +63,9 @@ class Section:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Answer:
-    """A question that the reader brings along, and its answer in a sentence or two."""
+    """A question that the reader brings along, its answer, and a short label for both."""
 
+    label: str
     question: str
     answer: str
 

@@ -42,7 +42,7 @@ KEY_LEFT = SIZE_IN[1] / SIZE_IN[0] + 0.01
 HALF_WIDTH = 1.24  # of the drawing, where the rim has radius 1
 AZIMUTH_RADIUS, BADGE_RADIUS = 1.055, 1.15
 BADGE_GAP_DEG = 6.5
-MOST_BADGES = 20
+MOST_BADGES = 18
 KEY_LETTERS = 27
 MASK_DASHES = (5.0, 2.0)
 
@@ -165,6 +165,7 @@ def _draw_key(figure: Figure, mask_deg: float) -> None:
         frameon=False,
         fontsize=7,
         handlelength=3.0,
+        handleheight=1.0,
     )
 
 

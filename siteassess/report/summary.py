@@ -32,11 +32,12 @@ def summary_lines(assessment: Assessment) -> list[str]:
     lines = [f"{plain(assessment.site.place.name)}: {VERDICTS[verdict.outcome].upper()}"]
     for answer in answers(assessment):
         lines += wrap(
-            answer.answer.translate(PLAIN_SIGNS),
+            f"{answer.label}: {answer.answer}".translate(PLAIN_SIGNS),
             WIDTH,
             initial_indent="  ",
             subsequent_indent="    ",
             max_lines=4,
+            break_on_hyphens=False,
             placeholder=" ...",
         )
     room = MOST_LINES - len(lines)

@@ -61,7 +61,7 @@ def _write(assessment: Assessment, folder: Path, tell: Callable[[str], None]) ->
     home.mkdir(parents=True, exist_ok=True)
     if folder.exists() and not folder.is_dir():
         raise NotADirectoryError(20, "it is a file, not a folder")
-    fresh = home / f".{folder.resolve().name}-{secrets.token_hex(4)}"
+    fresh = home / f".siteassess-{secrets.token_hex(4)}"
     fresh.mkdir()
     try:
         for name, make in _makers(assessment, tell):

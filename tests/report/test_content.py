@@ -86,8 +86,8 @@ def test_site_without_obstacles_has_no_worst_direction(markup_assessment):
         for sector in markup_assessment.verdict.sectors
     )
     told = answers(with_outcome(markup_assessment, "pass", obstacles=(), sectors=sectors, sky=sky))
-    assert told[2].answer == "None: nothing that was surveyed stands above the mask."
-    assert told[3].answer == "None: no obstacle takes anything above the mask."
+    assert told[2].answer == "None; nothing that was surveyed stands above the mask."
+    assert told[3].answer == "None; no obstacle takes anything above the mask."
 
 
 def test_dearest_obstacle_is_number_one(markup_assessment):
