@@ -1,21 +1,23 @@
 """The whole flow, from a site to its verdict: the map of the package."""
 
 from dataclasses import dataclass
+from os import PathLike
 
 from siteassess.antenna.pattern import GainPattern
 from siteassess.antenna.read import read_pattern
-from siteassess.errors import gather
+from siteassess.errors import InputError, gather
 from siteassess.horizon.read import read_skyline
 from siteassess.horizon.skyline import Skyline
 from siteassess.link_budget.assemble import link_budget
 from siteassess.link_budget.budget import LinkBudget
 from siteassess.orbits.constellations import nominal_orbits
 from siteassess.site_file.model import Site
+from siteassess.site_file.read import RefusedSite, read_site
 from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
 from siteassess.verdict.judge import judge
 from siteassess.verdict.verdict import Verdict
 
-__all__ = ["Assessment", "assess", "read_inputs"]
+__all__ = ["Assessment", "assess", "assess_file"]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -64,7 +66,7 @@ def assess(site: Site) -> Assessment:
     InputError
         If a file that the site names is wrong; it holds the mistakes of all of them.
     """
-    skyline, pattern = read_inputs(site)
+    skyline, pattern = _read_inputs(site)
     orbits = nominal_orbits(site.sky.systems, site.sky.start)
     tracks = sky_tracks(orbits, site.position, days=site.sky.days, step_s=site.sky.step_s)
     budget = link_budget(site, skyline, pattern, tracks)
@@ -78,7 +80,32 @@ def assess(site: Site) -> Assessment:
     )
 
 
-def read_inputs(site: Site) -> tuple[Skyline, GainPattern]:
-    """Read the files that a site names, and report the mistakes of all of them together."""
+def assess_file(path: str | PathLike[str]) -> Assessment:
+    """Read a site file and assess the site; the mistakes of all its files are told together.
+
+    Parameters
+    ----------
+    path : str or path
+        The site file, or a folder that holds `site.toml`.
+
+    Raises
+    ------
+    InputError
+        With the mistakes of the site file and of the files it names.
+    """
+    try:
+        site = read_site(path)
+    except RefusedSite as refused:
+        if refused.legible is None:
+            raise
+        try:
+            _read_inputs(refused.legible)
+        except InputError as others:
+            raise InputError(*refused.mistakes, *others.mistakes) from refused
+        raise
+    return assess(site)
+
+
+def _read_inputs(site: Site) -> tuple[Skyline, GainPattern]:
     skyline, pattern = gather(lambda: read_skyline(site), lambda: read_pattern(site))
     return skyline, pattern

@@ -41,8 +41,8 @@ class Commands(click.Group):
 def main() -> None:
     """Assess an installation site for a fixed GNSS reference-station antenna.
 
-    A surveyed horizon and the antenna's gain pattern go in; the received power and C/N0 of every satellite, the
-    blocked share of the sky and a verdict come out, with a report to hand over.
+    A surveyed horizon and the antenna's gain pattern go in; the received power and C/N0 of every satellite,
+    the blocked share of the sky and a verdict come out, with a report to hand over.
 
     \b
     Example:
@@ -73,7 +73,9 @@ def new(folder: Path) -> None:
     "--out", type=click.Path(path_type=Path), metavar="FOLDER",
     help="Write the report here instead of SITE-report beside the site file.",
 )  # fmt: skip
-@click.option("--json", "as_json", is_flag=True, help="Print the assessment as JSON; write files only with --out.")
+@click.option(
+    "--json", "as_json", is_flag=True, help="Print the assessment as JSON; write files only with --out."
+)
 @click.option("--quiet", is_flag=True, help="No summary, notes or progress.")
 @click.option("--require-pass", is_flag=True, help="Exit with 3 unless the verdict is pass.")
 @click.pass_context
@@ -88,9 +90,11 @@ def assess(
     Example:
       siteassess assess roof.toml --out reports/roof
     """
+    from siteassess.assessment import assess_file
+
     with _progress(shown=not quiet) as step:
         step("reading and assessing")
-        assessment = _assess(site)
+        assessment = assess_file(site)
         folder = out if out is not None or as_json else _report_folder(assessment)
         if folder is not None:
             from siteassess.report.write import write_report
@@ -109,13 +113,6 @@ def assess(
         click.echo(f"Report written to {folder}", err=True)
     if require_pass and assessment.verdict.outcome != "pass":
         ctx.exit(3)
-
-
-def _assess(path: Path) -> "Assessment":
-    from siteassess.assessment import assess as assess_site
-    from siteassess.site_file.read import read_site
-
-    return assess_site(read_site(path))
 
 
 def _report_folder(assessment: "Assessment") -> Path:

@@ -68,7 +68,9 @@ def _documentation_runs_in_the_checkout(monkeypatch: pytest.MonkeyPatch) -> None
 def write_site(tmp_path: Path) -> Callable[..., Path]:
     """Writes site.toml (with replacements) and horizon.csv into a folder of the test's own."""
 
-    def write(*replacements: tuple[str, str], horizon: str = OPEN_HORIZON, extra: str = "", folder: str = "") -> Path:
+    def write(
+        *replacements: tuple[str, str], horizon: str = OPEN_HORIZON, extra: str = "", folder: str = ""
+    ) -> Path:
         text = SITE_TOML
         for old, new in replacements:
             assert old in text, old

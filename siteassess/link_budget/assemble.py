@@ -1,5 +1,7 @@
 """From skyline, antenna and tracks to the link budget of every sample."""
 
+from typing import Literal
+
 import numpy as np
 from numpy.typing import NDArray
 
@@ -55,7 +57,9 @@ def link_budget(site: Site, skyline: Skyline, pattern: GainPattern, tracks: SkyT
     return LinkBudget(
         samples=samples,
         signals=tuple(
-            _signal_budget(signal, noise_by_carrier[signal.carrier_hz], site, skyline, pattern, tracks, samples)
+            _signal_budget(
+                signal, noise_by_carrier[signal.carrier_hz], site, skyline, pattern, tracks, samples
+            )
             for signal in signals
         ),
     )
@@ -106,7 +110,9 @@ def _signal_budget(
     )
     sample = np.flatnonzero(sends[samples.satellite])
     azimuth_deg, elevation_deg = samples.azimuth_deg[sample], samples.elevation_deg[sample]
-    received_dbw = _received_power_dbw(signal, site.sky.power, tracks, samples.satellite[sample], elevation_deg)
+    received_dbw = _received_power_dbw(
+        signal, site.sky.power, tracks, samples.satellite[sample], elevation_deg
+    )
     gain_dbic = mounted_gain_dbic(pattern, site.mount, azimuth_deg, elevation_deg, signal.carrier_hz)
     loss_db, costly_obstacle = skyline_loss_db(
         skyline, azimuth_deg, samples.apparent_elevation_deg[sample], signal.carrier_hz
@@ -145,7 +151,11 @@ def _class_radii_m(signal: Signal, tracks: SkyTracks) -> dict[str, float]:
 
 
 def _received_power_dbw(
-    signal: Signal, power: str, tracks: SkyTracks, satellite: NDArray[np.int64], elevation_deg: FloatArray
+    signal: Signal,
+    power: Literal["guaranteed", "typical"],
+    tracks: SkyTracks,
+    satellite: NDArray[np.int64],
+    elevation_deg: FloatArray,
 ) -> FloatArray:
     received_dbw = np.empty(len(elevation_deg))
     orbit_class_of = np.array(tracks.orbit_class)[satellite]

@@ -28,7 +28,8 @@ class SkySamples:
     counts_for_shares : boolean array
         Whether the epoch lies in the satellite's own ground-track cycles.
     hiding_obstacle : integer array
-        Index in `Skyline.obstacles` of the highest solid obstacle that hides the direction; -1 where it is open.
+        Index in `Skyline.obstacles` of the highest solid obstacle that hides the direction; -1 where it is
+        open.
     unsurveyed : boolean array
         Whether nobody looked at this direction and nothing known hides it.
     """

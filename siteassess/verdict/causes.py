@@ -17,12 +17,18 @@ SECTOR_NAMES = ("N", "NE", "E", "SE", "S", "SW", "W", "NW")
 
 
 def obstacle_costs(
-    skyline: Skyline, sky: SkyShares, samples: SkySamples, weight: FloatArray, by_signal: dict[str, SampleStates]
+    skyline: Skyline,
+    sky: SkyShares,
+    samples: SkySamples,
+    weight: FloatArray,
+    by_signal: dict[str, SampleStates],
 ) -> tuple[ObstacleCost, ...]:
     """What each obstacle costs, in the order of the skyline."""
     count = len(skyline.obstacles)
     total = weight.sum()
-    blocked = _sum_by_obstacle(samples.hiding_obstacle, weight, count) / total if total > 0 else np.zeros(count)
+    blocked = (
+        _sum_by_obstacle(samples.hiding_obstacle, weight, count) / total if total > 0 else np.zeros(count)
+    )
     lost = {
         signal: _sum_by_obstacle(states.blamed_obstacle, states.weight * states.lost, count)
         / max(states.weight.sum(), np.finfo(float).tiny)
@@ -45,7 +51,8 @@ def obstacle_costs(
 
 
 def _sum_by_obstacle(obstacle: NDArray[np.int64], weight: FloatArray, count: int) -> FloatArray:
-    return np.bincount(obstacle + 1, weights=weight, minlength=count + 1)[1:]
+    summed: FloatArray = np.bincount(obstacle + 1, weights=weight, minlength=count + 1)[1:].astype(float)
+    return summed
 
 
 def sector_shares(

@@ -123,14 +123,17 @@ def _signal_reason(
     ]
     if signal.open_sky_usable_share < require.min_usable_share:
         sentences.append(
-            f"Antenna and chain alone miss the limit: even under an open sky only {signal.open_sky_usable_share:.1%} "
-            f"reaches {min_cn0_dbhz:g} dB-Hz."
+            "Antenna and chain alone miss the limit: even under an open sky only "
+            f"{signal.open_sky_usable_share:.1%} reaches {min_cn0_dbhz:g} dB-Hz."
         )
     if signal.lost_share >= WORTH_NAMING_SHARE:
-        sentences.append(f"Obstacles take {signal.lost_share:.1%}{_worst_obstacle(signal.signal, obstacles)}.")
+        sentences.append(
+            f"Obstacles take {signal.lost_share:.1%}{_worst_obstacle(signal.signal, obstacles)}."
+        )
     if outcome == "unproven":
         sentences.append(
-            f"Holds only if the unsurveyed sky ({sky.unsurveyed_share:.1%} of the sky above the mask) is open."
+            f"Holds only if the unsurveyed sky ({sky.unsurveyed_share:.1%} of the sky above the mask) "
+            "is open."
         )
     return " ".join(sentences)
 

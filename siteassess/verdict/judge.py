@@ -65,7 +65,7 @@ def judge(site: Site, skyline: Skyline, tracks: SkyTracks, budget: LinkBudget) -
 
 
 def _outcome(findings: tuple[Finding, ...], sky: SkyShares) -> Literal["pass", "fail", "unproven"]:
-    """Fail when a required criterion is missed; a pass needs that the whole sky above the mask was looked at."""
+    """Fail when a required criterion is missed; pass only when the whole sky above the mask was looked at."""
     if any(finding.required and finding.outcome == "missed" for finding in findings):
         return "fail"
     return "unproven" if sky.unsurveyed_share > 0 else "pass"

@@ -34,7 +34,9 @@ def signal_shares(budget: SignalBudget, states: SampleStates) -> SignalShares:
     )
 
 
-def weighted_quantiles(values: FloatArray, weights: FloatArray, shares: tuple[float, ...]) -> list[float | None]:
+def weighted_quantiles(
+    values: FloatArray, weights: FloatArray, shares: tuple[float, ...]
+) -> list[float | None]:
     """Values below which the given shares of the weight lie; None when there is no weight."""
     counted = weights > 0
     if not counted.any():

@@ -1,8 +1,8 @@
 """The state of every sample of a signal: hidden, weakened, usable, lost.
 
-The denominator of every share is geometric satellite-time above the mask under an open sky. Every sample weighs
-the inverse of the epochs of its satellite's own ground-track cycles, so that satellites with longer cycles do not
-count for more.
+The denominator of every share is geometric satellite-time above the mask under an open sky. Every sample
+weighs the inverse of the epochs of its satellite's own ground-track cycles, so that satellites with longer
+cycles do not count for more.
 """
 
 from dataclasses import dataclass

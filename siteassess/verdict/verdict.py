@@ -6,7 +6,15 @@ from typing import Literal
 
 from siteassess.horizon.shares import SkyShares
 
-__all__ = ["Finding", "ObstacleCost", "SatelliteShare", "SectorShare", "SignalShares", "UsableCount", "Verdict"]
+__all__ = [
+    "Finding",
+    "ObstacleCost",
+    "SatelliteShare",
+    "SectorShare",
+    "SignalShares",
+    "UsableCount",
+    "Verdict",
+]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -44,10 +52,11 @@ class Finding:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class SignalShares:
-    """How one signal fares over all satellites that send it, as shares of open-sky satellite-time above the mask.
+    """How one signal fares over all satellites that send it.
 
-    `usable_share_of_open_sky` is relative to what antenna and chain alone would leave usable; None when that is
-    nothing. C/N0 figures run over samples that are not hidden and are None where there are none.
+    Shares are of open-sky satellite-time above the mask; `usable_share_of_open_sky` is relative to what antenna
+    and chain alone would leave usable, and None when that is nothing. C/N0 figures run over samples that are
+    not hidden and are None where there are none.
     """
 
     signal: str
@@ -85,8 +94,8 @@ class ObstacleCost:
     """What one obstacle costs.
 
     `azimuth_from_deg` to `azimuth_to_deg` runs clockwise (and may pass 360); `peak_elevation_deg` stands at
-    `peak_azimuth_deg`. `lost_satellite_time_share` maps each signal to the share of its open-sky satellite-time
-    that is usable without obstacles and is not usable because of this one.
+    `peak_azimuth_deg`. `lost_satellite_time_share` maps each signal to the share of its open-sky
+    satellite-time that is usable without obstacles and is not usable because of this one.
     """
 
     name: str
@@ -119,7 +128,7 @@ class SectorShare:
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class UsableCount:
-    """Satellites of one system, or of all ("all systems"), usable at once over the window of the joint counts.
+    """Satellites of one system, or of all, usable at once over the window of the joint counts.
 
     A satellite counts when at least one of the site's signals from it is usable.
     """
@@ -140,8 +149,8 @@ class Verdict:
     outcome : str
         "pass", "fail" or "unproven".
     findings : tuple of Finding
-        The worst first: required before advice, missed before unproven before met, then by shortfall relative to
-        the limit.
+        The worst first: required before advice, missed before unproven before met, then by shortfall relative
+        to the limit.
     sky : SkyShares
         Solid angles.
     blocked_satellite_time_share : float

@@ -50,7 +50,10 @@ def main() -> None:
         ]
         print(f"{'command':<22}{'seconds':>9}{'yardstick':>11}{'ratio':>8}{'aim':>6}{'peak MB':>9}")
         for name, command, yardstick, aim in rows:
-            own, other = median_seconds(command, repeats), median_seconds([sys.executable, "-c", yardstick], repeats)
+            own, other = (
+                median_seconds(command, repeats),
+                median_seconds([sys.executable, "-c", yardstick], repeats),
+            )
             peak = subprocess.run(
                 [sys.executable, "-c", PEAK_MEMORY, *command], check=True, capture_output=True, text=True
             ).stdout.strip()

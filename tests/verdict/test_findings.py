@@ -123,7 +123,9 @@ def test_worst_finding_comes_first() -> None:
 
 def test_every_criterion_but_the_roof_depends_on_the_sky() -> None:
     sky = replace(OPEN_SKY, unsurveyed_share=0.1)
-    outcomes = {key[0]: finding.outcome for key, finding in findings(sky=sky, height_above_roof_m=1.0).items()}
+    outcomes = {
+        key[0]: finding.outcome for key, finding in findings(sky=sky, height_above_roof_m=1.0).items()
+    }
     assert outcomes.pop("min_height_above_roof_m") == "met"
     assert set(outcomes.values()) == {"unproven"}
 
