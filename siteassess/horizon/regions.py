@@ -89,10 +89,10 @@ def solid_region(skyline: Skyline) -> Region:
 
 def foliage_region(skyline: Skyline) -> Region:
     """Foliage before sky that nothing solid hides, each direction given to the highest foliage."""
+    if all(obstacle.cover != "foliage" for obstacle in skyline.obstacles):
+        return _region(obstacle_curves((), ()), np.array([0.0, 360.0]), [])
     solid_curves, solid_bands = _solid_bands(skyline)
     curves, bands = _foliage_bands(skyline.obstacles, solid_curves)
-    if not bands:
-        return _region(curves, np.array([0.0, 360.0]), [])
     breaks_deg = _all_breaks(curves, solid_bands + bands)
     solid = _remaining(curves, solid_bands, breaks_deg)
     parts = []

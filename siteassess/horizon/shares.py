@@ -86,7 +86,7 @@ def sky_shares(skyline: Skyline, mask_deg: float) -> SkyShares:
         minlength=len(skyline.obstacles),
     )
     block_share, block_deg = _largest_block(solid, solid_sr, mask_deg)
-    peak_elevation_deg, peak_azimuth_deg = _peak(skyline)
+    peak_elevation_deg, peak_azimuth_deg = _peak(solid)
     return SkyShares(
         blocked_share_of_hemisphere=_share(_area_sr(solid, 0.0, 90.0).sum() / (2.0 * np.pi)),
         blocked_share_above_mask=_share(solid_sr.sum() / above_mask_sr),
@@ -237,9 +237,8 @@ def _above_mask(region: Region, mask_deg: float) -> tuple[FloatArray, FloatArray
     return start_deg, end_deg
 
 
-def _peak(skyline: Skyline) -> tuple[float, float]:
+def _peak(region: Region) -> tuple[float, float]:
     """Elevation and azimuth of the highest solid edge; 0 and 0 where none is above the horizon."""
-    region = solid_region(skyline)
     azimuth_deg = np.concatenate([region.start_deg, region.end_deg])
     curve = np.concatenate([region.curve, region.curve])
     elevation_deg = edge_elevation(region.curves, curve, azimuth_deg)

@@ -44,6 +44,8 @@ def silhouette(points: Points, *, straight_in_space: bool, closed: bool) -> Poin
     Points
         Ascending. Unless closed, an edge that leaves part of the circle free starts behind that part.
     """
+    if not straight_in_space:
+        points = _halved(points)
     sides = _sides(points)
     turn_deg = 360.0 * np.floor(sides.start_deg / 360.0)
     curves = curves_between(
@@ -88,6 +90,22 @@ class _Sides:
     start_deg: FloatArray
     end_deg: FloatArray
     run: IndexArray  # number of the stretch that keeps one direction
+
+
+def _halved(points: Points) -> Points:
+    """The same edge with a point in the middle of its longest sides, so that none goes round the circle."""
+    long = np.flatnonzero(np.abs(np.diff(points.azimuth_deg)) > 180.0)
+
+    def filled(values: FloatArray) -> FloatArray:
+        return np.insert(values, long + 1, 0.5 * (values[long] + values[long + 1]))
+
+    return Points(
+        azimuth_deg=filled(points.azimuth_deg),
+        elevation_deg=filled(points.elevation_deg),
+        underside_deg=filled(points.underside_deg),
+        distance_m=filled(points.distance_m),
+        depth_m=filled(points.depth_m),
+    )
 
 
 def _sides(points: Points) -> _Sides:

@@ -126,17 +126,13 @@ def _points(rows: Rows, which: IndexArray, offset_m: tuple[float, float, float])
     near = points.horizontal_m < NEAREST_M
     if near.any():
         places = [f"line {line}" for line in rows.line[which[near]].tolist()]
-        raise InputError(*(_misplaced(rows, place, "lies on the antenna's own axis") for place in places))
+        raise InputError(*(_misplaced(rows, place, "lies on the axis of the antenna") for place in places))
     return points
 
 
-def _misplaced(rows: Rows, where: str, problem: str) -> Mistake:
-    return Mistake(
-        file=rows.file,
-        where=where,
-        problem=f"{problem}, seen from the antenna",
-        allowed="check the distances and where the instrument stood",
-    )
+def _misplaced(rows: Rows, where: str, problem: str, remedy: str = "") -> Mistake:
+    allowed = f"{remedy}check its distance and where the instrument stood"
+    return Mistake(file=rows.file, where=where, problem=problem, allowed=allowed)
 
 
 def _general(
@@ -153,6 +149,11 @@ def _general(
     if gap.all():
         return [], np.empty((0, 2))
     points = _points(rows, which, offset_m)
+    behind = np.abs(points.azimuth_deg - given_deg) >= 90.0
+    if behind.any():
+        problem, remedy = "lies between the instrument and the antenna", "give it an obstacle label, or "
+        places = [f"line {line}" for line in rows.line[which[behind]].tolist()]
+        raise InputError(*(_misplaced(rows, place, problem, remedy) for place in places))
     ends_deg = np.stack(
         [points.azimuth_deg, np.append(points.azimuth_deg[1:], points.azimuth_deg[0] + 360.0)]
     )
@@ -201,7 +202,7 @@ def _named(rows: Rows, which: IndexArray, offset_m: tuple[float, float, float]) 
         step_deg = np.diff(points.azimuth_deg)
         name = f"obstacle {shown(rows.texts['obstacle'][which[0]])}"
         if (np.abs(step_deg) > 180.0 - HALF_TURN_TOLERANCE_DEG).any():
-            raise InputError(_misplaced(rows, name, "runs through the antenna's own axis"))
+            raise InputError(_misplaced(rows, name, "runs through the axis of the antenna"))
         # Sighted clockwise but seen anticlockwise through half the circle: from within.
         if step_deg.sum() <= -180.0:
             raise InputError(_misplaced(rows, name, "closes round the antenna"))

@@ -158,7 +158,7 @@ def is_unsurveyed(skyline: Skyline, azimuth_deg: ArrayLike, elevation_deg: Array
         ends_behind = np.searchsorted(
             skyline.unsurveyed_deg.ravel(), wrap_azimuth_deg(azimuth_deg), side="right"
         )
-        in_gap = (ends_behind % 2 == 1) & ~np.isnan(elevation_deg)
+        in_gap = np.asarray((ends_behind % 2 == 1) & ~np.isnan(elevation_deg))
         in_gap[in_gap] = hiding_obstacle(skyline, azimuth_deg[in_gap], elevation_deg[in_gap]) < 0
     return in_gap
 
