@@ -12,7 +12,7 @@ from siteassess.link_budget.assemble import link_budget
 from siteassess.link_budget.budget import LinkBudget
 from siteassess.orbits.constellations import nominal_orbits
 from siteassess.site_file.model import Site
-from siteassess.site_file.read import RefusedSite, read_site
+from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
 from siteassess.verdict.judge import judge
 from siteassess.verdict.verdict import Verdict
@@ -95,7 +95,7 @@ def assess_file(path: str | PathLike[str]) -> Assessment:
     """
     try:
         site = read_site(path)
-    except RefusedSite as refused:
+    except RefusedSiteError as refused:
         if refused.legible is None:
             raise
         try:

@@ -26,7 +26,7 @@ from siteassess.site_file.position import survey_mark
 from siteassess.site_file.refusals import PATH_HINT, refusals
 from siteassess.tables import read_user_text
 
-__all__ = ["RefusedSite", "read_site"]
+__all__ = ["RefusedSiteError", "read_site"]
 
 AnyRecord = TypeVar("AnyRecord", bound=Record)
 
@@ -35,7 +35,7 @@ TOML_PLACE = re.compile(r"^(.*) \(at (?:line (\d+), column (\d+)|end of document
 BACKSLASH = re.compile(r'"[^"\n]*\\')
 
 
-class RefusedSite(InputError):
+class RefusedSiteError(InputError):
     """A site file with mistakes.
 
     Attributes
@@ -66,7 +66,7 @@ def read_site(path: str | os.PathLike[str]) -> Site:
     Raises
     ------
     InputError
-        With every mistake of the file: a `RefusedSite` when it is TOML.
+        With every mistake of the file: a `RefusedSiteError` when it is TOML.
     """
     path = Path(path)
     if path.is_dir():
@@ -80,9 +80,9 @@ def read_site(path: str | os.PathLike[str]) -> Site:
         site = Site.model_validate(raw)
     except ValidationError as error:
         refused = (*refusals(error, file), *mistakes)
-        raise RefusedSite(*refused, legible=_legible(raw, path)) from error
+        raise RefusedSiteError(*refused, legible=_legible(raw, path)) from error
     if mistakes or position is None:
-        raise RefusedSite(*mistakes, legible=_legible(raw, path))
+        raise RefusedSiteError(*mistakes, legible=_legible(raw, path))
     site = site.model_copy(update={"sky": _completed(site.sky)})
     site._path, site._position = path, position
     return site
