@@ -28,8 +28,8 @@ MODULES = sorted(
     if not module.name.endswith("__main__")
 )
 
-# What a site file holds is told key by key, and the report says what the others found.
-WITHOUT_METHOD = {"site_file": "site_file.md", "report": None}
+# What a site file holds is told key by key.
+PAGE_OF_STAGE = {"site_file": "site_file.md"}
 METHOD_HEADINGS = [
     "Question",
     "Inputs",
@@ -219,11 +219,12 @@ STAGES = sorted(path.parent.name for path in PACKAGE.glob("*/__init__.py"))
 
 @pytest.mark.parametrize("stage", STAGES)
 def test_every_stage_has_its_page(stage: str) -> None:
-    if stage in WITHOUT_METHOD:
-        instead = WITHOUT_METHOD[stage]
-        assert instead is None or (DOCS / instead).is_file()
-        return
-    text = page(f"methods/{stage}.md")
+    assert (DOCS / PAGE_OF_STAGE.get(stage, f"methods/{stage}.md")).is_file()
+
+
+@pytest.mark.parametrize("path", sorted(DOCS.glob("methods/*.md")), ids=lambda path: path.stem)
+def test_method_pages_answer_the_same_questions_and_show_an_example(path: Path) -> None:
+    text = path.read_text(encoding="utf-8")
     assert re.findall(r"^## (.*)$", text, re.MULTILINE) == METHOD_HEADINGS
     example = text.partition("## Worked example")[2].partition("\n## ")[0]
     assert ">>> " in example
