@@ -63,6 +63,15 @@ def test_pieces_cover_the_circle_once(seed: int, obstacle: Build) -> None:
     assert (outline.end_elevation_deg[nothing] == -90.0).all()
 
 
+def test_a_long_survey_among_walls_is_their_highest_edge(obstacle: Build, skyline: BuildSkyline) -> None:
+    # A survey longer than all the rest is merged last; it must not matter.
+    long_deg = np.linspace(0, 360, 2001)
+    obstacles = [obstacle(long_deg, 15 + 10 * np.sin(long_deg)), *random_obstacles(1, obstacle)]
+    azimuth_deg = np.random.default_rng(7).uniform(0, 360, 5000)
+    seen = outline_elevation_deg(skyline(*obstacles), azimuth_deg)
+    np.testing.assert_allclose(seen, highest_edge_deg(obstacles, azimuth_deg), atol=ROUNDING_DEG)
+
+
 def test_two_sloping_edges_cross_where_the_lines_meet(obstacle: Build) -> None:
     # By hand: 0.1 az = 20 - 0.1 az at 100 degrees, where both stand at 10 degrees.
     outline = upper_envelope([obstacle([0, 200], [0, 20]), obstacle([0, 200], [20, 0])])

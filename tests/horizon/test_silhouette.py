@@ -37,27 +37,40 @@ def ray_hits(
     return hits
 
 
-def test_an_edge_that_folds_back_shows_its_highest_part(survey: Read) -> None:
+def turned(east_m: float, north_m: float, by_deg: float) -> tuple[float, float]:
+    """A place turned clockwise about the mark."""
+    sine, cosine = np.sin(np.deg2rad(by_deg)), np.cos(np.deg2rad(by_deg))
+    return float(east_m * cosine + north_m * sine), float(north_m * cosine - east_m * sine)
+
+
+@pytest.mark.parametrize("by_deg", [0.0, 35.0, 60.0, 200.0])
+def test_an_edge_that_folds_back_shows_its_highest_part(by_deg: float, survey: Read) -> None:
     # Authority: rays against the edges in plan, solved by numpy. From the mark the four corners ascend in
-    # azimuth; from the antenna, 14 m east of the instrument, the near part covers the far one.
+    # azimuth; from the antenna, 14 m aside of the instrument, the near part covers the far one. Turned by 35
+    # and 60 degrees, it runs through north.
     corners_m = [(-6.0, 20.0, 9.0), (-2.0, 30.0, 14.0), (3.0, 12.0, 4.0), (9.0, 13.0, 5.0)]
-    text = "azimuth_deg,elevation_deg,distance_m,obstacle\n" + "".join(
-        row_of(*at, "yard") for at in corners_m
-    )
-    (yard,) = survey(text, instrument_east_m=-14.0).obstacles
+    corners_m = [(*turned(east, north, by_deg), up) for east, north, up in corners_m]
+    antenna_m = turned(14.0, 0.0, by_deg)
+    rows = "".join(row_of(*at, "yard") for at in corners_m)
+    (yard,) = survey(
+        "azimuth_deg,elevation_deg,distance_m,obstacle\n" + rows,
+        instrument_east_m=-antenna_m[0],
+        instrument_north_m=-antenna_m[1],
+    ).obstacles
     assert (np.diff(yard.azimuth_deg) >= 0).all()
+    assert yard.azimuth_deg[-1] - yard.azimuth_deg[0] < 90.0
     assert yard.straight_in_space
-    seen = 0
-    for azimuth_deg in np.arange(270.3, 360, 1.7):
-        hits = ray_hits(azimuth_deg, corners_m, (14.0, 0.0))
+    covered = 0
+    for azimuth_deg in np.arange(0.3, 360, 1.7):
+        hits = ray_hits(azimuth_deg, corners_m, antenna_m)
         if hits:
             highest = max(hits)
             assert edge_elevation_deg(yard, azimuth_deg) == pytest.approx(highest[0], abs=ROUNDING_DEG)
             assert edge_distance_m(yard, azimuth_deg) == pytest.approx(highest[1], abs=ROUNDING_DEG)
-            seen += len(hits) > 1
+            covered += len(hits) > 1
         else:
             assert np.isnan(edge_elevation_deg(yard, azimuth_deg))
-    assert seen > 3  # the case is there
+    assert covered > 3  # the case is there
 
 
 def test_a_general_skyline_that_folds_back_stays_closed(survey: Read) -> None:

@@ -9,7 +9,10 @@ from siteassess.horizon.survey import Survey
 
 Read = Callable[..., Survey]
 
-HEADER = "azimuth_deg,elevation_deg,distance_m,slant_distance_m,obstacle,cover,leaf,depth_m,underside_deg,width_m\n"
+HEADER = (
+    "azimuth_deg,elevation_deg,distance_m,slant_distance_m,"
+    "obstacle,cover,leaf,depth_m,underside_deg,width_m\n"
+)
 CHECK = "check its distance and where the instrument stood"
 
 CASES = {
