@@ -6,13 +6,12 @@ import numpy as np
 from numpy.typing import ArrayLike
 
 from siteassess.angles import wrap_azimuth_deg
-from siteassess.horizon.curves import FloatArray, capped_area, edge_elevation, level_azimuth
+from siteassess.horizon.blocks import largest_block
+from siteassess.horizon.curves import FloatArray, capped_area, edge_elevation
 from siteassess.horizon.regions import Region, foliage_region, solid_region
 from siteassess.horizon.skyline import Skyline
 
 __all__ = ["SkyShares", "covered_share", "sky_shares"]
-
-TOUCHING_DEG = 1e-6  # obstacles that leave less open between them are one block
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -85,7 +84,7 @@ def sky_shares(skyline: Skyline, mask_deg: float) -> SkyShares:
         weights=np.concatenate([solid_sr, leaves_sr]),
         minlength=len(skyline.obstacles),
     )
-    block_share, block_deg = _largest_block(solid, solid_sr, mask_deg)
+    block_share, block_deg = largest_block(solid, solid_sr, mask_deg)
     peak_elevation_deg, peak_azimuth_deg = _peak(solid)
     return SkyShares(
         blocked_share_of_hemisphere=_share(_area_sr(solid, 0.0, 90.0).sum() / (2.0 * np.pi)),
@@ -198,43 +197,6 @@ def _unsurveyed_sr(skyline: Skyline, region: Region, mask_deg: float) -> float:
     in_gap = np.searchsorted(gaps_deg.ravel(), _middle_deg(cut), side="right") % 2 == 1
     hidden_sr = _area_sr(cut, mask_deg, 90.0)[in_gap].sum()
     return float(width_rad * (1.0 - np.sin(np.deg2rad(mask_deg))) - hidden_sr)
-
-
-def _largest_block(
-    region: Region, area_sr: FloatArray, mask_deg: float
-) -> tuple[float, tuple[float, float] | None]:
-    """Share of the hemisphere and azimuths of the largest stretch hidden above the mask without a gap."""
-    start_deg, end_deg = _above_mask(region, mask_deg)
-    if not len(start_deg):
-        return 0.0, None
-    order = np.argsort(start_deg, kind="stable")
-    reach_deg = np.maximum.accumulate(end_deg[order])
-    new = np.append(True, start_deg[order][1:] > reach_deg[:-1] + TOUCHING_DEG)
-    block_start = start_deg[order][new]
-    block_end = reach_deg[np.append(np.flatnonzero(new)[1:] - 1, len(reach_deg) - 1)]
-    # A piece that nowhere passes the mask has no area above it, in whatever block it is counted.
-    block = np.clip(np.searchsorted(block_start, _middle_deg(region), side="right") - 1, 0, None)
-    block_sr = np.bincount(block, weights=area_sr, minlength=len(block_start))
-    if len(block_start) > 1 and block_start[0] + 360.0 <= block_end[-1] + TOUCHING_DEG:
-        block_sr[-1] += block_sr[0]
-        block_end[-1] = block_end[0] + 360.0
-        block_sr, block_start, block_end = block_sr[1:], block_start[1:], block_end[1:]
-    largest = int(np.argmax(block_sr))
-    return _share(block_sr[largest] / (2.0 * np.pi)), (float(block_start[largest]), float(block_end[largest]))
-
-
-def _above_mask(region: Region, mask_deg: float) -> tuple[FloatArray, FloatArray]:
-    """Azimuths from and to of the parts of upper edges that lie above the mask."""
-    upper = region.sign > 0.0
-    curve, start_deg, end_deg = region.curve[upper], region.start_deg[upper], region.end_deg[upper]
-    first_deg = edge_elevation(region.curves, curve, start_deg)
-    last_deg = edge_elevation(region.curves, curve, end_deg)
-    level_deg = np.clip(mask_deg, np.minimum(first_deg, last_deg), np.maximum(first_deg, last_deg))
-    pass_deg = level_azimuth(region.curves, curve, start_deg, end_deg, level_deg)
-    above = np.maximum(first_deg, last_deg) > mask_deg
-    start_deg = np.where(first_deg < mask_deg, pass_deg, start_deg)[above]
-    end_deg = np.where(last_deg < mask_deg, pass_deg, end_deg)[above]
-    return start_deg, end_deg
 
 
 def _peak(region: Region) -> tuple[float, float]:

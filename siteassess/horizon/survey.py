@@ -1,7 +1,5 @@
 """One survey file: the obstacles as the antenna sees them, and the azimuths that somebody looked at."""
 
-import math
-import re
 from dataclasses import dataclass, replace
 from pathlib import Path
 
@@ -9,13 +7,19 @@ import numpy as np
 
 from siteassess.errors import InputError, Mistake
 from siteassess.horizon.carry import Points, carried, turned_short_way
-from siteassess.horizon.curves import NOTHING_DEG, BoolArray, FloatArray, IndexArray
+from siteassess.horizon.curves import FloatArray, IndexArray
+from siteassess.horizon.ring import closed_ring, opened_ring
 from siteassess.horizon.silhouette import is_ascending, silhouette
 from siteassess.horizon.skyline import GENERAL_SKYLINE, Obstacle
-from siteassess.horizon.survey_checks import cover_of, general_mistakes, leaf_of, obstacle_mistakes
+from siteassess.horizon.survey_checks import (
+    cover_of,
+    general_mistakes,
+    leaf_of,
+    listed_mistakes,
+    obstacle_mistakes,
+)
 from siteassess.horizon.survey_rows import Rows, cell_mistake, read_rows
 from siteassess.site_file.model import HorizonSource, Mount
-from siteassess.tables import MOST_MISTAKES
 from siteassess.wording import shown
 
 __all__ = ["Survey", "read_survey"]
@@ -65,7 +69,7 @@ def read_survey(path: Path, source: HorizonSource, mount: Mount) -> Survey:
         check = general_mistakes if label is None else obstacle_mistakes
         mistakes += check(rows, members[label])
     if mistakes:
-        raise InputError(*_listed(mistakes, rows.file))
+        raise InputError(*listed_mistakes(mistakes, rows.file))
     up_m = mount.phase_centre_height_m if source.instrument_up_m is None else source.instrument_up_m
     offset_m = (source.instrument_east_m, source.instrument_north_m, up_m - mount.phase_centre_height_m)
     obstacles: list[Obstacle] = []
@@ -81,33 +85,8 @@ def read_survey(path: Path, source: HorizonSource, mount: Mount) -> Survey:
         except InputError as error:
             mistakes += error.mistakes
     if mistakes:
-        raise InputError(*_listed(mistakes, rows.file))
+        raise InputError(*listed_mistakes(mistakes, rows.file))
     return Survey(obstacles=tuple(obstacles), surveyed_deg=surveyed_deg)
-
-
-def _listed(mistakes: list[Mistake], file: str) -> list[Mistake]:
-    """One mistake for each place of the file, in its order, and not too many."""
-    at_place: dict[str, Mistake] = {}
-    for mistake in mistakes:
-        at_place.setdefault(mistake.where or mistake.problem, mistake)
-    kept = sorted(at_place.values(), key=_line)
-    further = len(kept) - MOST_MISTAKES
-    if further <= 0:
-        return kept
-    closing = Mistake(
-        file=file,
-        where="",
-        problem=f"has {further} more mistakes",
-        allowed="the first are listed",
-        value=further,
-    )
-    return [*kept[:MOST_MISTAKES], closing]
-
-
-def _line(mistake: Mistake) -> float:
-    """Line of the file that a mistake names; those without one stand last."""
-    found = re.match(r"line (\d+)", mistake.where)
-    return float(found[1]) if found else math.inf
 
 
 def _points(rows: Rows, which: IndexArray, offset_m: tuple[float, float, float]) -> Points:
@@ -157,38 +136,10 @@ def _general(
     ends_deg = np.stack(
         [points.azimuth_deg, np.append(points.azimuth_deg[1:], points.azimuth_deg[0] + 360.0)]
     )
-    points = _opened(points, gap) if gap.any() else _closed(points)
+    points = opened_ring(points, gap) if gap.any() else closed_ring(points)
     if not is_ascending(points):
         points = silhouette(points, straight_in_space=False, closed=True)
     return [_obstacle(rows, which, points)], np.sort(ends_deg[:, ~gap].T, axis=1)
-
-
-def _closed(points: Points) -> Points:
-    """A ring that ends where it begins, one turn further."""
-    closed = points.taken(np.append(np.arange(len(points.azimuth_deg)), 0))
-    return replace(closed, azimuth_deg=np.append(points.azimuth_deg, points.azimuth_deg[0] + 360.0))
-
-
-def _opened(points: Points, gap: BoolArray) -> Points:
-    """A ring with gaps behind some of its points: it starts behind one, and lies at -90 along the others."""
-    joined = ~(gap & np.roll(gap, 1))
-    points, gap = points.taken(joined), gap[joined]
-    begin = (int(np.flatnonzero(gap)[-1]) + 1) % len(gap)
-    order = np.roll(np.arange(len(gap)), -begin)
-    points = replace(points, azimuth_deg=points.azimuth_deg + 360.0 * (np.arange(len(gap)) < begin))
-    points, gap = points.taken(order), gap[order]
-    # The point on either side of a gap stands there twice: its copy on the side of the gap drops.
-    behind = np.flatnonzero(gap[:-1])
-    twice = np.sort(np.concatenate([np.arange(len(gap)), behind, behind + 1]))
-    dropped = np.zeros(len(twice), dtype=np.bool_)
-    dropped[np.searchsorted(twice, behind, side="right") - 1] = True
-    dropped[np.searchsorted(twice, behind + 1, side="left")] = True
-    points = points.taken(twice)
-    return replace(
-        points,
-        elevation_deg=np.where(dropped, NOTHING_DEG, points.elevation_deg),
-        distance_m=np.where(dropped, np.nan, points.distance_m),
-    )
 
 
 def _named(rows: Rows, which: IndexArray, offset_m: tuple[float, float, float]) -> Obstacle:

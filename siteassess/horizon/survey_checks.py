@@ -1,5 +1,7 @@
 """Checks of a survey across its rows: order, and one answer for each obstacle."""
 
+import math
+import re
 from collections.abc import Iterator
 
 import numpy as np
@@ -7,9 +9,10 @@ import numpy as np
 from siteassess.errors import Mistake
 from siteassess.horizon.curves import IndexArray
 from siteassess.horizon.survey_rows import COVERS, LEAVES, Cover, Leaf, Rows, cell_mistake
+from siteassess.tables import MOST_MISTAKES
 from siteassess.wording import shown
 
-__all__ = ["cover_of", "general_mistakes", "leaf_of", "obstacle_mistakes"]
+__all__ = ["cover_of", "general_mistakes", "leaf_of", "listed_mistakes", "obstacle_mistakes"]
 
 
 def general_mistakes(rows: Rows, which: IndexArray) -> Iterator[Mistake]:
@@ -139,3 +142,28 @@ def _order_mistakes(rows: Rows, which: IndexArray) -> Iterator[Mistake]:
         for place in np.flatnonzero(step_deg >= 180.0).tolist():
             allowed = "neighbouring rows with distances must be less than 180 degrees apart"
             yield cell_mistake(rows, int(which[place + 1]), "azimuth_deg", allowed)
+
+
+def listed_mistakes(mistakes: list[Mistake], file: str) -> list[Mistake]:
+    """One mistake for each place of the file, in its order, and not too many."""
+    at_place: dict[str, Mistake] = {}
+    for mistake in mistakes:
+        at_place.setdefault(mistake.where or mistake.problem, mistake)
+    kept = sorted(at_place.values(), key=_line)
+    further = len(kept) - MOST_MISTAKES
+    if further <= 0:
+        return kept
+    closing = Mistake(
+        file=file,
+        where="",
+        problem=f"has {further} more mistakes",
+        allowed="the first are listed",
+        value=further,
+    )
+    return [*kept[:MOST_MISTAKES], closing]
+
+
+def _line(mistake: Mistake) -> float:
+    """Line of the file that a mistake names; those without one stand last."""
+    found = re.match(r"line (\d+)", mistake.where)
+    return float(found[1]) if found else math.inf

@@ -6,17 +6,14 @@ from pathlib import Path
 from typing import Literal
 
 import numpy as np
-from numpy.typing import NDArray
 
 from siteassess.errors import Mistake
+from siteassess.horizon.curves import BoolArray, FloatArray, IndexArray
 from siteassess.horizon.skyline import GENERAL_SKYLINE
 from siteassess.tables import UserTable, read_user_table
 from siteassess.wording import did_you_mean, listed, shown
 
 __all__ = ["COVERS", "LEAVES", "Cover", "Leaf", "Rows", "cell_mistake", "read_rows"]
-
-FloatArray = NDArray[np.float64]
-BoolArray = NDArray[np.bool_]
 
 Cover = Literal["solid", "foliage"]
 Leaf = Literal["in-leaf", "leafless", "evergreen"]
@@ -53,7 +50,7 @@ class Rows:
     """
 
     file: str
-    line: NDArray[np.int64]
+    line: IndexArray
     numbers: dict[str, FloatArray]
     texts: dict[str, tuple[str | None, ...]]
 
@@ -68,7 +65,7 @@ class Rows:
         slant_m = self.numbers["distance_m"] / np.cos(np.deg2rad(self.numbers["elevation_deg"]))
         return np.where(np.isnan(slant_m), self.numbers["slant_distance_m"], slant_m)
 
-    def by_label(self) -> dict[str | None, NDArray[np.int64]]:
+    def by_label(self) -> dict[str | None, IndexArray]:
         """Indices of the rows of each obstacle, and under None those of the general skyline."""
         members: dict[str | None, list[int]] = {}
         for row, label in enumerate(self.texts["obstacle"]):

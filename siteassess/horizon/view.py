@@ -3,13 +3,12 @@
 All functions broadcast their directions; an azimuth may have any multiple of 360 degrees in it.
 """
 
-from dataclasses import dataclass
-
 import numpy as np
-from numpy.typing import ArrayLike, NDArray
+from numpy.typing import ArrayLike
 
 from siteassess.angles import wrap_azimuth_deg
-from siteassess.horizon.curves import NOTHING_DEG, FloatArray, IndexArray, between_on_great_circle
+from siteassess.horizon.curves import NOTHING_DEG, BoolArray, FloatArray, IndexArray, between_on_great_circle
+from siteassess.horizon.place import is_within, locate
 from siteassess.horizon.skyline import Obstacle, Outline, Skyline
 
 __all__ = [
@@ -23,9 +22,6 @@ __all__ = [
     "outline_elevation_deg",
     "underside_elevation_deg",
 ]
-
-ONE_AZIMUTH_DEG = 1e-9  # azimuths that differ less are one: wrapping leaves about 1e-13 degrees
-BoolArray = NDArray[np.bool_]
 
 
 def edge_elevation_deg(obstacle: Obstacle, azimuth_deg: ArrayLike) -> FloatArray:
@@ -70,7 +66,7 @@ def depth_m(obstacle: Obstacle, azimuth_deg: ArrayLike) -> FloatArray:
     """Path through the leaves of foliage [m], linear between points; NaN outside and for what is solid."""
     if obstacle.depth_m is None:
         return np.full(np.shape(azimuth_deg), np.nan)
-    place = _locate(obstacle, azimuth_deg)
+    place = locate(obstacle, azimuth_deg)
     return place.filled(place.linear(obstacle.depth_m))
 
 
@@ -82,7 +78,7 @@ def edge_distance_m(obstacle: Obstacle, azimuth_deg: ArrayLike) -> FloatArray:
     """
     if obstacle.distance_m is None:
         return np.full(np.shape(azimuth_deg), np.nan)
-    place = _locate(obstacle, azimuth_deg)
+    place = locate(obstacle, azimuth_deg)
     if not obstacle.straight_in_space:
         return place.filled(place.linear(obstacle.distance_m))
     # In plan a straight line has 1/r = (sin(az1 - az) / r0 + sin(az - az0) / r1) / sin(az1 - az0).
@@ -97,7 +93,7 @@ def covers(obstacle: Obstacle, azimuth_deg: ArrayLike, elevation_deg: ArrayLike)
     azimuth_deg, elevation_deg = np.broadcast_arrays(azimuth_deg, elevation_deg)
     inside = np.zeros(azimuth_deg.shape, dtype=np.bool_)
     # Few directions lie within the azimuths of one obstacle; only these are worth the geometry.
-    near = _is_within(obstacle, azimuth_deg)
+    near = is_within(obstacle, azimuth_deg)
     below = elevation_deg[near] < edge_elevation_deg(obstacle, azimuth_deg[near])
     if obstacle.hangs_free:
         below &= elevation_deg[near] > underside_elevation_deg(obstacle, azimuth_deg[near])
@@ -190,68 +186,8 @@ def _outline_at(outline: Outline, azimuth_deg: FloatArray) -> tuple[FloatArray, 
     return elevation_deg, np.where(at_break, outline.obstacle[before], outline.obstacle[piece])
 
 
-@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class _Place:
-    """Where azimuths fall between the points of one obstacle."""
-
-    inside: BoolArray  # in the shape of the azimuths; the arrays below hold those inside
-    unwrapped_deg: FloatArray
-    azimuth_deg: FloatArray
-    left: IndexArray
-
-    def linear(self, values: FloatArray) -> FloatArray:
-        start, end = self.azimuth_deg[self.left], self.azimuth_deg[self.left + 1]
-        part = np.divide(self.unwrapped_deg - start, end - start, out=np.zeros_like(start), where=end > start)
-        # Weighted so that a point without a value leaves its neighbour's own azimuth alone.
-        first, last = values[self.left], values[self.left + 1]
-        return np.where(part == 0.0, first, np.where(part == 1.0, last, first + part * (last - first)))
-
-    def great_circle(self, values: FloatArray) -> FloatArray:
-        start, end = self.azimuth_deg[self.left], self.azimuth_deg[self.left + 1]
-        wide = end > start
-        end = np.where(wide, end, start + 1.0)  # any width: only its own azimuth is asked for
-        first, last = values[self.left], np.where(wide, values[self.left + 1], values[self.left])
-        return between_on_great_circle(np.where(wide, self.unwrapped_deg, start), start, end, first, last)
-
-    def filled(self, values: FloatArray) -> FloatArray:
-        result = np.full(self.inside.shape, np.nan)
-        result[self.inside] = values
-        return result
-
-
-def _is_within(obstacle: Obstacle, azimuth_deg: ArrayLike) -> BoolArray:
-    first, last = obstacle.azimuth_deg[0], obstacle.azimuth_deg[-1]
-    beyond_deg = np.mod(np.asarray(azimuth_deg, dtype=float) - first + ONE_AZIMUTH_DEG, 360.0)
-    return np.asarray(beyond_deg <= last - first + 2.0 * ONE_AZIMUTH_DEG)
-
-
-def _locate(obstacle: Obstacle, azimuth_deg: ArrayLike) -> _Place:
-    points_deg, height = obstacle.azimuth_deg, obstacle.elevation_deg
-    inside = _is_within(obstacle, azimuth_deg)
-    first, last = points_deg[0], points_deg[-1]
-    beyond_deg = np.mod(np.asarray(azimuth_deg, dtype=float)[inside] - first + ONE_AZIMUTH_DEG, 360.0)
-    unwrapped_deg = np.clip(first + beyond_deg - ONE_AZIMUTH_DEG, first, last)
-    if len(points_deg) > 2 or first == last:
-        nearest = points_deg[np.clip(np.searchsorted(points_deg, unwrapped_deg - ONE_AZIMUTH_DEG), 0, None)]
-        # A break is met exactly, whatever wrapping did to the last digits.
-        unwrapped_deg = np.where(np.abs(nearest - unwrapped_deg) <= ONE_AZIMUTH_DEG, nearest, unwrapped_deg)
-    right = np.searchsorted(points_deg, unwrapped_deg, side="right")
-    left = np.searchsorted(points_deg, unwrapped_deg, side="left")
-    before, behind = np.maximum(left, 0), np.minimum(right - 1, len(points_deg) - 1)
-    take_before = (
-        (right - left > 0) & (left > 0) & ((height[before] > height[behind]) | (right == len(points_deg)))
-    )
-    segment = np.where(take_before, left - 1, right - 1)
-    return _Place(
-        inside=inside,
-        unwrapped_deg=unwrapped_deg,
-        azimuth_deg=points_deg,
-        left=np.clip(segment, 0, len(points_deg) - 2),
-    )
-
-
 def _edge(obstacle: Obstacle, edge_deg: FloatArray, azimuth_deg: ArrayLike) -> FloatArray:
-    place = _locate(obstacle, azimuth_deg)
+    place = locate(obstacle, azimuth_deg)
     if obstacle.straight_in_space:
         elevation_deg = np.rad2deg(np.arctan(place.great_circle(np.tan(np.deg2rad(edge_deg)))))
     else:
