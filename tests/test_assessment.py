@@ -117,7 +117,8 @@ def test_typical_power_is_stronger_by_its_excess(write_site: WriteSite) -> None:
 
 
 def test_counting_weakened_signals_raises_the_usable_share(write_site: WriteSite) -> None:
-    grove = "azimuth_deg,elevation_deg,obstacle,cover,depth_m\n0,0,,,\n60,40,grove,foliage,5\n240,40,grove,foliage,5\n"
+    grove = "azimuth_deg,elevation_deg,obstacle,cover,depth_m\n0,0,,,\n"
+    grove += "60,40,grove,foliage,5\n240,40,grove,foliage,5\n"
     strict = assess(read_site(write_site(horizon=grove, folder="strict"))).verdict.signals[0]
     lenient_path = write_site(horizon=grove, folder="lenient", extra="count_weakened = true\n")
     lenient = assess(read_site(lenient_path)).verdict.signals[0]
