@@ -8,13 +8,13 @@ from numpy.typing import ArrayLike
 from siteassess.horizon.curves import BoolArray, FloatArray, IndexArray, between_on_great_circle
 from siteassess.horizon.skyline import Obstacle
 
-__all__ = ["Place", "is_within", "locate"]
+__all__ = ["is_within", "locate"]
 
 ONE_AZIMUTH_DEG = 1e-9  # azimuths that differ less are one: wrapping leaves about 1e-13 degrees
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class Place:
+class _Place:
     """Where azimuths fall between the points of one obstacle."""
 
     inside: BoolArray  # in the shape of the azimuths; the arrays below hold those inside
@@ -52,7 +52,7 @@ def is_within(obstacle: Obstacle, azimuth_deg: ArrayLike) -> BoolArray:
     return np.asarray(beyond_deg <= last - first + 2.0 * ONE_AZIMUTH_DEG)
 
 
-def locate(obstacle: Obstacle, azimuth_deg: ArrayLike) -> Place:
+def locate(obstacle: Obstacle, azimuth_deg: ArrayLike) -> _Place:
     """Where azimuths fall between the points of an obstacle; at a vertical edge on its higher side."""
     points_deg, height = obstacle.azimuth_deg, obstacle.elevation_deg
     inside = is_within(obstacle, azimuth_deg)
@@ -70,7 +70,7 @@ def locate(obstacle: Obstacle, azimuth_deg: ArrayLike) -> Place:
         (right - left > 0) & (left > 0) & ((height[before] > height[behind]) | (right == len(points_deg)))
     )
     segment = np.where(take_before, left - 1, right - 1)
-    return Place(
+    return _Place(
         inside=inside,
         unwrapped_deg=unwrapped_deg,
         azimuth_deg=points_deg,
