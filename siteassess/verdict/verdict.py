@@ -55,8 +55,8 @@ class SignalShares:
     """How one signal fares over all satellites that send it.
 
     Shares are of open-sky satellite-time above the mask; `usable_share_of_open_sky` is relative to what
-    antenna and chain alone would leave usable, and None when that is nothing. C/N0 figures run over samples that are
-    not hidden and are None where there are none.
+    antenna and chain alone would leave usable, and None when that is nothing. C/N0 figures run over samples
+    that are not hidden and are None where there are none.
     """
 
     signal: str

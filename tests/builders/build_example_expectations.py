@@ -1,6 +1,7 @@
 """Rewrite what the example sites are expected to give.
 
-Run with ``python tests/builders/build_example_expectations.py``. The figures guard against unintended change; what the models are worth is tested against outside authorities.
+Run with ``python tests/builders/build_example_expectations.py``. The figures guard against unintended change;
+what the models are worth is tested against outside authorities.
 """
 
 import json
