@@ -15,6 +15,7 @@ from siteassess.horizon.survey_checks import (
     cover_of,
     general_mistakes,
     leaf_of,
+    line_of,
     listed_mistakes,
     obstacle_mistakes,
 )
@@ -65,9 +66,11 @@ def read_survey(path: Path, source: HorizonSource, mount: Mount) -> Survey:
     rows, mistakes = read_rows(path)
     labels = dict.fromkeys(rows.texts["obstacle"])
     members = rows.by_label()
+    spoiled = {line_of(mistake) for mistake in mistakes}
     for label in labels:
         check = general_mistakes if label is None else obstacle_mistakes
-        mistakes += check(rows, members[label])
+        # What a row is to its neighbours cannot be said while one of its own cells is wrong.
+        mistakes += [found for found in check(rows, members[label]) if line_of(found) not in spoiled]
     if mistakes:
         raise InputError(*listed_mistakes(mistakes, rows.file))
     up_m = mount.phase_centre_height_m if source.instrument_up_m is None else source.instrument_up_m

@@ -12,7 +12,7 @@ from siteassess.horizon.survey_rows import COVERS, LEAVES, Cover, Leaf, Rows, ce
 from siteassess.tables import MOST_MISTAKES
 from siteassess.wording import shown
 
-__all__ = ["cover_of", "general_mistakes", "leaf_of", "listed_mistakes", "obstacle_mistakes"]
+__all__ = ["cover_of", "general_mistakes", "leaf_of", "line_of", "listed_mistakes", "obstacle_mistakes"]
 
 
 def general_mistakes(rows: Rows, which: IndexArray) -> Iterator[Mistake]:
@@ -149,7 +149,7 @@ def listed_mistakes(mistakes: list[Mistake], file: str) -> list[Mistake]:
     at_place: dict[str, Mistake] = {}
     for mistake in mistakes:
         at_place.setdefault(mistake.where or mistake.problem, mistake)
-    kept = sorted(at_place.values(), key=_line)
+    kept = sorted(at_place.values(), key=line_of)
     further = len(kept) - MOST_MISTAKES
     if further <= 0:
         return kept
@@ -163,7 +163,7 @@ def listed_mistakes(mistakes: list[Mistake], file: str) -> list[Mistake]:
     return [*kept[:MOST_MISTAKES], closing]
 
 
-def _line(mistake: Mistake) -> float:
+def line_of(mistake: Mistake) -> float:
     """Line of the file that a mistake names; those without one stand last."""
     found = re.match(r"line (\d+)", mistake.where)
     return float(found[1]) if found else math.inf

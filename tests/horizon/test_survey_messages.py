@@ -27,6 +27,10 @@ CASES = {
             "line 3, elevation_deg is -5.5; it must lie from -5 to 90",
         ],
     ),
+    "a wrong elevation takes no distance away": (
+        ["10,95,20,,hall", "20,6,20,,hall", "30,6,20,,hall"],
+        ["line 2, elevation_deg is 95; it must lie from -5 to 90"],
+    ),
     "underside out of range": (
         ["0,5,,,a,,,,-91", "10,5,,,a,,,,0"],
         ["line 2, underside_deg is -91; it must lie from -90 to 90"],
