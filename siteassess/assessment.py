@@ -96,8 +96,6 @@ def assess_file(path: str | PathLike[str]) -> Assessment:
     try:
         site = read_site(path)
     except RefusedSiteError as refused:
-        if refused.legible is None:
-            raise
         try:
             _read_inputs(refused.legible)
         except InputError as others:

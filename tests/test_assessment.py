@@ -157,6 +157,46 @@ def test_mistakes_of_all_files_come_together(write_site: WriteSite) -> None:
     ]
 
 
+def test_files_are_read_even_where_the_mount_cannot_be_made_out(write_site: WriteSite) -> None:
+    """Seen from an antenna on the mark, the reading 0.3 m east of it would be refused for that alone."""
+    path = write_site(
+        ("mast_height_m = 1.5", 'mast_height_m = "1.5"'),
+        ("complete = true", "complete = true\ninstrument_east_m = -0.3\ninstrument_up_m = 1.6"),
+        ('pattern = "choke-ring"', 'pattern = "antenna.csv"'),
+        horizon="azimuth_deg,elevation_deg,distance_m,obstacle\n0,0,,\n90,0,0.3,rail\n100,0,0.3,rail\n",
+    )
+    with pytest.raises(InputError) as refused:
+        assess_file(path)
+    assert [(mistake.file, mistake.where) for mistake in refused.value.mistakes] == [
+        ("site.toml", "mount.mast_height_m"),
+        ("antenna.csv", ""),
+    ]
+
+
+@pytest.mark.parametrize(
+    ("right", "wrong", "message"),
+    [
+        ("choke-ring", "chokering", 'site.toml: antenna.pattern is "chokering"; did you mean choke-ring?'),
+        (
+            'source = "survey"\nfile = "horizon.csv"',
+            'source = "terrain"\nfile = "heights.tif"',
+            'site.toml: horizon[1].source is "terrain"; this version supports "survey" only',
+        ),
+        (
+            "complete = true",
+            'complete = true\n\n[[horizon]]\nsource = "survey"\nfile = "horizon.csv"',
+            'site.toml: horizon[2].file is "horizon.csv"; it stands there twice; keep one',
+        ),
+    ],
+)
+def test_what_leads_to_no_other_file_has_one_message(
+    write_site: WriteSite, right: str, wrong: str, message: str
+) -> None:
+    with pytest.raises(InputError) as refused:
+        assess_file(write_site((right, wrong)))
+    assert str(refused.value) == message
+
+
 def test_a_wrong_site_file_alone_is_told_once(write_site: WriteSite) -> None:
     with pytest.raises(InputError) as refused:
         assess_file(write_site(("mast_height_m = 1.5", "mast_height_m = -1.5")))

@@ -151,9 +151,13 @@ def _antenna_mistakes(antenna: AntennaChoice, file: str) -> Iterator[Mistake]:
 
 
 def _horizon_mistakes(horizon: tuple[HorizonSource | None, ...], file: str) -> Iterator[Mistake]:
+    files: list[str] = []
     for index, source in enumerate(horizon):
         if source is None:
             continue
+        if source.file in files:
+            yield _given(file, ("horizon", index, "file"), source.file, "it stands there twice; keep one")
+        files.append(source.file)
         for key, supported in (("source", "survey"), ("bearings", "true-north")):
             value = getattr(source, key)
             if value != supported:
@@ -165,16 +169,23 @@ def _require_mistakes(require: Requirements, signals: tuple[str, ...], file: str
     table = require.min_cn0_dbhz
     if not isinstance(table, dict):
         return
-    for name in table:
-        if name not in signals:
-            yield Mistake(
-                file=file,
-                where=key_path("require", "min_cn0_dbhz", name),
-                problem="is no signal of this site",
-                allowed=did_you_mean(name, signals, f"its signals are {listed(signals)}"),
-                value=name,
-            )
-    absent = [name for name in signals if name not in table]
+    suggestions = {
+        name: did_you_mean(name, signals, f"its signals are {listed(signals)}")
+        for name in table
+        if name not in signals
+    }
+    for name, suggestion in suggestions.items():
+        yield Mistake(
+            file=file,
+            where=key_path("require", "min_cn0_dbhz", name),
+            problem="is no signal of this site",
+            allowed=suggestion,
+            value=name,
+        )
+    # A signal that is only misspelt has its message already.
+    absent = [
+        name for name in signals if name not in table and f"did you mean {name}?" not in suggestions.values()
+    ]
     if absent:
         yield Mistake(
             file=file,

@@ -3,32 +3,21 @@
 import os
 import re
 import tomllib
-from collections.abc import Mapping
 from datetime import UTC
 from pathlib import Path
-from typing import Any, TypeVar
+from typing import Any
 
 from pydantic import ValidationError
 
 from siteassess.errors import InputError, Mistake
 from siteassess.site_file.checks import Sections, cross_mistakes, signals_of, systems_of
-from siteassess.site_file.model import (
-    AntennaChoice,
-    HorizonSource,
-    Mount,
-    Place,
-    Position,
-    Record,
-    Site,
-    SkyModel,
-)
+from siteassess.site_file.legible import legible_site
+from siteassess.site_file.model import Place, Position, Site, SkyModel
 from siteassess.site_file.position import survey_mark
 from siteassess.site_file.refusals import PATH_HINT, refusals
 from siteassess.tables import read_user_text
 
 __all__ = ["RefusedSiteError", "read_site"]
-
-AnyRecord = TypeVar("AnyRecord", bound=Record)
 
 TOML_PLACE = re.compile(r"^(.*) \(at (?:line (\d+), column (\d+)|end of document)\)$", re.DOTALL)
 # A backslash in a basic string ("..."), the only place where TOML gives it a meaning.
@@ -40,12 +29,12 @@ class RefusedSiteError(InputError):
 
     Attributes
     ----------
-    legible : Site or None
+    legible : Site
         Only `mount`, `antenna`, `horizon` and `path`, enough to read the files that the site names, so that
-        their mistakes can be told in the same breath; None where mount or antenna cannot be made out.
+        their mistakes can be told in the same breath.
     """
 
-    def __init__(self, *mistakes: Mistake, legible: Site | None = None) -> None:
+    def __init__(self, *mistakes: Mistake, legible: Site) -> None:
         super().__init__(*mistakes)
         self.legible = legible
 
@@ -80,9 +69,9 @@ def read_site(path: str | os.PathLike[str]) -> Site:
         site = Site.model_validate(raw)
     except ValidationError as error:
         refused = (*refusals(error, file), *mistakes)
-        raise RefusedSiteError(*refused, legible=_legible(raw, path)) from error
+        raise RefusedSiteError(*refused, legible=legible_site(raw, path)) from error
     if mistakes or position is None:
-        raise RefusedSiteError(*mistakes, legible=_legible(raw, path))
+        raise RefusedSiteError(*mistakes, legible=legible_site(raw, path))
     site = site.model_copy(update={"sky": _completed(site.sky)})
     site._path, site._position = path, position
     return site
@@ -93,35 +82,6 @@ def _surveyed(place: Place | None, file: str) -> tuple[Position | None, list[Mis
         return (survey_mark(place, file) if place is not None else None), []
     except InputError as error:
         return None, list(error.mistakes)
-
-
-def _legible(raw: Mapping[str, Any], path: Path) -> Site | None:
-    """The tables that lead to other files, without their own wrong keys."""
-    blocks = raw.get("horizon", ())
-    mount, antenna = _right_keys(Mount, raw.get("mount")), _right_keys(AntennaChoice, raw.get("antenna"))
-    horizon = (
-        tuple(_right_keys(HorizonSource, block) for block in blocks) if isinstance(blocks, tuple) else ()
-    )
-    if mount is None or antenna is None:
-        return None
-    tables: dict[str, Any] = {"mount": mount, "antenna": antenna, "horizon": tuple(filter(None, horizon))}
-    site = Site.model_construct(**tables)
-    site._path = path
-    return site
-
-
-def _right_keys(record: type[AnyRecord], raw: Any) -> AnyRecord | None:
-    """A table without the keys that are refused; None where that leaves too little."""
-    if not isinstance(raw, dict):
-        return None
-    try:
-        return record.model_validate(raw)
-    except ValidationError as error:
-        wrong = {mistake["loc"][0] for mistake in error.errors()}
-    try:
-        return record.model_validate({key: value for key, value in raw.items() if key not in wrong})
-    except ValidationError:
-        return None
 
 
 def _completed(sky: SkyModel) -> SkyModel:

@@ -474,6 +474,11 @@ def test_records_of_python_users_are_checked_too() -> None:
         ),
         (
             "min_cn0_dbhz = 35",
+            'min_cn0_dbhz = { "GPS L1CA" = 35, "GLONASS L1OF" = 33 }',
+            'require.min_cn0_dbhz."GPS L1CA" is no signal of this site; did you mean GPS L1 C/A?',
+        ),
+        (
+            "min_cn0_dbhz = 35",
             'min_cn0_dbhz = { "GPS L1 C/A" = 35, "GLONASS L1OF" = 33, "X" = 34 }',
             "require.min_cn0_dbhz.X is no signal of this site; its signals are GPS L1 C/A and GLONASS L1OF",
         ),

@@ -1,0 +1,65 @@
+"""What can still be made out of a refused site file: the other files that it names."""
+
+from collections.abc import Mapping
+from pathlib import Path
+from typing import Any, TypeVar
+
+from pydantic import ValidationError
+
+from siteassess.site_file.model import AntennaChoice, HorizonSource, Mount, Record, Site
+
+__all__ = ["legible_site"]
+
+AnyRecord = TypeVar("AnyRecord", bound=Record)
+
+NO_FILE = AntennaChoice(pattern="isotropic")
+
+
+def legible_site(raw: Mapping[str, Any], path: Path) -> Site:
+    """A site with `mount`, `antenna`, `horizon` and `path` only, for reading its files and for nothing else.
+
+    Keys that are refused take their defaults; what leads to no file that can be read is left out.
+
+    Parameters
+    ----------
+    raw : mapping
+        The site file as TOML reads it, lists as tuples.
+    path : Path
+        The site file.
+    """
+    mount, antenna = _right_keys(Mount, raw.get("mount")), _right_keys(AntennaChoice, raw.get("antenna"))
+    blocks = raw.get("horizon")
+    sources = [_right_keys(HorizonSource, block) for block in (blocks if isinstance(blocks, tuple) else ())]
+    surveys = {source.file: source for source in sources if source is not None and source.source == "survey"}
+    if mount is None:
+        # Where the antenna stands is not known; seen from the instrument, no reading is misplaced.
+        mount = Mount(mast_height_m=0.0)
+        surveys = {file: _at_the_antenna(source) for file, source in surveys.items()}
+    tables: dict[str, Any] = {
+        "mount": mount,
+        "antenna": antenna if antenna is not None and antenna.is_file else NO_FILE,
+        "horizon": tuple(surveys.values()),
+    }
+    site = Site.model_construct(**tables)
+    site._path = path
+    return site
+
+
+def _at_the_antenna(source: HorizonSource) -> HorizonSource:
+    return source.model_copy(
+        update={"instrument_east_m": 0.0, "instrument_north_m": 0.0, "instrument_up_m": None}
+    )
+
+
+def _right_keys(record: type[AnyRecord], raw: Any) -> AnyRecord | None:
+    """A table without the keys that are refused; None where that leaves too little."""
+    if not isinstance(raw, dict):
+        return None
+    try:
+        return record.model_validate(raw)
+    except ValidationError as error:
+        wrong = {mistake["loc"][0] for mistake in error.errors()}
+    try:
+        return record.model_validate({key: value for key, value in raw.items() if key not in wrong})
+    except ValidationError:
+        return None
