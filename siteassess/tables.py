@@ -237,6 +237,8 @@ def _check_header(
     if not any(math.isnan(_number(name, True)) for name in header):
         allowed = f"it must name the columns: {listed(known)}"
         raise _unreadable(file, where=where, problem="holds numbers", allowed=allowed)
+    if not any(name in known or did_you_mean(name, known) for name in header):
+        raise _unreadable(file, where=where, problem="names no column of this table", allowed=columns)
     mistakes = [
         Mistake(
             file=file,
@@ -306,7 +308,7 @@ def _first(mistakes: list[Mistake], file: str) -> tuple[Mistake, ...]:
     closing = Mistake(
         file=file,
         where="",
-        problem=f"has {further} more mistakes",
+        problem=f"has {further} more mistake{'s' if further > 1 else ''}",
         allowed="the first are listed",
         value=further,
     )

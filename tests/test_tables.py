@@ -168,10 +168,11 @@ def test_mistakes_come_in_the_order_of_the_file_with_their_values(tmp_path: Path
 
 
 def test_a_wrong_column_of_a_long_file_is_not_listed_to_the_end(tmp_path: Path) -> None:
-    rows = "".join(f"{row},x\n" for row in range(MOST_MISTAKES + 7))
-    table = table_of(written(tmp_path, "azimuth_deg,elevation_deg\n" + rows))
-    assert len(table.mistakes) == MOST_MISTAKES + 1
-    assert str(table.mistakes[-1]) == "horizon.csv: has 7 more mistakes; the first are listed"
+    for further, closing in ((7, "has 7 more mistakes"), (1, "has 1 more mistake")):
+        rows = "".join(f"{row},x\n" for row in range(MOST_MISTAKES + further))
+        table = table_of(written(tmp_path, "azimuth_deg,elevation_deg\n" + rows))
+        assert len(table.mistakes) == MOST_MISTAKES + 1
+        assert str(table.mistakes[-1]) == f"horizon.csv: {closing}; the first are listed"
 
 
 @pytest.mark.parametrize(
@@ -182,6 +183,7 @@ def test_a_wrong_column_of_a_long_file_is_not_listed_to_the_end(tmp_path: Path) 
         (",,\n", f"is empty; {COLUMNS}"),
         ("azimuth_deg,elevation_deg\n\n", "has no rows; at least one must follow the names of the columns"),
         ("azimuth_deg\n1\n", "line 1 names no column elevation_deg; the table needs it"),
+        ("format = 1\n", f"line 1 names no column of this table; {COLUMNS}"),
         (
             "azimut_deg,elevation_deg\n1,2\n",
             "line 1, azimut_deg is no column of this table; did you mean azimuth_deg?",
