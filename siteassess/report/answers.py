@@ -4,7 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from siteassess.report.phrases import azimuth_range, compass_point, number, percent, plain
+from siteassess.report.phrases import azimuth_range, compass_point, number, percent, plain, told_apart
 from siteassess.report.pieces import Answer
 from siteassess.verdict.criteria import read_criteria
 
@@ -74,14 +74,19 @@ def _why(verdict: Verdict) -> str:
     missed = [finding for finding in _required(verdict) if finding.outcome == "missed"]
     told = (missed or _required(verdict)[:1])[:4]
     more = len(missed) - len(told)
-    reasons = [f"{_subject(finding)}: {plain(finding.reason)}" for finding in told]
+    reasons = [_reason(finding) for finding in told]
     if more > 0:
         reasons.append(f"{more} more under “Asked and found”.")
     return " ".join(reasons)
 
 
-def _subject(finding: Finding) -> str:
-    return finding.signal or read_criteria()[finding.criterion].title
+def _reason(finding: Finding) -> str:
+    """What a finding is about, and why; the reasons of signals hold their figures already."""
+    if finding.signal is not None:
+        return f"{finding.signal}: {plain(finding.reason)}"
+    criterion = read_criteria()[finding.criterion]
+    value, limit = told_apart(finding.value, finding.limit, finding.unit)
+    return f"{criterion.title}: {value}; {criterion.sense} {limit} is asked. {plain(finding.reason)}"
 
 
 def _worst_sector(verdict: Verdict) -> SectorShare | None:

@@ -116,15 +116,15 @@ def _signal_reason(
     sky: SkyShares,
     outcome: str,
 ) -> str:
-    min_cn0_dbhz = require.min_cn0_for(signal.signal)
-    sentences = [
-        f"Usable for {signal.usable_share:.1%} of the satellite-time above the mask; "
-        f"{require.min_usable_share:.1%} is asked."
-    ]
-    if signal.open_sky_usable_share < require.min_usable_share:
+    min_cn0_dbhz, limit = require.min_cn0_for(signal.signal), require.min_usable_share
+    if signal.hidden_share == signal.samples_share == 0.0:
+        return f"No satellite that sends it rises above the mask of {require.elevation_mask_deg:g} degrees."
+    usable, asked = _told_apart(signal.usable_share, limit)
+    sentences = [f"Usable for {usable} of the satellite-time above the mask; {asked} is asked."]
+    if signal.open_sky_usable_share < limit:
         sentences.append(
             "Antenna and chain alone miss the limit: even under an open sky only "
-            f"{signal.open_sky_usable_share:.1%} reaches {min_cn0_dbhz:g} dB-Hz."
+            f"{_told_apart(signal.open_sky_usable_share, limit)[0]} reaches {min_cn0_dbhz:g} dB-Hz."
         )
     if signal.lost_share >= WORTH_NAMING_SHARE:
         sentences.append(
@@ -136,6 +136,15 @@ def _signal_reason(
             "is open."
         )
     return " ".join(sentences)
+
+
+def _told_apart(share: float, limit: float) -> tuple[str, str]:
+    """Both in percent, with as many decimals as it takes to see which is larger."""
+    for decimals in (1, 2, 3, 4):
+        texts = f"{share:.{decimals}%}", f"{limit:.{decimals}%}"
+        if texts[0] != texts[1] or share == limit:
+            return texts
+    return texts
 
 
 def _worst_obstacle(signal: str, obstacles: tuple[ObstacleCost, ...]) -> str:

@@ -79,6 +79,15 @@ def test_first_answer_says_the_verdict(markup_assessment, outcome, beginning):
     assert answers(with_outcome(markup_assessment, outcome))[0].answer.startswith(beginning)
 
 
+def test_reason_of_a_sky_limit_holds_both_figures(markup_assessment):
+    peak = next(
+        finding for finding in markup_assessment.verdict.findings if finding.criterion == "max_horizon_deg"
+    )
+    asked = dataclasses.replace(peak, required=True, value=47.0, limit=20.0, outcome="missed")
+    why = answers(with_outcome(markup_assessment, "fail", findings=(asked,)))[1].answer
+    assert why == f"Highest point of the solid skyline: 47.0°; at most 20.0° is asked. {peak.reason}"
+
+
 def test_site_without_obstacles_has_no_worst_direction(markup_assessment):
     sky = dataclasses.replace(markup_assessment.verdict.sky, peak_elevation_deg=0.0)
     sectors = tuple(

@@ -76,6 +76,23 @@ def test_antenna_and_chain_alone_are_named_when_they_miss_the_limit() -> None:
     )
 
 
+def test_shares_have_the_decimals_that_tell_them_from_the_limit() -> None:
+    close = replace(GOOD, usable_share=0.9498, open_sky_usable_share=0.94996, lost_share=0.0002)
+    assert findings(signals=(close,))["min_usable_share", "GPS L1 C/A"].reason == (
+        "Usable for 94.98% of the satellite-time above the mask; 95.00% is asked. "
+        "Antenna and chain alone miss the limit: even under an open sky only 94.996% reaches 35 dB-Hz."
+    )
+
+
+def test_a_mask_above_all_satellites_is_named_as_the_reason() -> None:
+    nothing = replace(
+        GOOD, usable_share=0.0, open_sky_usable_share=0.0, lost_share=0.0, hidden_share=0.0, samples_share=0.0
+    )
+    finding = findings(signals=(nothing,), elevation_mask_deg=89.5)["min_usable_share", "GPS L1 C/A"]
+    assert finding.outcome == "missed"
+    assert finding.reason == "No satellite that sends it rises above the mask of 89.5 degrees."
+
+
 def test_unsurveyed_sky_leaves_a_met_limit_unproven_and_a_missed_one_missed() -> None:
     sky = replace(OPEN_SKY, unsurveyed_share=0.25)
     met = findings(sky=sky)["min_usable_share", "GPS L1 C/A"]
