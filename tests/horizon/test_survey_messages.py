@@ -84,7 +84,6 @@ CASES = {
         [
             'line 2, cover is "wood"; it must be solid or foliage',
             'line 2, leaf is "bare"; it must be in-leaf, leafless or evergreen',
-            "line 2, depth_m is 3; it may stand only where cover is foliage",
             'line 3, cover is "solit"; did you mean solid?',
         ],
     ),
@@ -130,7 +129,6 @@ CASES = {
             "line 2, depth_m is 0; it must be above 0",
             "line 3, slant_distance_m is -1; it must be above 0",
             "line 4, width_m is -2; it must be above 0",
-            'line 4 is the only row of obstacle "b"; it needs width_m and a distance, or a second azimuth',
         ],
     ),
     "a horizontal distance overhead": (
