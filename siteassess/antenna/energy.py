@@ -16,7 +16,9 @@ __all__ = ["MeanGain", "effective_area_m2", "efficiency", "mean_gain"]
 
 FloatArray = NDArray[np.float64]
 
-AZIMUTH_NODES = 6  # Gauss-Legendre points in each azimuth interval
+# Gauss-Legendre points in each azimuth interval, by the largest change of gain across one [dB]: their error,
+# c^2n (n!)^4 / ((2n + 1) (2n)!^3) of the change c in nepers, stays below one part in a million.
+AZIMUTH_NODES = ((1.1, 2), (5.0, 3), (np.inf, 6))
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
@@ -80,24 +82,33 @@ def _sphere_mean(pattern: GainPattern, levels_dbic: FloatArray, carrier_hz: floa
     cuts_dbic = at_carrier_dbic(pattern, levels_dbic, carrier_hz)
     if not depends_on_azimuth(pattern):
         return float(_cut_mean(pattern.elevation_deg, cuts_dbic[0]))
-    node, weight = np.polynomial.legendre.leggauss(AZIMUTH_NODES)
-    share = (node + 1.0) / 2.0
-    left, right = cuts_dbic[:-1, np.newaxis, :], cuts_dbic[1:, np.newaxis, :]
-    between_dbic = left + share[:, np.newaxis] * (right - left)  # (interval, node, elevation)
-    means = _cut_mean(pattern.elevation_deg, between_dbic) @ (weight / 2.0)
-    return float(means @ np.diff(pattern.azimuth_deg)) / 360.0
+    change_db = np.diff(cuts_dbic, axis=0)
+    largest_db = float(np.abs(change_db).max())
+    nodes = next(count for limit_db, count in AZIMUTH_NODES if largest_db <= limit_db)
+    width_share = np.diff(pattern.azimuth_deg) / 360.0
+    mean = 0.0
+    for node, weight in zip(*np.polynomial.legendre.leggauss(nodes), strict=True):
+        between_dbic = change_db * ((node + 1.0) / 2.0)
+        between_dbic += cuts_dbic[:-1]
+        mean += float(_cut_mean(pattern.elevation_deg, between_dbic) @ width_share) * weight / 2.0
+    return mean
 
 
 def _cut_mean(elevation_deg: FloatArray, levels_dbic: FloatArray) -> FloatArray:
     """Mean over the sphere of a gain that depends on elevation alone; the last axis is elevation."""
     elevation_rad = np.deg2rad(elevation_deg)
     width_rad = np.diff(elevation_rad)
-    log_ratio = levels_dbic * (math.log(10.0) / 10.0)
-    slope = np.where(width_rad > 0.0, np.diff(log_ratio) / np.where(width_rad > 0.0, width_rad, 1.0), 0.0)
-    low, high = elevation_rad[:-1], elevation_rad[1:]
-    ratio = np.exp(log_ratio)
+    step = width_rad <= 0.0
+    per_width = np.where(step, 0.0, math.log(10.0) / 10.0 / np.where(step, 1.0, width_rad))
+    slope = np.diff(levels_dbic)
+    slope *= per_width
+    ratio = np.exp(levels_dbic * (math.log(10.0) / 10.0))
+    sine, cosine = np.sin(elevation_rad), np.cos(elevation_rad)
     # The integral of exp(b x) cos x is exp(b x) (b cos x + sin x) / (1 + b^2).
-    at_low = ratio[..., :-1] * (slope * np.cos(low) + np.sin(low))
-    at_high = ratio[..., 1:] * (slope * np.cos(high) + np.sin(high))
-    pieces = np.where(width_rad > 0.0, (at_high - at_low) / (1.0 + slope**2), 0.0)
+    pieces = ratio[..., 1:] * (slope * cosine[1:] + sine[1:])
+    pieces -= ratio[..., :-1] * (slope * cosine[:-1] + sine[:-1])
+    slope *= slope
+    slope += 1.0
+    pieces /= slope
+    pieces[..., step] = 0.0
     return np.asarray(pieces.sum(axis=-1) / 2.0)

@@ -3,7 +3,7 @@
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-from siteassess.angles import wrap_azimuth_deg
+from siteassess.antenna.interpolate import along_line, over_sphere
 from siteassess.antenna.pattern import GainPattern
 
 __all__ = ["at_carrier_dbic", "cross_gain_dbic", "depends_on_azimuth", "gain_dbic"]
@@ -82,35 +82,7 @@ def _interpolated_dbic(
 ) -> FloatArray:
     levels = at_carrier_dbic(pattern, levels_dbic, carrier_hz)
     if depends_on_azimuth(pattern):
-        return _bilinear(pattern.azimuth_deg, pattern.elevation_deg, levels, azimuth_deg, elevation_deg)
+        return over_sphere(pattern.azimuth_deg, pattern.elevation_deg, levels, azimuth_deg, elevation_deg)
     shape = np.broadcast_shapes(np.shape(azimuth_deg), np.shape(elevation_deg))
-    gain = np.asarray(np.interp(np.asarray(elevation_deg, float), pattern.elevation_deg, levels[0]))
+    gain = along_line(pattern.elevation_deg, levels[0], elevation_deg)
     return gain if gain.shape == shape else np.broadcast_to(gain, shape).copy()
-
-
-def _bilinear(
-    azimuths_deg: FloatArray,
-    elevations_deg: FloatArray,
-    levels: FloatArray,
-    azimuth_deg: ArrayLike,
-    elevation_deg: ArrayLike,
-) -> FloatArray:
-    column, right = _cell(azimuths_deg, wrap_azimuth_deg(azimuth_deg))
-    row, upper = _cell(elevations_deg, elevation_deg)
-    corner = column * elevations_deg.size + row
-    flat = levels.ravel()
-    at_left = flat[corner] + upper * (flat[corner + 1] - flat[corner])
-    corner = corner + elevations_deg.size
-    at_right = flat[corner] + upper * (flat[corner + 1] - flat[corner])
-    return np.asarray(at_left + right * (at_right - at_left))
-
-
-def _cell(grid: FloatArray, value: ArrayLike) -> tuple[NDArray[np.int64], FloatArray]:
-    """Index of the grid interval that holds a value, and the value's share of the way through it.
-
-    A step (two equal grid points) is an interval without width that no value falls into: `np.interp` gives
-    the upper of the two at the step itself.
-    """
-    position = np.asarray(np.interp(np.asarray(value, float), grid, np.arange(grid.size)))
-    lower = np.minimum(np.nan_to_num(position).astype(np.int64), grid.size - 2)
-    return lower, position - lower
