@@ -5,23 +5,29 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
+from siteassess.antenna.interpolate import even_step_deg
 from siteassess.antenna.pattern import FloatArray
+from siteassess.decibels import mean_db
 from siteassess.errors import Mistake
 from siteassess.tables import UserTable
 
 __all__ = [
     "FALL_BELOW_DB_PER_90_DEG",
+    "LARGEST_SEAM_DB",
     "PatternGrid",
     "grid_mistakes",
     "grid_of",
     "on_whole_sphere",
     "order_mistakes",
     "sphere_axes",
+    "spread_db",
 ]
 
 WIDEST_ELEVATION_STEP_DEG = 30.0
 WIDEST_AZIMUTH_STEP_DEG = 120.0
 LARGEST_SEAM_DB = 0.05  # between azimuths 0 and 360, which are one direction
+LARGEST_ZENITH_SPREAD_DB = 1.0  # of the cuts at elevation 90, which is one direction too
+EVEN = 1e-6  # of a step
 FALL_BELOW_DB_PER_90_DEG = 20.0  # own default, where the file ends above the nadir
 
 
@@ -82,15 +88,14 @@ def grid_mistakes(table: UserTable, grid: PatternGrid) -> list[Mistake]:
     return [
         *_elevations_left_out(table.file, grid.elevation_deg),
         *_azimuths_left_out(table.file, grid.azimuth_deg),
-        *(_holes(table, grid) or _open_seam(table, grid)),
+        *(_holes(table, grid) or [*_open_seam(table, grid), *_uneven_zenith(table, grid)]),
     ]
 
 
 def sphere_axes(grid: PatternGrid) -> tuple[FloatArray, FloatArray]:
     """Azimuths from 0 to 360 and elevations from -90 to 90, as a `GainPattern` holds them."""
     elevation_deg = grid.elevation_deg
-    if elevation_deg[0] > -90.0:
-        elevation_deg = np.concatenate([[-90.0], elevation_deg])
+    elevation_deg = np.concatenate([_below_deg(elevation_deg), elevation_deg])
     if np.isnan(grid.azimuth_deg[0]):
         return np.array([0.0, 360.0]), elevation_deg
     return np.unique(np.concatenate([[0.0], grid.azimuth_deg, [360.0]])), elevation_deg
@@ -99,17 +104,32 @@ def sphere_axes(grid: PatternGrid) -> tuple[FloatArray, FloatArray]:
 def on_whole_sphere(grid: PatternGrid, levels_dbic: FloatArray) -> FloatArray:
     """Levels of shape (row,) on the axes of :func:`sphere_axes`, shape (carrier, azimuth, elevation)."""
     levels = levels_dbic[grid.row]
-    missing_deg = grid.elevation_deg[0] + 90.0
-    if missing_deg > 0.0:
-        levels = np.concatenate(
-            [levels[..., :1] - FALL_BELOW_DB_PER_90_DEG / 90.0 * missing_deg, levels], axis=2
-        )
+    fall_db = FALL_BELOW_DB_PER_90_DEG / 90.0 * (grid.elevation_deg[0] - _below_deg(grid.elevation_deg))
+    levels = np.concatenate([levels[..., :1] - fall_db, levels], axis=2)
+    levels[..., [0, -1]] = mean_db(levels[..., [0, -1]], axis=1)[:, np.newaxis]
     if np.isnan(grid.azimuth_deg[0]):
         levels = np.repeat(levels, 2, axis=1)
     else:
         levels = _closed(grid.azimuth_deg, levels)
     levels.flags.writeable = False
     return levels
+
+
+def spread_db(grid: PatternGrid, levels_dbic: FloatArray, elevation_deg: float) -> float:
+    """How far the cuts of a file differ at an elevation [dB]; 0 where the file does not have it."""
+    levels = levels_dbic[grid.row[..., grid.elevation_deg == elevation_deg]]
+    return float(np.max(np.ptp(levels, axis=1))) if levels.size else 0.0
+
+
+def _below_deg(elevation_deg: FloatArray) -> FloatArray:
+    """Elevations from -90 to below the file's first one, in its own step when that leads there."""
+    missing_deg = elevation_deg[0] + 90.0
+    step_deg = even_step_deg(elevation_deg)
+    if missing_deg <= 0.0:
+        return np.empty(0)
+    if step_deg is None or abs(missing_deg / step_deg - round(missing_deg / step_deg)) > EVEN:
+        return np.array([-90.0])
+    return np.linspace(-90.0, elevation_deg[0], round(missing_deg / step_deg), endpoint=False)
 
 
 def _axis(table: UserTable, column: str) -> tuple[FloatArray, NDArray[np.int64]]:
@@ -206,6 +226,15 @@ def _open_seam(table: UserTable, grid: PatternGrid) -> list[Mistake]:
                     _left_out(table.file, column, problem, "they are one direction and must agree", seam_db)
                 )
     return mistakes
+
+
+def _uneven_zenith(table: UserTable, grid: PatternGrid) -> list[Mistake]:
+    spread = spread_db(grid, table.numbers["gain_dbic"], 90.0)
+    if spread <= LARGEST_ZENITH_SPREAD_DB:
+        return []
+    problem = f"differs by up to {spread:.2f} dB between azimuths at elevation 90"
+    allowed = f"they are one direction and must agree within {LARGEST_ZENITH_SPREAD_DB:g} dB"
+    return [_left_out(table.file, "gain_dbic", problem, allowed, spread)]
 
 
 def _left_out(file: str, where: str, problem: str, allowed: str, value: float) -> Mistake:

@@ -39,7 +39,7 @@ def grid_text(
     azimuths: list[float], columns: str = "azimuth_deg,elevation_deg,gain_dbic", tail: str = ""
 ) -> str:
     rows = [
-        f"{azimuth},{elevation},{elevation / 18.0 - 6.0 + 0.01 * azimuth}{tail}"
+        f"{azimuth},{elevation},{elevation / 18.0 - 6.0 + 0.01 * azimuth * (abs(elevation) < 90)}{tail}"
         for azimuth in azimuths
         for elevation in range(-90, 91, 30)
     ]
@@ -140,8 +140,8 @@ def test_gain_much_too_high_is_refused(write: Callable[[str], Path]) -> None:
 def test_cross_polar_power_counts_and_the_carrier_is_named(write: Callable[[str], Path]) -> None:
     text = even(0.0, ",-6,1575.42e6").replace("cross_gain_dbic", "cross_gain_dbic,carrier_hz")
     assert messages(write(text)) == [
-        "roof.csv: gain_dbic plus cross_gain_dbic has a mean of 0.97 dB over the sphere at 1575.42 MHz; it"
-        " must be at most 0.49 dB, because no antenna sends out more power than it is fed"
+        "roof.csv: gain_dbic plus its cross-polar part has a mean of 0.97 dB over the sphere at 1575.42 MHz;"
+        " it must be at most 0.49 dB, because no antenna sends out more power than it is fed"
     ]
 
 
@@ -154,11 +154,52 @@ def messages(path: Path) -> list[str]:
 GRID = grid_text([0.0, 90.0, 180.0, 270.0])
 
 REFUSED = {
+    "cross-polar gain given twice": (
+        "elevation_deg,gain_dbic,cross_gain_dbic,axial_ratio_db\n0,0,-20,1\n",
+        [
+            "roof.csv: has both cross_gain_dbic and axial_ratio_db; they say the same thing twice: keep one",
+        ],
+    ),
+    "axial ratio below 0": (
+        "elevation_deg,gain_dbic,axial_ratio_db\n0,0,-1\n",
+        ["roof.csv: line 2, axial_ratio_db is -1; it must lie from 0 to 100"],
+    ),
+    "cuts that do not meet at the zenith": (
+        grid_text([0.0, 90.0, 180.0, 270.0]).replace("270.0,90,-1.0", "270.0,90,1.0"),
+        [
+            "roof.csv: gain_dbic differs by up to 2.00 dB between azimuths at elevation 90; they are one"
+            " direction and must agree within 1 dB"
+        ],
+    ),
+    "ratios instead of decibels": (
+        "elevation_deg,gain_dbic\n-90,0.01\n-60,0.02\n-30,0.05\n0,0.3\n30,1.6\n60,3\n90,4\n",
+        [
+            "roof.csv: gain_dbic has a mean of 1.06 dB over the sphere; it must be at most 0.49 dB, because"
+            " no antenna sends out more power than it is fed (no gain is below 0: they may be ratios instead"
+            " of decibels)"
+        ],
+    ),
+    "dipole counted twice": (
+        even(2.15),
+        [
+            "roof.csv: gain_dbic has a mean of 2.15 dB over the sphere; it must be at most 0.49 dB, because"
+            " no antenna sends out more power than it is fed (the 2.15 dB from dBd to dBi may have been added"
+            " once too often)"
+        ],
+    ),
+    "circular counted twice": (
+        even(3.0),
+        [
+            "roof.csv: gain_dbic has a mean of 3.00 dB over the sphere; it must be at most 0.49 dB, because"
+            " no antenna sends out more power than it is fed (the 3 dB from linear to circular may have been"
+            " added once too often)"
+        ],
+    ),
     "no gain": (
         "elevation_deg,power\n0,1\n",
         [
             "roof.csv: line 1, power is no column of this table; its columns are carrier_hz, azimuth_deg,"
-            " elevation_deg, gain_dbic and cross_gain_dbic",
+            " elevation_deg, gain_dbic, cross_gain_dbic and axial_ratio_db",
             "roof.csv: line 1 names no column gain_dbic; the table needs it",
         ],
     ),
@@ -281,3 +322,57 @@ REFUSED = {
 @pytest.mark.parametrize(("text", "expected"), REFUSED.values(), ids=REFUSED.keys())
 def test_refused_with_one_clear_message(write: Callable[[str], Path], text: str, expected: list[str]) -> None:
     assert messages(write(text)) == expected
+
+
+def test_axial_ratio_says_how_much_is_cross_polar(write: Callable[[str], Path]) -> None:
+    # Authority: definition of the axial ratio, (co + cross) / (co - cross) of the fields; 3 dB are 1.4125,
+    # a cross-polar field of 0.1710 and -15.34 dB.
+    text = "elevation_deg,gain_dbic,axial_ratio_db\n"
+    text += "".join(
+        f"{elevation},-1,{ratio}\n"
+        for elevation, ratio in zip(range(-90, 91, 30), [3] * 6 + [0], strict=True)
+    )
+    pattern = read_pattern_file(write(text))
+    assert cross_gain_dbic(pattern, 0.0, [0.0, 90.0], L1_HZ) == pytest.approx([-16.34, -61.0], abs=0.01)
+
+
+def test_cuts_that_nearly_meet_are_averaged_at_the_poles(write: Callable[[str], Path]) -> None:
+    text = GRID.replace("270.0,90,-1.0", "270.0,90,-0.4").replace("90.0,-90,-11.0", "90.0,-90,-19.0")
+    pattern = read_pattern_file(write(text))
+    zenith_dbic = gain_dbic(pattern, np.arange(0.0, 360.0, 7.0), 90.0, L1_HZ)
+    # As ratios: (3 x 0.7943 + 0.9120) / 4 = 0.8238 or -0.842 dB.
+    assert zenith_dbic == pytest.approx(np.full(zenith_dbic.size, -0.842), abs=MILLI_DB)
+    assert "The pattern's cuts differ by up to 0.60 dB at the zenith, which is one direction; their mean" in (
+        " ".join(pattern.remarks)
+    )
+    assert "differ by up to 8.00 dB at the nadir" in " ".join(pattern.remarks)
+
+
+def test_gain_goes_on_evenly_below_a_file_of_even_steps(write: Callable[[str], Path]) -> None:
+    # The same straight line in dB, on an axis that can be read without searching.
+    rows = "".join(f"{elevation},{elevation / 10 - 6}\n" for elevation in range(0, 91, 2))
+    pattern = read_pattern_file(write("elevation_deg,gain_dbic\n" + rows))
+    assert np.diff(pattern.elevation_deg).tolist() == [2.0] * 90
+    assert gain_dbic(pattern, 0.0, [-2.0, -45.0, -90.0], L1_HZ) == pytest.approx(
+        [-6.444, -16.0, -26.0], abs=0.001
+    )
+
+
+@pytest.mark.parametrize(
+    ("text", "remark"),
+    [
+        (
+            even(-3.0).replace("90,-3.0", "90,-2.0"),
+            "so little power is rare; gains in dBd would be 2.15 dB lower than in dBic.",
+        ),
+        (
+            "elevation_deg,gain_dbic\n-90,-20\n-60,-20\n-30,-15\n0,-10\n30,-5\n60,-2\n90,0\n",
+            "the highest gain is 0, as in a pattern relative to its peak, which gives no gain.",
+        ),
+    ],
+    ids=["dBd", "relative to the peak"],
+)
+def test_gain_that_is_too_low_earns_a_suspicion(write: Callable[[str], Path], text: str, remark: str) -> None:
+    pattern = read_pattern_file(write(text))
+    share_db = 10.0 * np.log10(efficiency(pattern, L1_HZ))
+    assert pattern.remarks[0] == f"The pattern's mean over the sphere is {share_db:.2f} dB: {remark}"
