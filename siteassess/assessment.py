@@ -10,8 +10,9 @@ from siteassess.horizon.read import read_skyline
 from siteassess.horizon.skyline import Skyline
 from siteassess.link_budget.assemble import link_budget
 from siteassess.link_budget.budget import LinkBudget
+from siteassess.link_budget.read import read_chain, read_kinds
 from siteassess.orbits.constellations import nominal_orbits
-from siteassess.site_file.model import Site
+from siteassess.site_file.model import Part, Site
 from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
 from siteassess.verdict.judge import judge
@@ -27,7 +28,7 @@ class Assessment:
     Attributes
     ----------
     site : Site
-        What the user wrote.
+        What the user wrote, its chain with what the parts table gives.
     skyline : Skyline
         What hides the sky.
     pattern : GainPattern
@@ -66,7 +67,8 @@ def assess(site: Site) -> Assessment:
     InputError
         If a file that the site names is wrong; it holds the mistakes of all of them.
     """
-    skyline, pattern = _read_inputs(site)
+    skyline, pattern, chain = _read_inputs(site)
+    site = site.model_copy(update={"chain": chain})
     orbits = nominal_orbits(site.sky.systems, site.sky.start)
     tracks = sky_tracks(orbits, site.position, days=site.sky.days, step_s=site.sky.step_s)
     budget = link_budget(site, skyline, pattern, tracks)
@@ -97,13 +99,16 @@ def assess_file(path: str | PathLike[str]) -> Assessment:
         site = read_site(path)
     except RefusedSiteError as refused:
         try:
-            _read_inputs(refused.legible)
+            legible = refused.legible
+            gather(lambda: read_skyline(legible), lambda: read_pattern(legible), lambda: read_kinds(legible))
         except InputError as others:
             raise InputError(*refused.mistakes, *others.mistakes) from refused
         raise
     return assess(site)
 
 
-def _read_inputs(site: Site) -> tuple[Skyline, GainPattern]:
-    skyline, pattern = gather(lambda: read_skyline(site), lambda: read_pattern(site))
-    return skyline, pattern
+def _read_inputs(site: Site) -> tuple[Skyline, GainPattern, tuple[Part, ...]]:
+    skyline, pattern, chain = gather(
+        lambda: read_skyline(site), lambda: read_pattern(site), lambda: read_chain(site)
+    )
+    return skyline, pattern, chain

@@ -13,7 +13,7 @@ from siteassess.decibels import to_db, to_ratio
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.view import outline_elevation_deg
 from siteassess.link_budget.brightness import sky_brightness_k
-from siteassess.link_budget.receive_chain import ChainNoise, cascade, value_at_carrier
+from siteassess.link_budget.receive_chain import ChainNoise, cascade, part_noises, receiver_loss_db
 from siteassess.site_file.model import Mount, Part
 
 __all__ = ["RING_DEG", "antenna_temperature_k", "chain_noise", "open_sky_share", "seen_temperature_k"]
@@ -51,6 +51,7 @@ def chain_noise(
     parts = cascade(chain, carrier_hz)
     antenna_k = antenna_temperature_k(pattern, mount, skyline, carrier_hz)
     system_k = antenna_k + parts.temperature_k
+    zenith_dbic = float(mounted_gain_dbic(pattern, mount, 0.0, 90.0, carrier_hz))
     return ChainNoise(
         carrier_hz=carrier_hz,
         antenna_temperature_k=antenna_k,
@@ -58,9 +59,11 @@ def chain_noise(
         system_temperature_k=system_k,
         noise_figure_db=parts.noise_figure_db,
         net_gain_db=parts.net_gain_db,
+        gain_over_temperature_db_per_k=zenith_dbic - float(to_db(system_k)),
         noise_density_dbw_per_hz=float(to_db(BOLTZMANN_J_PER_K * system_k)),
-        implementation_loss_db=value_at_carrier(chain[-1].implementation_loss_db or 0.0, carrier_hz),
+        implementation_loss_db=receiver_loss_db(chain[-1], carrier_hz),
         antenna_efficiency=efficiency(pattern, carrier_hz),
+        parts=part_noises(chain, carrier_hz),
     )
 
 

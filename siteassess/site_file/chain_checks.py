@@ -4,17 +4,19 @@ import re
 from collections.abc import Iterator, Mapping
 
 from siteassess.errors import Mistake
-from siteassess.site_file.model import ByCarrier, Part
+from siteassess.site_file.model import Part
 from siteassess.site_file.refusals import key_path
 from siteassess.wording import listed, shown
 
-__all__ = ["chain_mistakes"]
+__all__ = ["chain_mistakes", "not_spanned"]
 
 RECEIVER = re.compile(r"receiver\b", re.IGNORECASE)
 CARRIER_KEY = re.compile(r"[0-9]{1,6}(\.[0-9]{1,12})?")
 CARRIERS_MHZ = (100.0, 10_000.0)
 BY_CARRIER = ("gain_db", "loss_db", "noise_figure_db", "implementation_loss_db")
 ONE_HERTZ_MHZ = 1e-6
+ONLY_RECEIVER = ("implementation_loss_db", "quantisation", "min_net_gain_db", "max_net_gain_db")
+ONLY_WITH_GAIN = ("supply_current_ma", "min_supply_voltage_v", "max_supply_voltage_v")
 
 
 def chain_mistakes(
@@ -43,10 +45,12 @@ def chain_mistakes(
                 else "only the last block may be the receiver"
             )
             yield _given(file, index, "part", part.part, allowed)
-        else:
+        elif part.kind is None:
             yield from (
                 _receiver_mistakes(file, index, part) if is_receiver else _part_mistakes(file, index, part)
             )
+        yield from _misplaced(file, index, part, is_receiver=is_receiver)
+        yield from _range_mistakes(file, index, part)
         for key in BY_CARRIER:
             value = getattr(part, key)
             if isinstance(value, dict):
@@ -86,9 +90,30 @@ def _part_mistakes(file: str, index: int, part: Part) -> Iterator[Mistake]:
     elif part.loss_db is not None and part.noise_figure_db is not None:
         allowed = "the noise of a lossy part follows from loss_db and physical_temperature_k"
         yield _given(file, index, "noise_figure_db", part.noise_figure_db, allowed)
-    if part.implementation_loss_db is not None:
-        allowed = "only the receiver has it"
-        yield _given(file, index, "implementation_loss_db", part.implementation_loss_db, allowed)
+    if part.count != 1:
+        yield _given(file, index, "count", part.count, "it multiplies the loss of a kind; name the kind")
+
+
+def _misplaced(file: str, index: int, part: Part, *, is_receiver: bool) -> Iterator[Mistake]:
+    """Keys that mean something for other parts only."""
+    keys = () if is_receiver else ONLY_RECEIVER
+    for key in keys:
+        if getattr(part, key) is not None:
+            yield _given(file, index, key, getattr(part, key), "only the receiver has it")
+    has_gain = part.gain_db is not None or (part.kind is not None and not is_receiver)
+    for key in () if has_gain else ONLY_WITH_GAIN:
+        if getattr(part, key) is not None:
+            yield _given(file, index, key, getattr(part, key), "only a part with gain has it")
+
+
+def _range_mistakes(file: str, index: int, part: Part) -> Iterator[Mistake]:
+    for lowest, highest in (
+        ("min_net_gain_db", "max_net_gain_db"),
+        ("min_supply_voltage_v", "max_supply_voltage_v"),
+    ):
+        low, high = getattr(part, lowest), getattr(part, highest)
+        if low is not None and high is not None and high < low:
+            yield _given(file, index, highest, high, f"it must be at least {lowest}, {low:g}")
 
 
 def _table_mistakes(
@@ -120,11 +145,7 @@ def _table_mistakes(
                 allowed="keep one",
                 value=key,
             )
-    outside = [
-        f"{carrier_hz / 1e6:.10g} MHz ({signal})"
-        for signal, carrier_hz in carriers_hz.items()
-        if not min(mhz) - ONE_HERTZ_MHZ <= carrier_hz / 1e6 <= max(mhz) + ONE_HERTZ_MHZ
-    ]
+    outside = not_spanned(mhz, carriers_hz)
     if outside:
         yield Mistake(
             file=file,
@@ -134,7 +155,16 @@ def _table_mistakes(
         )
 
 
-def _given(file: str, index: int, key: str, value: ByCarrier | str, allowed: str) -> Mistake:
+def not_spanned(mhz: list[float], carriers_hz: Mapping[str, float]) -> list[str]:
+    """Carriers of signals, in words, that lie outside those of a table [MHz]."""
+    return [
+        f"{carrier_hz / 1e6:.10g} MHz ({signal})"
+        for signal, carrier_hz in carriers_hz.items()
+        if not min(mhz) - ONE_HERTZ_MHZ <= carrier_hz / 1e6 <= max(mhz) + ONE_HERTZ_MHZ
+    ]
+
+
+def _given(file: str, index: int, key: str, value: object, allowed: str) -> Mistake:
     problem = "is a table" if isinstance(value, dict) else f"is {shown(value)}"
     return Mistake(
         file=file, where=key_path("chain", index, key), problem=problem, allowed=allowed, value=value

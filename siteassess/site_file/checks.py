@@ -9,6 +9,7 @@ from pydantic import ValidationError
 
 from siteassess.errors import Mistake
 from siteassess.site_file.chain_checks import chain_mistakes
+from siteassess.site_file.kind_checks import kind_mistakes, packaged_kinds
 from siteassess.site_file.model import (
     AntennaChoice,
     HorizonSource,
@@ -17,6 +18,7 @@ from siteassess.site_file.model import (
     Record,
     Requirements,
     SkyModel,
+    purposes_dbhz,
 )
 from siteassess.site_file.refusals import key_path
 from siteassess.tables import packaged_rows
@@ -39,6 +41,7 @@ class Sections:
     place: Place | None
     antenna: AntennaChoice | None
     chain: tuple[Part | None, ...]
+    has_own_parts: bool
     horizon: tuple[HorizonSource | None, ...]
     sky: SkyModel | None
     require: Requirements | None
@@ -50,6 +53,7 @@ class Sections:
             place=_valid(Place, raw.get("site")),
             antenna=_valid(AntennaChoice, raw.get("antenna")),
             chain=_valid_blocks(Part, raw.get("chain")),
+            has_own_parts="parts" in raw,
             horizon=_valid_blocks(HorizonSource, raw.get("horizon")),
             sky=_valid(SkyModel, raw.get("sky", {})),
             require=_valid(Requirements, raw.get("require")),
@@ -67,6 +71,8 @@ def cross_mistakes(sections: Sections, file: str) -> list[Mistake]:
     if sections.antenna is not None:
         mistakes += _antenna_mistakes(sections.antenna, file)
     mistakes += chain_mistakes(sections.chain, carriers_hz or {}, file)
+    if not sections.has_own_parts:  # else whoever reads that table looks
+        mistakes += kind_mistakes(sections.chain, packaged_kinds(), file)
     mistakes += _horizon_mistakes(sections.horizon, file)
     if sections.require is not None and carriers_hz is not None:
         mistakes += _require_mistakes(sections.require, tuple(carriers_hz), file)
@@ -167,6 +173,10 @@ def _horizon_mistakes(horizon: tuple[HorizonSource | None, ...], file: str) -> I
 
 def _require_mistakes(require: Requirements, signals: tuple[str, ...], file: str) -> Iterator[Mistake]:
     table = require.min_cn0_dbhz
+    if isinstance(table, str) and table not in purposes_dbhz():
+        purposes = purposes_dbhz()
+        otherwise = f"it must be a number, a table by signal, or a purpose: {listed(purposes, 'or')}"
+        yield _given(file, ("require", "min_cn0_dbhz"), table, did_you_mean(table, purposes, otherwise))
     if not isinstance(table, dict):
         return
     suggestions = {

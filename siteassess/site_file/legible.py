@@ -6,7 +6,7 @@ from typing import Any, TypeVar
 
 from pydantic import ValidationError
 
-from siteassess.site_file.model import AntennaChoice, HorizonSource, Mount, Record, Site
+from siteassess.site_file.model import AntennaChoice, HorizonSource, Mount, Part, PartsChoice, Record, Site
 
 __all__ = ["legible_site"]
 
@@ -16,7 +16,7 @@ NO_FILE = AntennaChoice(pattern="isotropic")
 
 
 def legible_site(raw: Mapping[str, Any], path: Path) -> Site:
-    """A site with `mount`, `antenna`, `horizon` and `path` only, for reading its files and for nothing else.
+    """A site with `mount`, `antenna`, `chain`, `parts`, `horizon` and `path`, for reading its files only.
 
     Keys that are refused take their defaults; what leads to no file that can be read is left out.
 
@@ -38,6 +38,8 @@ def legible_site(raw: Mapping[str, Any], path: Path) -> Site:
     tables: dict[str, Any] = {
         "mount": mount,
         "antenna": antenna if antenna is not None and antenna.is_file else NO_FILE,
+        "chain": _whole_chain(raw.get("chain")),
+        "parts": _right_keys(PartsChoice, raw.get("parts")),
         "horizon": tuple(surveys.values()),
     }
     site = Site.model_construct(**tables)
@@ -49,6 +51,12 @@ def _at_the_antenna(source: HorizonSource) -> HorizonSource:
     return source.model_copy(
         update={"instrument_east_m": 0.0, "instrument_north_m": 0.0, "instrument_up_m": None}
     )
+
+
+def _whole_chain(blocks: Any) -> tuple[Part, ...]:
+    """The chain without the keys that are refused; empty where a block leaves too little to count on."""
+    parts = [_right_keys(Part, block) for block in (blocks if isinstance(blocks, tuple) else ())]
+    return () if None in parts else tuple(part for part in parts if part is not None)
 
 
 def _right_keys(record: type[AnyRecord], raw: Any) -> AnyRecord | None:

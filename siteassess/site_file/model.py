@@ -6,10 +6,13 @@ the tool's own words, `checks` holds the keys against each other.
 
 from dataclasses import dataclass
 from datetime import date, datetime
+from functools import cache
 from pathlib import Path
 from typing import Annotated, Literal
 
 from pydantic import BaseModel, BeforeValidator, ConfigDict, Discriminator, Field, PrivateAttr, Tag
+
+from siteassess.tables import packaged_rows
 
 __all__ = [
     "AntennaChoice",
@@ -17,16 +20,22 @@ __all__ = [
     "HorizonSource",
     "Mount",
     "Part",
+    "PartsChoice",
     "Place",
     "Position",
     "Requirements",
     "Site",
     "SkyModel",
+    "purposes_dbhz",
 ]
 
 
 def _shape(value: object) -> str:
     return "table" if isinstance(value, dict) else "number"
+
+
+def _shape_or_purpose(value: object) -> str:
+    return "purpose" if isinstance(value, str) else _shape(value)
 
 
 def _whole_number(value: object) -> object:
@@ -43,6 +52,7 @@ Share = Annotated[float, Field(ge=0, le=1)]
 Temperature = Annotated[float, Field(ge=0, le=1000)]
 Cn0 = Annotated[float, Field(ge=0, le=70)]
 Decibels = Annotated[float, Field(ge=0, le=100)]
+Voltage = Annotated[float, Field(ge=0, le=60)]
 # Control characters would break a report's line; a Windows path in a basic string of TOML brings them in.
 Text = Annotated[str, Field(min_length=1, max_length=200, pattern=r"^[^\u0000-\u001f\u007f]*$")]
 FilePath = Annotated[str, Field(min_length=1, max_length=4000, pattern=r"^[^\u0000-\u001f\u007f]*$")]
@@ -52,8 +62,15 @@ DecibelsByCarrier = Annotated[
     Annotated[Decibels, Tag("number")] | Annotated[dict[str, Decibels], Tag("table")], Discriminator(_shape)
 ]
 Cn0BySignal = Annotated[
-    Annotated[Cn0, Tag("number")] | Annotated[dict[str, Cn0], Tag("table")], Discriminator(_shape)
+    Annotated[Cn0, Tag("number")] | Annotated[dict[str, Cn0], Tag("table")] | Annotated[str, Tag("purpose")],
+    Discriminator(_shape_or_purpose),
 ]
+
+
+@cache
+def purposes_dbhz() -> dict[str, float]:
+    """Minimum C/N0 by the purpose it is enough for."""
+    return {row["purpose"]: float(row["min_cn0_dbhz"]) for row in packaged_rows("verdict/purposes.csv")}
 
 
 class Record(BaseModel):
@@ -144,17 +161,42 @@ class AntennaChoice(Record):
         description="Name of a built-in gain pattern, or a CSV file relative to the site file; the value "
         "then ends in .csv."
     )
+    unwanted_level_dbm: Annotated[float, Field(ge=-200, le=50)] | None = Field(
+        default=None,
+        description="Level at the antenna port of all transmitters outside the navigation bands [dBm].",
+    )
 
     @property
     def is_file(self) -> bool:
         return self.pattern.lower().endswith(".csv")
 
 
+class PartsChoice(Record):
+    """Table `[parts]`: a parts table of the site's own."""
+
+    file: FilePath = Field(
+        description="A CSV file relative to the site file; its kinds go before those of the packaged table."
+    )
+
+
 class Part(Record):
-    """One `[[chain]]` block: a part between the antenna port and the receiver, which is the last one."""
+    """One `[[chain]]` block: a part between the antenna port and the receiver, which is the last one.
+
+    What is absent is taken from the part's kind. `rests_on` says where that came from.
+    """
 
     part: Text = Field(
         description="What the part is. The last one must be called receiver, and only that one."
+    )
+    kind: Text | None = Field(
+        default=None,
+        description="Row of the parts table that gives every value that is absent here, such as foam, 10 mm.",
+    )
+    length_m: Annotated[float, Field(ge=0, le=1000)] | None = Field(
+        default=None, description="Length of a cable [m]."
+    )
+    count: Annotated[int, Field(ge=1, le=100)] = Field(
+        default=1, description="How many parts of this kind stand one after the other; their losses add."
     )
     gain_db: DecibelsByCarrier | None = Field(
         default=None, description="Gain [dB]; a part with gain needs noise_figure_db too."
@@ -169,8 +211,51 @@ class Part(Record):
     )
     implementation_loss_db: DecibelsByCarrier | None = Field(
         default=None,
-        description="Loss inside the receiver, by quantisation and filtering [dB]; none when absent.",
+        description="Loss inside the receiver, by filtering and whatever quantisation does not name [dB]; "
+        "none when absent.",
     )
+    quantisation: Literal["1-bit", "2-bit"] | None = Field(
+        default=None,
+        description="Samples of the receiver; the loss of their rounding is added to implementation_loss_db.",
+    )
+    min_net_gain_db: Decibels | None = Field(
+        default=None, description="Smallest gain ahead of it that the receiver is made for [dB]."
+    )
+    max_net_gain_db: Decibels | None = Field(
+        default=None, description="Largest gain ahead of it that the receiver is made for [dB]."
+    )
+    max_input_dbm: Annotated[float, Field(ge=-150, le=50)] | None = Field(
+        default=None, description="Level at its input where the part saturates: its 1 dB compression [dBm]."
+    )
+    out_of_band_rejection_db: Decibels | None = Field(
+        default=None,
+        description="How much a filter at its input weakens transmitters outside the navigation bands [dB].",
+    )
+    supply_voltage_v: Voltage | None = Field(
+        default=None, description="Voltage that the part feeds toward the antenna [V]."
+    )
+    supply_current_ma: Annotated[float, Field(ge=0, le=1000)] | None = Field(
+        default=None, description="Current that a part with gain draws from the cable [mA]."
+    )
+    min_supply_voltage_v: Voltage | None = Field(
+        default=None, description="Lowest voltage at which a part with gain works [V]."
+    )
+    max_supply_voltage_v: Voltage | None = Field(
+        default=None, description="Highest voltage that a part with gain stands [V]."
+    )
+    loop_resistance_ohm: Annotated[float, Field(ge=0, le=1000)] | None = Field(
+        default=None, description="Resistance to the supply, inner and outer conductor together [ohm]."
+    )
+    passes_supply: bool | None = Field(
+        default=None, description="Whether the supply gets through; it does unless the kind says otherwise."
+    )
+
+    _rests_on: str = PrivateAttr(default="")
+
+    @property
+    def rests_on(self) -> str:
+        """Source and status of what the parts table gave; empty where it gave nothing."""
+        return self._rests_on
 
 
 class HorizonSource(Record):
@@ -225,6 +310,10 @@ class SkyModel(Record):
         default="guaranteed",
         description="Power of the satellites: the interface documents' minimum, or with a stated excess.",
     )
+    tracked: Literal["pilot", "whole-signal"] = Field(
+        default="pilot",
+        description="What the receiver tracks: the component named in the signal table, or the whole signal.",
+    )
     start: datetime = Field(
         default=datetime(2026, 1, 1),
         description="Start of the window of joint counts and dilution of precision, UTC, in the years 1980 "
@@ -245,7 +334,8 @@ class Requirements(Record):
         description="Satellites below this elevation are not counted [deg]."
     )
     min_cn0_dbhz: Cn0BySignal = Field(
-        description="Smallest C/N0 at which a signal is usable [dB-Hz]: one number, or a table by signal."
+        description="Smallest C/N0 at which a signal is usable [dB-Hz]: one number, a table by signal, or a "
+        "purpose such as carrier-phase."
     )
     min_usable_share: Share = Field(
         default=0.95, description="Smallest usable share of a signal's satellite-time above the mask [share]."
@@ -268,9 +358,35 @@ class Requirements(Record):
         default=None, description="Smallest height of the antenna above the roof [m]."
     )
 
+    min_net_gain_db: Decibels | None = Field(
+        default=None, description="Smallest gain between the antenna port and the receiver [dB]."
+    )
+    max_net_gain_db: Decibels | None = Field(
+        default=None, description="Largest gain between the antenna port and the receiver [dB]."
+    )
+    max_cn0_lost_before_preamplifier_db: Decibels | None = Field(
+        default=None,
+        description="Largest loss of C/N0 to what stands ahead of the first part with gain [dB].",
+    )
+    max_cable_loss_db_per_m: Decibels | None = Field(
+        default=None, description="Largest loss of a cable at 1575.42 MHz [dB/m]."
+    )
+    min_supply_voltage_v: Voltage | None = Field(
+        default=None, description="Lowest voltage at the first part with gain [V]."
+    )
+    max_supply_voltage_v: Voltage | None = Field(
+        default=None, description="Highest voltage at the first part with gain [V]."
+    )
+    min_saturation_margin_db: Decibels | None = Field(
+        default=None, description="Smallest distance of the level at any part from its saturation [dB]."
+    )
+
     def min_cn0_for(self, signal: str) -> float:
         """Smallest C/N0 [dB-Hz] that the user asks of one signal."""
-        return self.min_cn0_dbhz[signal] if isinstance(self.min_cn0_dbhz, dict) else self.min_cn0_dbhz
+        asked = self.min_cn0_dbhz
+        if isinstance(asked, str):
+            return purposes_dbhz()[asked]
+        return asked[signal] if isinstance(asked, dict) else asked
 
 
 class Site(Record):
@@ -286,6 +402,7 @@ class Site(Record):
     mount: Mount
     antenna: AntennaChoice
     chain: tuple[Part, ...] = Field(min_length=1)
+    parts: PartsChoice | None = None
     horizon: tuple[HorizonSource, ...] = ()
     sky: SkyModel = SkyModel()
     require: Requirements

@@ -13,6 +13,7 @@ from siteassess.wording import did_you_mean, listed, shown
 __all__ = ["key_path", "refusals"]
 
 PLAIN_KEY = re.compile(r"[A-Za-z0-9_-]{1,60}")
+SHAPES = ("number", "table", "purpose")  # the branches of a union, in their order
 PATH_HINT = "write a Windows path with / or in single quotes"
 
 
@@ -85,8 +86,8 @@ def _follow(schema: Node, loc: tuple[str | int, ...]) -> tuple[list[str | int], 
     parent, node = schema, schema
     for step in loc:
         parent = node
-        if "oneOf" in node and step in ("number", "table"):
-            node = node["oneOf"][0 if step == "number" else 1]
+        if "oneOf" in node and step in SHAPES:
+            node = node["oneOf"][SHAPES.index(str(step))]
             continue
         steps.append(step)
         if isinstance(step, int):
@@ -116,6 +117,7 @@ def _must_be(node: Node, steps: list[str | int]) -> str:
     block = next((step for step in steps if isinstance(step, str)), "")
     kinds = {
         "number": _number(node),
+        "integer": _number(node).replace("a number", "a whole number"),
         "boolean": "true or false",
         "string": "a text in quotation marks",
         "object": f"a block [[{block}]]" if len(steps) > 1 else f"a table [{block}]",
