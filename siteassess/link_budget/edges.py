@@ -32,9 +32,12 @@ class Edges:
         Elevation of the higher end.
     start_m, end_m : array, shape (arc,)
         Slant distance of both ends.
+    nearest_m : array, shape (arc,)
+        Distance that no point of the edge falls below.
     axes : array, shape (arc, 5, 3)
-        East, north, up of five vectors: normal of the arc's plane, the two directions in that plane at right
-        angles to its ends and pointing inward, and the ends themselves.
+        East, north, up of five vectors: normal of the arc's plane; the two directions in that plane at right
+        angles to its ends and pointing inward, over the sine of the arc and the distance of the other end
+        [1/m]; and the ends themselves.
     closed : bool
         Whether the edge runs round the whole circle.
     """
@@ -44,6 +47,7 @@ class Edges:
     top_deg: FloatArray
     start_m: FloatArray
     end_m: FloatArray
+    nearest_m: FloatArray
     axes: FloatArray
     closed: bool
 
@@ -51,7 +55,7 @@ class Edges:
 def upper_edges(obstacle: Obstacle) -> Edges:
     """Upper edge of an obstacle, with its two sides down to its underside or to the ground.
 
-    Vertical parts have the distance of their higher end, to which they belong.
+    Vertical parts stand upright in space, as far away in plan as their higher end, to which they belong.
     """
     azimuth_deg, elevation_deg, distance_m = _nodes(obstacle, obstacle.elevation_deg, edge_elevation_deg)
     if not _is_closed(obstacle):
@@ -126,7 +130,7 @@ def highest_within_reach_deg(edges: Edges, detour_m: float) -> FloatArray:
 
 def _reach_deg(edges: Edges, detour_m: float) -> tuple[FloatArray, FloatArray]:
     """How far from each arc a detour may begin, as an angle and as an azimuth at the elevation of the arc."""
-    reach_rad = np.arccos(np.maximum(1.0 - detour_m / np.minimum(edges.start_m, edges.end_m), -1.0))
+    reach_rad = np.arccos(np.maximum(1.0 - detour_m / edges.nearest_m, -1.0))
     top_rad = np.deg2rad(np.maximum(edges.top_deg, 0.0))
     over_zenith = top_rad + reach_rad >= np.pi / 2.0
     sine = np.where(over_zenith, 0.0, np.sin(reach_rad) / np.cos(top_rad))
@@ -177,21 +181,27 @@ def _arcs(
     start_m, end_m = distance_m[:-1], distance_m[1:]
     rises = elevation_deg[1:] > elevation_deg[:-1]
     is_vertical = azimuth_deg[1:] == azimuth_deg[:-1]
-    owner_m = np.where(rises, end_m, start_m)
-    start_m, end_m = np.where(is_vertical, owner_m, start_m), np.where(is_vertical, owner_m, end_m)
+    cosine = np.cos(np.deg2rad(elevation_deg))
+    in_plan_m = np.where(rises, end_m * cosine[1:], start_m * cosine[:-1])  # of the higher end
+    start_m = np.where(is_vertical, in_plan_m / cosine[:-1], start_m)
+    end_m = np.where(is_vertical, in_plan_m / cosine[1:], end_m)
+    nearest_m = np.where(is_vertical, in_plan_m, np.minimum(start_m, end_m))
     points = direction(azimuth_deg, elevation_deg).T
     normal = np.cross(points[:-1], points[1:])
     length = np.linalg.norm(normal, axis=1)
     lowest_deg = np.minimum(elevation_deg[:-1], elevation_deg[1:])  # NaN, like the distance, is no edge
     real = (lowest_deg > NOTHING_DEG) & np.isfinite(start_m + end_m) & (length > 1e-12)
     normal, start, end = normal[real] / length[real, None], points[:-1][real], points[1:][real]
+    from_start = np.cross(normal, start) / (length * end_m)[real, None]
+    to_end = np.cross(end, normal) / (length * start_m)[real, None]
     return Edges(
         start_deg=azimuth_deg[:-1][real],
         end_deg=azimuth_deg[1:][real],
         top_deg=np.maximum(elevation_deg[:-1], elevation_deg[1:])[real],
         start_m=start_m[real],
         end_m=end_m[real],
-        axes=np.stack([normal, np.cross(normal, start), np.cross(end, normal), start, end], axis=1),
+        nearest_m=nearest_m[real],
+        axes=np.stack([normal, from_start, to_end, start, end], axis=1),
         closed=closed,
     )
 
@@ -199,11 +209,12 @@ def _arcs(
 def _detour_m(edges: Edges, arc: NDArray[np.int64], line: FloatArray) -> FloatArray:
     """Smallest detour over one arc for each line of sight, at the nearest point or at an end."""
     off, from_start, to_end, at_start, at_end = np.einsum("nij,nj->in", edges.axes[arc], line)
-    start_m, end_m = edges.start_m[arc], edges.end_m[arc]
-    ends_m = np.minimum(start_m * (1.0 - at_start), end_m * (1.0 - at_end))
+    ends_m = np.minimum(edges.start_m[arc] * (1.0 - at_start), edges.end_m[arc] * (1.0 - at_end))
     abreast = (from_start > 0.0) & (to_end > 0.0)
-    part = np.where(abreast, from_start, 0.0) / np.where(abreast, from_start + to_end, 1.0)
-    one_minus_cosine = off**2 / (1.0 + np.sqrt(np.maximum(1.0 - off**2, 0.0)))
-    abreast_m = (start_m + part * (end_m - start_m)) * one_minus_cosine
+    cosine = np.sqrt(np.maximum(1.0 - off**2, 0.0))
+    # A straight line seen at an angle b from its start and c from its end, which are b + c apart, is at the
+    # distance d with 1/d = (sin(b) / d_end + sin(c) / d_start) / sin(b + c).
+    foot_m = cosine / np.where(abreast, from_start + to_end, 1.0)
+    abreast_m = foot_m * off**2 / (1.0 + cosine)
     detour_m: FloatArray = np.where(abreast, abreast_m, np.maximum(ends_m, 0.0))
     return detour_m

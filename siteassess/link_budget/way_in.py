@@ -35,11 +35,12 @@ STRIP_REACH_NU = 1.25
 def skyline_loss_db(
     skyline: Skyline, azimuth_deg: FloatArray, apparent_elevation_deg: FloatArray, carrier_hz: float
 ) -> tuple[FloatArray, IndexArray]:
-    """Loss by diffraction and leaves toward directions; the losses of several obstacles add.
+    """Loss by diffraction and leaves toward directions.
 
     A solid obstacle of known distance acts by its nearest edge, sides and underside included, as a knife
     edge; a narrow one by the difference of its two edges. Without a distance an edge is hard: no loss beside
-    it, and none computed behind it, where the line of sight is hidden anyway.
+    it, and none computed behind it, where the line of sight is hidden anyway. Walls that stand on the ground
+    are one outline, of which the nearest edge counts; the losses of leaves, narrow and hanging obstacles add.
 
     Parameters
     ----------
@@ -53,7 +54,7 @@ def skyline_loss_db(
     Returns
     -------
     loss_db : array, shape (n,)
-        Sum over the obstacles, at least 0; defined behind edges too.
+        At least 0; defined behind edges too.
     costly_obstacle : integer array, shape (n,)
         Index in `Skyline.obstacles` of the one that costs most; -1 where none costs anything.
 
@@ -61,17 +62,20 @@ def skyline_loss_db(
     ----------
     [P.526] ITU-R P.526, 4.1 and 5.1. [P.833] ITU-R P.833-10, 2.2.
     """
-    loss_db = np.zeros(azimuth_deg.shape)
+    added_db, outline_db = np.zeros(azimuth_deg.shape), np.zeros(azimuth_deg.shape)
     largest_db = np.zeros(azimuth_deg.shape)
     costly_obstacle = np.full(azimuth_deg.shape, -1, dtype=np.int64)
     for index, obstacle in enumerate(skyline.obstacles):
         one = _foliage_loss_db if obstacle.cover == "foliage" else _solid_loss_db
         near, near_loss_db = one(obstacle, azimuth_deg, apparent_elevation_deg, carrier_hz)
-        loss_db[near] += near_loss_db
+        if _is_standing_wall(obstacle, carrier_hz):
+            outline_db[near] = np.maximum(outline_db[near], near_loss_db)
+        else:
+            added_db[near] += near_loss_db
         costs_most = near_loss_db > largest_db[near]
         largest_db[near[costs_most]] = near_loss_db[costs_most]
         costly_obstacle[near[costs_most]] = index
-    return loss_db, costly_obstacle
+    return added_db + outline_db, costly_obstacle
 
 
 def is_narrow(obstacle: Obstacle, wavelength_m: float) -> bool:
@@ -92,6 +96,12 @@ def is_narrow(obstacle: Obstacle, wavelength_m: float) -> bool:
     return bool(
         min(across_m, upward_m) < 2.0 * np.sqrt(wavelength_m * distance_m)
     )  # [P.526] eq. 2, both radii
+
+
+def _is_standing_wall(obstacle: Obstacle, carrier_hz: float) -> bool:
+    """Whether an obstacle is solid, wide and has no open sky below it."""
+    is_wall = obstacle.cover == "solid" and not obstacle.hangs_free
+    return is_wall and not is_narrow(obstacle, SPEED_OF_LIGHT_M_PER_S / carrier_hz)
 
 
 def _foliage_loss_db(
@@ -148,20 +158,23 @@ def _strip_loss_db(
     aside_deg = wrap_difference_deg(azimuth_deg - middle_deg)
     nearest_deg = middle_deg + np.clip(aside_deg, -half_deg, half_deg)
     top_deg = edge_elevation_deg(obstacle, nearest_deg)
-    distance_m = edge_distance_m(obstacle, nearest_deg)
-    narrowing = np.cos(np.deg2rad(np.minimum(elevation_deg, top_deg)))  # of an azimuth gap, at the edge
-    nu_from, nu_to, nu_top, nu_bottom = (
-        fresnel_parameter(angle_deg, distance_m, wavelength_m)
-        for angle_deg in (
-            (-half_deg - aside_deg) * narrowing,
-            (half_deg - aside_deg) * narrowing,
-            top_deg - elevation_deg,
-            underside_elevation_deg(obstacle, nearest_deg) - elevation_deg,
-        )
-    )
+    meets_deg = np.minimum(elevation_deg, top_deg)
+    in_plan_m = edge_distance_m(obstacle, nearest_deg) * np.cos(np.deg2rad(top_deg))
+
+    def edge_nu(angle_deg: FloatArray, level_deg: FloatArray) -> FloatArray:
+        # It stands upright, so at every level it is equally far away in plan.
+        distance_m = in_plan_m / np.cos(np.deg2rad(level_deg))
+        return np.asarray(fresnel_parameter(angle_deg, distance_m, wavelength_m))
+
+    narrowing = np.cos(np.deg2rad(meets_deg))  # of an azimuth gap, where the line of sight meets the obstacle
+    nu_from = edge_nu((-half_deg - aside_deg) * narrowing, meets_deg)
+    nu_to = edge_nu((half_deg - aside_deg) * narrowing, meets_deg)
+    nu_top = edge_nu(top_deg - elevation_deg, top_deg)
+    nu_bottom = np.full_like(nu_top, -np.inf)
+    if obstacle.hangs_free:
+        bottom_deg = underside_elevation_deg(obstacle, nearest_deg)
+        nu_bottom = edge_nu(bottom_deg - elevation_deg, bottom_deg)
     is_clear = (np.maximum(nu_from, nu_bottom) > STRIP_REACH_NU) | (
         np.minimum(nu_to, nu_top) < -STRIP_REACH_NU
     )
-    if not obstacle.hangs_free:
-        nu_bottom = np.full_like(nu_top, -np.inf)
     return np.where(is_clear, 0.0, strip_loss_db(nu_from, nu_to, nu_top, nu_bottom))
