@@ -1,5 +1,8 @@
 """The command line: parse, call the library, print, exit code. No science lives here."""
 
+import errno
+import io
+import shlex
 import sys
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
@@ -28,16 +31,24 @@ class Commands(click.Group):
     """Prints the mistakes of an input, one a line, instead of a traceback."""
 
     def invoke(self, ctx: click.Context) -> Any:
+        if isinstance(sys.stdout, io.TextIOWrapper):
+            # Names may hold signs that the terminal's encoding lacks.
+            sys.stdout.reconfigure(errors="replace")
         try:
             return super().invoke(ctx)
         except SiteAssessError as error:
-            for mistake in error.mistakes:
-                click.echo(f"Error: {mistake}", err=True)
-            ctx.exit(1)
+            messages = [str(mistake) for mistake in error.mistakes]
+        except OSError as error:
+            if error.errno == errno.EPIPE:  # whoever reads the output has enough; click ends quietly
+                raise
+            messages = [f"the output cannot be written; {(error.strerror or str(error)).lower()}"]
+        for message in messages:
+            _tell(f"Error: {message}")
+        raise click.exceptions.Exit(1)
 
 
 @click.group(cls=Commands, epilog=EXIT_STATUS, context_settings={"help_option_names": ["-h", "--help"]})
-@click.version_option(package_name="siteassess", message="%(prog)s %(version)s")
+@click.version_option(package_name="siteassess", message="siteassess %(version)s")
 def main() -> None:
     """Assess an installation site for a fixed GNSS reference-station antenna.
 
@@ -63,8 +74,10 @@ def new(folder: Path) -> None:
     from siteassess.site_file.starter import write_starter
 
     write_starter(folder)
-    click.echo(f"Starter site written to {folder}. Edit site.toml and horizon.csv there, then:", err=True)
-    click.echo(f"  siteassess assess {folder}", err=True)
+    _tell(f"Starter site written to {folder}. Edit site.toml and horizon.csv there, then:")
+    # Ready to be copied, whatever signs the name holds.
+    end_of_options = ["--"] if str(folder).startswith("-") else []
+    _tell(shlex.join(["siteassess", "assess", *end_of_options, str(folder)]), indent="  ")
 
 
 @main.command(epilog=EXIT_STATUS)
@@ -97,22 +110,34 @@ def assess(
         assessment = assess_file(site)
         folder = out if out is not None or as_json else _report_folder(assessment)
         if folder is not None:
+            import logging
+
             from siteassess.report.write import write_report
 
+            # Where matplotlib keeps its cache is not the user's concern.
+            logging.getLogger("matplotlib").setLevel(logging.ERROR)
             write_report(assessment, folder, step)
     if as_json:
         from siteassess.report.results import json_text
 
-        click.echo(json_text(assessment), nl=False)
+        # As bytes: UTF-8 and plain line ends on every system.
+        click.echo(json_text(assessment).encode(), nl=False)
     elif not quiet:
         from siteassess.report.summary import summary_lines
 
         for line in summary_lines(assessment):
             click.echo(line)
     if folder is not None and not quiet:
-        click.echo(f"Report written to {folder}", err=True)
+        _tell(f"Report written to {folder}")
     if require_pass and assessment.verdict.outcome != "pass":
         ctx.exit(3)
+
+
+def _tell(text: str, indent: str = "") -> None:
+    """A line on standard error; names of files cannot steer the terminal."""
+    from siteassess.report.phrases import plain
+
+    click.echo(indent + plain(text), err=True)
 
 
 def _report_folder(assessment: "Assessment") -> Path:

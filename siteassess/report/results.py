@@ -4,8 +4,10 @@ from __future__ import annotations
 
 import json
 import math
+import re
 from typing import TYPE_CHECKING, Any
 
+from siteassess.link_budget.supply import preamplifier_voltage_v
 from siteassess.report.setting import CAUTIONS, assumptions
 
 if TYPE_CHECKING:
@@ -16,7 +18,9 @@ if TYPE_CHECKING:
 __all__ = ["FORMAT", "assessment_record", "json_text"]
 
 FORMAT = "siteassess-assessment/1"
-DECIMALS = {"share": 6, "db": 3, "deg": 4, "m": 3, "k": 3, "hz": 0, "count": 3}
+# Beyond ASCII, where JSON escapes nothing: they steer terminals, end lines or turn the reading direction.
+STEERING_SIGNS = re.compile("[\x7f-\x9f\u2028\u2029\u200e\u200f\u202a-\u202e\u2066-\u2069]")
+DECIMALS = {"share": 6, "db": 3, "deg": 4, "m": 3, "k": 3, "hz": 0, "count": 3, "v": 3, "db/m": 4}
 
 
 def json_text(assessment: Assessment) -> str:
@@ -27,7 +31,8 @@ def json_text(assessment: Assessment) -> str:
     assessment : Assessment
         What `assess` returned.
     """
-    return json.dumps(assessment_record(assessment), ensure_ascii=False, allow_nan=False, indent=2) + "\n"
+    text = json.dumps(assessment_record(assessment), ensure_ascii=False, allow_nan=False, indent=2) + "\n"
+    return STEERING_SIGNS.sub(lambda sign: f"\\u{ord(sign[0]):04x}", text)
 
 
 def assessment_record(assessment: Assessment) -> dict[str, Any]:
@@ -105,7 +110,7 @@ def assessment_record(assessment: Assessment) -> dict[str, Any]:
 def _rounded(value: float | None, kind: str) -> float | None:
     if value is None or not math.isfinite(value):
         return None
-    return round(float(value), DECIMALS[kind]) + 0.0  # no minus zero
+    return round(float(value), DECIMALS[kind.lower()]) + 0.0  # no minus zero
 
 
 def _finding(finding: Finding) -> dict[str, Any]:
@@ -200,6 +205,16 @@ def _noise(assessment: Assessment) -> list[dict[str, Any]]:
             "system_temperature_k": _rounded(noise.system_temperature_k, "k"),
             "noise_figure_db": _rounded(noise.noise_figure_db, "db"),
             "net_gain_db": _rounded(noise.net_gain_db, "db"),
+            "gain_over_temperature_db_per_k": _rounded(noise.gain_over_temperature_db_per_k, "db"),
+            "supply_voltage_v": _rounded(preamplifier_voltage_v(assessment.site.chain), "v"),
+            "parts": [
+                {
+                    "part": part.part,
+                    "gain_db": _rounded(part.gain_db, "db"),
+                    "added_temperature_k": _rounded(part.added_temperature_k, "k"),
+                }
+                for part in noise.parts
+            ],
         }
         for noise in by_carrier.values()
     ]

@@ -2,6 +2,7 @@
 
 from __future__ import annotations
 
+import errno
 import secrets
 import shutil
 from collections.abc import Callable
@@ -58,9 +59,10 @@ def write_report(
 def _write(assessment: Assessment, folder: Path, tell: Callable[[str], None]) -> None:
     # Inside a folder that exists: beside it may lie on another disk, where nothing can be renamed to.
     home = folder if folder.is_dir() else folder.parent
+    for place in (folder, *folder.parents):
+        if place.exists() and not place.is_dir():
+            raise NotADirectoryError(errno.ENOTDIR, f"{place.name} is a file, not a folder")
     home.mkdir(parents=True, exist_ok=True)
-    if folder.exists() and not folder.is_dir():
-        raise NotADirectoryError(20, "it is a file, not a folder")
     fresh = home / f".siteassess-{secrets.token_hex(4)}"
     fresh.mkdir()
     try:

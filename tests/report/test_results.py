@@ -141,3 +141,13 @@ def test_budget_terms_add_up(markup_assessment):
                 - implementation_loss_db
             )
             assert np.isclose(entry["cn0_open_sky_dbhz"], expected, atol=thousandths_of_four_terms_db)
+
+
+def test_printed_json_cannot_steer_the_terminal(markup_assessment):
+    name = "Roof \x1b[31m \x9b31m \u202e \u2028 \u5317\u5854"
+    place = markup_assessment.site.place.model_copy(update={"name": name})
+    site = markup_assessment.site.model_copy(update={"place": place})
+    text = json_text(dataclasses.replace(markup_assessment, site=site))
+    assert not {"\x1b", "\x9b", "\u202e", "\u2028"} & set(text)
+    assert "\u5317\u5854" in text
+    assert json.loads(text)["site"]["name"] == name

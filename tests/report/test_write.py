@@ -114,7 +114,7 @@ def test_file_in_place_of_the_folder_is_refused(markup_assessment, tmp_path):
     with pytest.raises(OutputError) as caught:
         write_report(markup_assessment, tmp_path / "report")
     assert str(caught.value) == (
-        "report: the report cannot be written: it is a file, not a folder; "
+        "report: the report cannot be written: report is a file, not a folder; "
         "what stood there before is unchanged"
     )
     assert (tmp_path / "report").read_bytes() == OLD
@@ -123,7 +123,9 @@ def test_file_in_place_of_the_folder_is_refused(markup_assessment, tmp_path):
 
 def test_folder_below_a_file_is_refused(markup_assessment, tmp_path):
     (tmp_path / "roof").write_bytes(OLD)
-    with pytest.raises(OutputError, match="report: the report cannot be written: "):
+    with pytest.raises(
+        OutputError, match="report: the report cannot be written: roof is a file, not a folder; "
+    ):
         write_report(markup_assessment, tmp_path / "roof" / "report")
 
 
