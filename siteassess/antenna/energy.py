@@ -91,7 +91,7 @@ def _sphere_mean(pattern: GainPattern, levels_dbic: FloatArray, carrier_hz: floa
         between_dbic = change_db * ((node + 1.0) / 2.0)
         between_dbic += cuts_dbic[:-1]
         mean += float(_cut_mean(pattern.elevation_deg, between_dbic) @ width_share) * weight / 2.0
-    return mean
+    return float(mean)
 
 
 def _cut_mean(elevation_deg: FloatArray, levels_dbic: FloatArray) -> FloatArray:

@@ -7,6 +7,7 @@ import numpy as np
 
 from siteassess.constants import REFERENCE_TEMPERATURE_K
 from siteassess.decibels import to_db, to_ratio
+from siteassess.link_budget.antenna_noise import AntennaNoise
 from siteassess.site_file.model import Part
 
 __all__ = [
@@ -78,6 +79,8 @@ class ChainNoise:
         Mean of co- plus cross-polar gain over the sphere.
     parts : tuple of PartNoise
         Part by part, in the order of the chain.
+    antenna : AntennaNoise
+        Where the antenna's own noise comes from.
     """
 
     carrier_hz: float
@@ -91,6 +94,14 @@ class ChainNoise:
     implementation_loss_db: float
     antenna_efficiency: float
     parts: tuple[PartNoise, ...]
+    antenna: AntennaNoise
+
+    @property
+    def surroundings_cost_db(self) -> float:
+        """C/N0 [dB] that the noise of obstacles and leaves costs, against level and open ground."""
+        return float(
+            to_db(self.system_temperature_k / (self.antenna.open_site_k + self.chain_temperature_k))
+        )
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

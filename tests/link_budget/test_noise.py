@@ -10,14 +10,10 @@ from siteassess.antenna.energy import efficiency
 from siteassess.antenna.pattern import GainPattern
 from siteassess.antenna.shapes import by_elevation, hemisphere, isotropic, uniform_cone
 from siteassess.horizon.skyline import Obstacle, Outline, Skyline
+from siteassess.link_budget.antenna_noise import antenna_noise, ring_gain, seen_temperature_k
 from siteassess.link_budget.brightness import sky_brightness_k
-from siteassess.link_budget.noise import (
-    RING_DEG,
-    antenna_temperature_k,
-    chain_noise,
-    open_sky_share,
-    seen_temperature_k,
-)
+from siteassess.link_budget.noise import chain_noise
+from siteassess.link_budget.seen_sky import RING_DEG, seen_sky
 from siteassess.site_file.model import Mount, Part
 
 L1_HZ = 1575.42e6
@@ -57,6 +53,14 @@ def level(elevation_deg: float) -> Skyline:
     return skyline((0.0, 360.0, elevation_deg))
 
 
+def antenna_temperature_k(pattern: GainPattern, mount: Mount, around: Skyline, carrier_hz: float) -> float:
+    return antenna_noise(pattern, mount, around, carrier_hz).temperature_k
+
+
+def open_sky_share(pattern: GainPattern, around: Skyline) -> float:
+    return float((ring_gain(pattern, UPRIGHT, L1_HZ) * seen_sky(around, L1_HZ).open_share).sum())
+
+
 OPEN = level(-90.0)
 PATTERNS = ["isotropic", "hemisphere", "patch", "ground-plane", "choke-ring"]
 
@@ -77,8 +81,9 @@ def lobed(*order: int) -> GainPattern:
 @pytest.mark.parametrize("temperature_k", [3.0, 290.0, 1000.0])
 def test_even_brightness_is_what_the_antenna_delivers(name: str, temperature_k: float) -> None:
     # Law: thermal balance. Sky, ground and antenna at one temperature give that temperature.
-    share = open_sky_share(builtin_pattern(name), UPRIGHT, level(12.0), L1_HZ)
-    seen_k = seen_temperature_k(share, np.full(RING_DEG.size, temperature_k), temperature_k)
+    taken_in = ring_gain(builtin_pattern(name), UPRIGHT, L1_HZ)
+    sky_k = np.full(RING_DEG.size, temperature_k)
+    seen_k = seen_temperature_k(taken_in, seen_sky(level(12.0), L1_HZ), sky_k, temperature_k)
     assert seen_k == pytest.approx(temperature_k, abs=MILLIKELVIN)
 
 
@@ -94,17 +99,17 @@ def test_sky_and_ground_are_weighted_by_what_the_antenna_takes_from_them(
     pattern: GainPattern, sky_share: float
 ) -> None:
     # Closed form: half the sphere is sky for an isotropic antenna, all of what it takes in for a hemisphere.
-    share = open_sky_share(pattern, UPRIGHT, OPEN, L1_HZ)
-    assert share.sum() == pytest.approx(sky_share, abs=1e-6)
-    seen_k = seen_temperature_k(share, np.full(RING_DEG.size, 10.0), 290.0)
+    assert open_sky_share(pattern, OPEN) == pytest.approx(sky_share, abs=1e-6)
+    taken_in, sky_k = ring_gain(pattern, UPRIGHT, L1_HZ), np.full(RING_DEG.size, 10.0)
+    seen_k = seen_temperature_k(taken_in, seen_sky(OPEN, L1_HZ), sky_k, 290.0)
     assert seen_k == pytest.approx(10.0 * sky_share + 290.0 * (1.0 - sky_share), abs=MILLIKELVIN)
 
 
 @pytest.mark.parametrize("horizon_deg", [0.0, 3.3, 10.0, 41.7, 90.0])
 def test_level_horizon_hides_the_sine_of_its_elevation(horizon_deg: float) -> None:
     # Authority: solid angle of a cap, 1 - sin h of the hemisphere (10 degrees: 0.17365 hidden).
-    share = open_sky_share(hemisphere(), UPRIGHT, level(horizon_deg), L1_HZ)
-    assert share.sum() == pytest.approx(1.0 - math.sin(math.radians(horizon_deg)), abs=1e-4)
+    share = open_sky_share(hemisphere(), level(horizon_deg))
+    assert share == pytest.approx(1.0 - math.sin(math.radians(horizon_deg)), abs=1e-4)
 
 
 def test_sky_ring_by_ring_agrees_with_integration() -> None:
