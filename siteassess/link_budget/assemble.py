@@ -1,5 +1,6 @@
 """From skyline, antenna and tracks to the link budget of every sample."""
 
+from dataclasses import replace
 from typing import Literal
 
 import numpy as np
@@ -49,7 +50,7 @@ def link_budget(site: Site, skyline: Skyline, pattern: GainPattern, tracks: SkyT
         Samples above the mask, and one budget a signal.
     """
     samples = sky_samples(skyline, tracks, site.require.elevation_mask_deg, _antenna_height_m(site))
-    signals = [read_signals()[name] for name in site.sky.signals]
+    signals = [_as_tracked(read_signals()[name], site.sky.tracked) for name in site.sky.signals]
     noise_by_carrier = {
         carrier_hz: chain_noise(site.chain, pattern, site.mount, skyline, carrier_hz)
         for carrier_hz in {signal.carrier_hz for signal in signals}
@@ -63,6 +64,13 @@ def link_budget(site: Site, skyline: Skyline, pattern: GainPattern, tracks: SkyT
             for signal in signals
         ),
     )
+
+
+def _as_tracked(signal: Signal, tracked: Literal["pilot", "whole-signal"]) -> Signal:
+    """The signal as the receiver tracks it: the component of the table, or all of it."""
+    if tracked == "pilot":
+        return signal
+    return replace(signal, tracked_component="whole signal", tracked_share_db=0.0)
 
 
 def sky_samples(skyline: Skyline, tracks: SkyTracks, mask_deg: float, height_m: float) -> SkySamples:

@@ -7,7 +7,7 @@ from siteassess.errors import InputError, Mistake
 from siteassess.link_budget.parts import CABLE_CHECK_HZ, PartKind, part_kinds, whole_part
 from siteassess.link_budget.parts_file import read_parts_file
 from siteassess.link_budget.signals import read_signals
-from siteassess.link_budget.supply import preamplifier_index, supply_voltages_v
+from siteassess.link_budget.supply import preamplifier_index, preamplifier_voltage_v
 from siteassess.site_file.chain_checks import not_spanned
 from siteassess.site_file.kind_checks import kind_mistakes
 from siteassess.site_file.model import Part, Requirements, Site
@@ -96,14 +96,16 @@ def _carrier_mistakes(
 
 def _unjudged(require: Requirements, chain: Sequence[Part], file: str) -> Iterator[Mistake]:
     """Limits that are asked and cannot be held against anything: silence would look like a pass."""
-    first = preamplifier_index(chain)
-    voltage_v = None if first is None else supply_voltages_v(chain)[first]
+    voltage_v = preamplifier_voltage_v(chain)
     no_voltage = (
         "the voltage follows from supply_voltage_v behind the preamplifier, supply_current_ma of all parts"
         " with gain and loop_resistance_ohm of all parts between"
     )
     lacking = {
-        "max_cn0_lost_before_preamplifier_db": (first is None, "no part of the chain has gain"),
+        "max_cn0_lost_before_preamplifier_db": (
+            preamplifier_index(chain) is None,
+            "no part of the chain has gain",
+        ),
         "max_cable_loss_db_per_m": (
             not any(part.length_m for part in chain),
             "no part of the chain has length_m",

@@ -4,12 +4,18 @@ from collections.abc import Sequence
 
 from siteassess.site_file.model import Part
 
-__all__ = ["preamplifier_index", "supply_voltages_v"]
+__all__ = ["preamplifier_index", "preamplifier_voltage_v", "supply_voltages_v"]
 
 
 def preamplifier_index(chain: Sequence[Part]) -> int | None:
     """Place of the first part with gain, counted from 0; None where no part has any."""
     return next((index for index, part in enumerate(chain) if part.gain_db is not None), None)
+
+
+def preamplifier_voltage_v(chain: Sequence[Part]) -> float | None:
+    """Voltage [V] at the first part with gain; None where it is not known or no part has gain."""
+    first = preamplifier_index(chain)
+    return None if first is None else supply_voltages_v(chain)[first]
 
 
 def supply_voltages_v(chain: Sequence[Part]) -> tuple[float | None, ...]:

@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from siteassess.report.answers import VERDICTS, answers
+from siteassess.report.chain import chain_section
 from siteassess.report.levels import antenna_section, budget_section, noise_section
 from siteassess.report.outcomes import (
     counts_section,
@@ -61,6 +62,7 @@ def report_content(assessment: Assessment) -> Content:
             counts_section(assessment),
             budget_section(assessment),
             noise_section(assessment),
+            chain_section(assessment),
             antenna_section(assessment),
             _survey_section(assessment),
             Section(key="assumptions", heading="What was assumed", points=assumptions(assessment)),
@@ -101,6 +103,8 @@ def _facts(assessment: Assessment) -> tuple[tuple[str, str], ...]:
 
 def _minimum_cn0(assessment: Assessment) -> str:
     asked = assessment.site.require.min_cn0_dbhz
+    if isinstance(asked, str):
+        return f"{assessment.budget.signals[0].min_cn0_dbhz:g} dB-Hz ({asked})"
     if isinstance(asked, float | int):
         return f"{asked:g} dB-Hz"
     return "; ".join(

@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING
 
 import numpy as np
 
+from siteassess.report.chain import part_name
 from siteassess.report.phrases import decibels, number, percent, plain
 from siteassess.report.pieces import Section, Table
 
@@ -134,7 +135,7 @@ def antenna_section(assessment: Assessment) -> Section:
 
 def _part_row(part: Part) -> tuple[str, ...]:
     return (
-        plain(part.part),
+        part_name(part),
         _by_carrier(part.gain_db),
         _by_carrier(part.loss_db),
         _by_carrier(part.noise_figure_db),

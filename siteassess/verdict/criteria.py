@@ -20,7 +20,7 @@ class Criterion:
     title : str
         What it is about, for the report.
     unit : str
-        "share", "deg" or "m".
+        "share", "deg", "m", "dB", "dB/m" or "V".
     sense : str
         "at least" or "at most".
     advice_limit : float or None

@@ -8,6 +8,7 @@ from siteassess.link_budget.budget import LinkBudget
 from siteassess.site_file.model import Site
 from siteassess.sky_tracks.tracks import SkyTracks
 from siteassess.verdict.causes import obstacle_costs, sector_shares
+from siteassess.verdict.chain_findings import chain_findings
 from siteassess.verdict.counts import usable_counts
 from siteassess.verdict.findings import site_findings, worst_first
 from siteassess.verdict.shares import satellite_shares, signal_shares
@@ -46,7 +47,13 @@ def judge(site: Site, skyline: Skyline, tracks: SkyTracks, budget: LinkBudget) -
     }
     signals = tuple(signal_shares(signal, states[signal.signal.name]) for signal in budget.signals)
     obstacles = obstacle_costs(skyline, sky, budget.samples, weight, states)
-    findings = worst_first(site_findings(site.require, site.mount, sky, signals, obstacles))
+    noises = tuple({signal.noise.carrier_hz: signal.noise for signal in budget.signals}.values())
+    findings = worst_first(
+        (
+            *site_findings(site.require, site.mount, sky, signals, obstacles),
+            *chain_findings(site.require, site.chain, noises, site.antenna.unwanted_level_dbm),
+        )
+    )
     return Verdict(
         outcome=_outcome(findings, sky),
         findings=findings,

@@ -28,7 +28,7 @@ class Finding:
     signal : str or None
         The signal it is about, where it is about one.
     value, limit : float
-        What the site reaches and what is asked, in `unit` ("share", "deg", "m").
+        What the site reaches and what is asked, in `unit` ("share", "deg", "m", "dB", "dB/m", "V").
     required : bool
         False: advice, which never fails a site.
     outcome : str
