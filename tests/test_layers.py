@@ -24,8 +24,9 @@ MAY_IMPORT = {
     "link_budget": BASICS | {"tables", "site_file", "horizon", "antenna", "sky_tracks"},
     "verdict": BASICS | {"tables", "site_file", "horizon", "antenna", "sky_tracks", "link_budget"},
     "assessment": BASICS | RECORDS,
-    "report": BASICS | RECORDS | {"tables", "assessment"},
-    "cli": {"errors", "assessment", "site_file", "report"},
+    "candidates": BASICS | RECORDS | {"assessment"},
+    "report": BASICS | RECORDS | {"tables", "assessment", "candidates"},
+    "cli": {"errors", "assessment", "site_file", "candidates", "report"},
     "__init__": {"errors", "assessment", "site_file"},
     "__main__": {"cli"},
 }
