@@ -5,10 +5,11 @@ from functools import partial
 import numpy as np
 
 from siteassess.errors import gather
+from siteassess.horizon.bearings import north_turn
 from siteassess.horizon.curves import FloatArray
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import Skyline
-from siteassess.horizon.survey import read_survey
+from siteassess.horizon.survey import Survey, read_survey
 from siteassess.site_file.model import Site
 
 __all__ = ["read_skyline"]
@@ -16,22 +17,22 @@ __all__ = ["read_skyline"]
 NARROWEST_GAP_DEG = 1e-9  # narrower ones are rounding
 
 
-def read_skyline(site: Site) -> Skyline:
+def read_skyline(site: Site, *, years: float = 0.0) -> Skyline:
     """Everything that the site's horizon files put between the antenna and the sky.
 
     Parameters
     ----------
     site : Site
         Its files lie beside the site file. Without any, the whole sky is unsurveyed.
+    years : float
+        Time after the surveys for which trees are grown.
 
     Raises
     ------
     InputError
         With the mistakes of all the files.
     """
-    surveys = gather(
-        *(partial(read_survey, site.path.parent / block.file, block, site.mount) for block in site.horizon)
-    )
+    surveys = gather(*(partial(_survey, site, index, years) for index in range(len(site.horizon))))
     obstacles = tuple(obstacle for survey in surveys for obstacle in survey.obstacles)
     return Skyline(
         obstacles=obstacles,
@@ -39,6 +40,19 @@ def read_skyline(site: Site) -> Skyline:
         unsurveyed_deg=_gaps(
             np.concatenate([np.empty((0, 2)), *(survey.surveyed_deg for survey in surveys)])
         ),
+        surveys=tuple(survey.facts for survey in surveys),
+    )
+
+
+def _survey(site: Site, index: int, years: float) -> Survey:
+    source = site.horizon[index]
+    return read_survey(
+        site.path.parent / source.file,
+        source,
+        site.mount,
+        turn=north_turn(site, index),
+        years=years,
+        growth_m_per_year=site.foliage.growth_m_per_year,
     )
 
 

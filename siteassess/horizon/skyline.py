@@ -6,7 +6,7 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
-__all__ = ["GENERAL_SKYLINE", "Obstacle", "Outline", "Skyline"]
+__all__ = ["GENERAL_SKYLINE", "Obstacle", "Outline", "Skyline", "SurveyFacts"]
 
 FloatArray = NDArray[np.float64]
 
@@ -100,6 +100,42 @@ class Outline(_ReadOnlyArrays):
     straight_in_space: NDArray[np.bool_]
 
 
+@dataclass(frozen=True, slots=True, kw_only=True)
+class SurveyFacts:
+    """How one survey became part of the skyline.
+
+    Attributes
+    ----------
+    file : str
+        Name of the survey file.
+    correction_deg : float
+        What was added to its azimuths.
+    uncertainty_deg : float or None
+        One standard deviation of that; None where nothing is known of it.
+    offset_m : float
+        From the antenna's phase centre to the instrument.
+    rows, rows_without_distance : int
+        All its rows, and those that keep their angles wherever the instrument stood.
+    parallax_bound_deg : float or None
+        How far those may be off at most if nothing stands nearer than `parallax_distance_m`; None where there
+        is no bound.
+    parallax_distance_m : float
+        See above.
+    remarks : tuple of str
+        The same for the reader, one sentence each.
+    """
+
+    file: str
+    correction_deg: float
+    uncertainty_deg: float | None
+    offset_m: float
+    rows: int
+    rows_without_distance: int
+    parallax_bound_deg: float | None
+    parallax_distance_m: float
+    remarks: tuple[str, ...]
+
+
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Skyline(_ReadOnlyArrays):
     """Everything that stands between the antenna's phase centre and the sky.
@@ -112,8 +148,11 @@ class Skyline(_ReadOnlyArrays):
         The one solid outline of what stands on the ground.
     unsurveyed_deg : array, shape (gap, 2)
         Azimuth ranges that nobody looked at, 0 <= start < end <= 360, ascending and disjoint.
+    surveys : tuple of SurveyFacts
+        How each survey was used, in the order of the site file.
     """
 
     obstacles: tuple[Obstacle, ...]
     outline: Outline
     unsurveyed_deg: FloatArray
+    surveys: tuple[SurveyFacts, ...] = ()

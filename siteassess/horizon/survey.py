@@ -6,11 +6,14 @@ from pathlib import Path
 import numpy as np
 
 from siteassess.errors import InputError, Mistake
+from siteassess.horizon.bearings import NorthTurn
 from siteassess.horizon.carry import Points, carried, turned_short_way
 from siteassess.horizon.curves import FloatArray, IndexArray
+from siteassess.horizon.growth import grown
+from siteassess.horizon.parallax import NEAREST_OBSTACLE_M, parallax_bound_deg
 from siteassess.horizon.ring import closed_ring, opened_ring
 from siteassess.horizon.silhouette import is_ascending, silhouette
-from siteassess.horizon.skyline import GENERAL_SKYLINE, Obstacle
+from siteassess.horizon.skyline import GENERAL_SKYLINE, Obstacle, SurveyFacts
 from siteassess.horizon.survey_checks import (
     cover_of,
     general_mistakes,
@@ -28,6 +31,7 @@ __all__ = ["Survey", "read_survey"]
 WIDEST_STEP_DEG = 30.0  # rows of the general skyline further apart leave the sky between them unsurveyed
 NEAREST_M = 0.001  # a point nearer to the antenna's vertical axis has no azimuth
 HALF_TURN_TOLERANCE_DEG = 1e-6
+NORTH_AS_READ = NorthTurn()
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -40,13 +44,32 @@ class Survey:
         As seen from the antenna, in the order of the file.
     surveyed_deg : array, shape (stretch, 2)
         Azimuths from and to of what was looked at: from <= to; any turn of the circle, any order, overlaps.
+    facts : SurveyFacts
+        How it was used.
     """
 
     obstacles: tuple[Obstacle, ...]
     surveyed_deg: FloatArray
+    facts: SurveyFacts
 
 
-def read_survey(path: Path, source: HorizonSource, mount: Mount) -> Survey:
+@dataclass(frozen=True, slots=True, kw_only=True)
+class _Instrument:
+    """Where the instrument stood from the antenna's phase centre, and what its azimuths lack."""
+
+    offset_m: tuple[float, float, float]
+    turn_deg: float
+
+
+def read_survey(
+    path: Path,
+    source: HorizonSource,
+    mount: Mount,
+    *,
+    turn: NorthTurn = NORTH_AS_READ,
+    years: float = 0.0,
+    growth_m_per_year: float = 0.0,
+) -> Survey:
     """A survey file, carried from the instrument to the antenna's phase centre.
 
     Parameters
@@ -57,6 +80,10 @@ def read_survey(path: Path, source: HorizonSource, mount: Mount) -> Survey:
         Where the instrument stood, and whether the crew looked at every azimuth.
     mount : Mount
         Where the antenna stands.
+    turn : NorthTurn
+        What brings its azimuths to true north.
+    years, growth_m_per_year : float
+        Age of the survey for which it is read, and the growth of trees that do not say it themselves.
 
     Raises
     ------
@@ -75,35 +102,64 @@ def read_survey(path: Path, source: HorizonSource, mount: Mount) -> Survey:
         raise InputError(*listed_mistakes(mistakes, rows.file))
     up_m = mount.phase_centre_height_m if source.instrument_up_m is None else source.instrument_up_m
     offset_m = (source.instrument_east_m, source.instrument_north_m, up_m - mount.phase_centre_height_m)
+    instrument = _Instrument(offset_m=offset_m, turn_deg=turn.correction_deg)
+    facts = _facts(rows, offset_m, turn)
+    if years > 0.0:
+        rows = grown(rows, years, growth_m_per_year)
     obstacles: list[Obstacle] = []
     surveyed_deg = np.array([[0.0, 360.0]]) if source.complete else np.empty((0, 2))
     for label in labels:
         try:
             if label is None:
-                general, looked_at_deg = _general(rows, members[None], offset_m, complete=source.complete)
+                general, looked_at_deg = _general(rows, members[None], instrument, complete=source.complete)
                 surveyed_deg = np.concatenate([surveyed_deg, looked_at_deg])
                 obstacles += general
             else:
-                obstacles.append(_named(rows, members[label], offset_m))
+                obstacles.append(_named(rows, members[label], instrument))
         except InputError as error:
             mistakes += error.mistakes
     if mistakes:
         raise InputError(*listed_mistakes(mistakes, rows.file))
-    return Survey(obstacles=tuple(obstacles), surveyed_deg=surveyed_deg)
+    return Survey(obstacles=tuple(obstacles), surveyed_deg=surveyed_deg, facts=facts)
 
 
-def _points(rows: Rows, which: IndexArray, offset_m: tuple[float, float, float]) -> Points:
+def _facts(rows: Rows, offset_m: tuple[float, float, float], turn: NorthTurn) -> SurveyFacts:
+    without_distance = int(np.isnan(rows.slant_m).sum())
+    away_m, bound_deg = float(np.linalg.norm(offset_m)), parallax_bound_deg(offset_m)
+    remarks = list(turn.remarks)
+    if away_m > 0.0 and without_distance:
+        largest = f"by at most {bound_deg:.2f}°" if bound_deg is not None else "by any angle"
+        remarks.append(
+            f"The instrument stood {away_m:.2f} m from the antenna's phase centre. {without_distance} of "
+            f"{len(rows.line)} rows carry no distance and keep their angles: for obstacles at least "
+            f"{NEAREST_OBSTACLE_M:g} m away they are off {largest}."
+        )
+    return SurveyFacts(
+        file=rows.file,
+        correction_deg=turn.correction_deg,
+        uncertainty_deg=turn.uncertainty_deg,
+        offset_m=away_m,
+        rows=len(rows.line),
+        rows_without_distance=without_distance,
+        parallax_bound_deg=bound_deg if without_distance else 0.0,
+        parallax_distance_m=NEAREST_OBSTACLE_M,
+        remarks=tuple(remarks),
+    )
+
+
+def _points(rows: Rows, which: IndexArray, instrument: _Instrument) -> Points:
     """The rows as points, seen from the antenna."""
     given_deg = rows.numbers["azimuth_deg"][which]
+    turns = np.append(0, np.cumsum(given_deg[1:] < given_deg[:-1]))
     points = carried(
         Points(
-            azimuth_deg=given_deg + 360.0 * np.append(0, np.cumsum(given_deg[1:] < given_deg[:-1])),
+            azimuth_deg=given_deg + 360.0 * turns + instrument.turn_deg,
             elevation_deg=rows.numbers["elevation_deg"][which],
             underside_deg=rows.numbers["underside_deg"][which],
             distance_m=rows.slant_m[which],
             depth_m=rows.numbers["depth_m"][which],
         ),
-        offset_m,
+        instrument.offset_m,
     )
     near = points.horizontal_m < NEAREST_M
     if near.any():
@@ -118,11 +174,12 @@ def _misplaced(rows: Rows, where: str, problem: str, remedy: str = "") -> Mistak
 
 
 def _general(
-    rows: Rows, which: IndexArray, offset_m: tuple[float, float, float], *, complete: bool
+    rows: Rows, which: IndexArray, instrument: _Instrument, *, complete: bool
 ) -> tuple[list[Obstacle], FloatArray]:
     """The general skyline, if it forms an edge anywhere, and the azimuths that it covers."""
     if len(which) == 1:  # level all round: only the height of the instrument matters
-        points = _points(rows, np.repeat(which, 2), (0.0, 0.0, offset_m[2]))
+        above = replace(instrument, offset_m=(0.0, 0.0, instrument.offset_m[2]))
+        points = _points(rows, np.repeat(which, 2), above)
         points = replace(points, azimuth_deg=np.array([0.0, 360.0]))
         return [_obstacle(rows, which, points)], points.azimuth_deg[None, :]
     given_deg = rows.numbers["azimuth_deg"][which]
@@ -130,8 +187,8 @@ def _general(
     gap = (step_deg > WIDEST_STEP_DEG) & (not complete)
     if gap.all():
         return [], np.empty((0, 2))
-    points = _points(rows, which, offset_m)
-    behind = np.abs(points.azimuth_deg - given_deg) >= 90.0
+    points = _points(rows, which, instrument)
+    behind = np.abs(points.azimuth_deg - given_deg - instrument.turn_deg) >= 90.0
     if behind.any():
         problem, remedy = "lies between the instrument and the antenna", "give it an obstacle label, or "
         places = [f"line {line}" for line in rows.line[which[behind]].tolist()]
@@ -145,9 +202,9 @@ def _general(
     return [_obstacle(rows, which, points)], np.sort(ends_deg[:, ~gap].T, axis=1)
 
 
-def _named(rows: Rows, which: IndexArray, offset_m: tuple[float, float, float]) -> Obstacle:
+def _named(rows: Rows, which: IndexArray, instrument: _Instrument) -> Obstacle:
     """One named obstacle."""
-    points = _points(rows, which, offset_m)
+    points = _points(rows, which, instrument)
     if len(which) == 1:
         return _pole(rows, which, points)
     straight_in_space = not np.isnan(points.distance_m).any()

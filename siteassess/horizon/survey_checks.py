@@ -79,9 +79,12 @@ def _foliage_mistakes(rows: Rows, which: IndexArray) -> Iterator[Mistake]:
             yield cell_mistake(
                 rows, row, "depth_m", "foliage needs the length of the path through its leaves"
             )
+        given = ~np.isnan(rows.numbers["growth_m_per_year"][which])
+        for row in which[given & np.isnan(rows.slant_m[which])].tolist():
+            yield cell_mistake(rows, row, "growth_m_per_year", "it needs a distance in the same row")
         return
     for row in which.tolist():
-        for column in ("leaf", "depth_m"):
+        for column in ("leaf", "depth_m", "growth_m_per_year"):
             value = rows.texts["leaf"][row] if column == "leaf" else rows.numbers[column][row]
             if value is not None and value == value:
                 yield cell_mistake(rows, row, column, "it may stand only where cover is foliage")

@@ -27,9 +27,15 @@ NUMBERS = (
     "depth_m",
     "underside_deg",
     "width_m",
+    "growth_m_per_year",
 )
 TEXTS = ("obstacle", "cover", "leaf")
-RANGES_DEG = {"azimuth_deg": (0.0, 360.0), "elevation_deg": (-5.0, 90.0), "underside_deg": (-90.0, 90.0)}
+RANGES = {
+    "azimuth_deg": (0.0, 360.0),
+    "elevation_deg": (-5.0, 90.0),
+    "underside_deg": (-90.0, 90.0),
+    "growth_m_per_year": (0.0, 5.0),
+}
 POSITIVE = ("distance_m", "slant_distance_m", "depth_m", "width_m")
 
 
@@ -117,7 +123,7 @@ def _range_mistakes(rows: Rows) -> Iterator[Mistake]:
         if column in POSITIVE:
             wrong, allowed = values <= 0.0, "it must be above 0"
         else:
-            low, high = RANGES_DEG[column]
+            low, high = RANGES[column]
             wrong = (values < low) | (values > high)
             allowed = f"it must lie from {low:g} to {high:g}"
         for row in np.flatnonzero(wrong).tolist():
@@ -164,7 +170,7 @@ def _row_mistakes(rows: Rows) -> Iterator[Mistake]:
 
 def _needless_cells(rows: Rows) -> Iterator[Mistake]:
     """Cells that say something that only a labelled row can say."""
-    for column in ("underside_deg", "width_m", "depth_m"):
+    for column in ("underside_deg", "width_m", "depth_m", "growth_m_per_year"):
         given = ~np.isnan(rows.numbers[column]) & ~rows.labelled
         for row in np.flatnonzero(given).tolist():
             yield cell_mistake(rows, row, column, "a row that gives it must name its obstacle")

@@ -164,11 +164,9 @@ def _horizon_mistakes(horizon: tuple[HorizonSource | None, ...], file: str) -> I
         if source.file in files:
             yield _given(file, ("horizon", index, "file"), source.file, "it stands there twice; keep one")
         files.append(source.file)
-        for key, supported in (("source", "survey"), ("bearings", "true-north")):
-            value = getattr(source, key)
-            if value != supported:
-                allowed = f"this version supports {shown(supported)} only"
-                yield _given(file, ("horizon", index, key), value, allowed)
+        if source.source != "survey":
+            allowed = f"this version supports {shown('survey')} only"
+            yield _given(file, ("horizon", index, "source"), source.source, allowed)
 
 
 def _require_mistakes(require: Requirements, signals: tuple[str, ...], file: str) -> Iterator[Mistake]:

@@ -35,6 +35,10 @@ def legible_site(raw: Mapping[str, Any], path: Path) -> Site:
         # Where the antenna stands is not known; seen from the instrument, no reading is misplaced.
         mount = Mount(mast_height_m=0.0)
         surveys = {file: _at_the_antenna(source) for file, source in surveys.items()}
+    # Where north is may be among what is refused; a reading counts as misplaced only where it is known.
+    surveys = {
+        file: _at_the_antenna(source) if _is_turned(source) else source for file, source in surveys.items()
+    }
     tables: dict[str, Any] = {
         "mount": mount,
         "antenna": antenna if antenna is not None and antenna.is_file else NO_FILE,
@@ -47,9 +51,20 @@ def legible_site(raw: Mapping[str, Any], path: Path) -> Site:
     return site
 
 
+def _is_turned(source: HorizonSource) -> bool:
+    return source.bearings != "true-north" or source.landmark_reading_deg is not None
+
+
 def _at_the_antenna(source: HorizonSource) -> HorizonSource:
+    """A survey without what places and turns it."""
     return source.model_copy(
-        update={"instrument_east_m": 0.0, "instrument_north_m": 0.0, "instrument_up_m": None}
+        update={
+            "bearings": "true-north",
+            "landmark_reading_deg": None,
+            "instrument_east_m": 0.0,
+            "instrument_north_m": 0.0,
+            "instrument_up_m": None,
+        }
     )
 
 

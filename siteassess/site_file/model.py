@@ -17,6 +17,7 @@ from siteassess.tables import packaged_rows
 __all__ = [
     "AntennaChoice",
     "ByCarrier",
+    "Foliage",
     "HorizonSource",
     "Mount",
     "Part",
@@ -45,10 +46,13 @@ def _whole_number(value: object) -> object:
 
 
 Azimuth = Annotated[float, Field(ge=0, le=360)]
+Latitude = Annotated[float, Field(ge=-90, le=90)]
+Longitude = Annotated[float, Field(ge=-180, le=360)]
 Height = Annotated[float, Field(ge=0)]
 Offset = Annotated[float, Field(ge=-1000, le=1000)]
 AngleError = Annotated[float, Field(ge=0, le=45)]
 Share = Annotated[float, Field(ge=0, le=1)]
+Growth = Annotated[float, Field(ge=0, le=5)]
 Temperature = Annotated[float, Field(ge=0, le=1000)]
 Cn0 = Annotated[float, Field(ge=0, le=70)]
 Decibels = Annotated[float, Field(ge=0, le=100)]
@@ -56,6 +60,8 @@ Voltage = Annotated[float, Field(ge=0, le=60)]
 # Control characters would break a report's line; a Windows path in a basic string of TOML brings them in.
 Text = Annotated[str, Field(min_length=1, max_length=200, pattern=r"^[^\u0000-\u001f\u007f]*$")]
 FilePath = Annotated[str, Field(min_length=1, max_length=4000, pattern=r"^[^\u0000-\u001f\u007f]*$")]
+# Authority and code; a system of heights may be joined to one of places.
+SystemCode = Annotated[str, Field(pattern=r"^[A-Za-z]+:[0-9A-Za-z_.]+(\+([A-Za-z]+:)?[0-9A-Za-z_.]+)?$")]
 # One number, or a table from the carrier in MHz, as text, to the number at that carrier.
 ByCarrier = float | dict[str, float]
 DecibelsByCarrier = Annotated[
@@ -85,26 +91,32 @@ class Record(BaseModel):
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Position:
-    """Where the survey mark is, WGS 84; the height is above the ellipsoid."""
+    """Where the survey mark is, WGS 84; the height is above the ellipsoid where `above` says so.
+
+    `remarks` tell how a height above sea level was used.
+    """
 
     latitude_deg: float
     longitude_deg: float
     height_m: float
+    above: Literal["ellipsoid", "sea level"] = "ellipsoid"
+    remarks: tuple[str, ...] = ()
 
 
 class Place(Record):
     """Table `[site]`: what and where the spot is."""
 
     name: Text = Field(description="Name of the spot, as the report prints it.")
-    latitude_deg: Annotated[float, Field(ge=-90, le=90)] | None = Field(
-        default=None, description="Latitude of the survey mark, WGS 84, north positive [deg]."
+    latitude_deg: Latitude | None = Field(
+        default=None, description="Latitude of the survey mark, WGS 84 or in crs, north positive [deg]."
     )
-    longitude_deg: Annotated[float, Field(ge=-180, le=360)] | None = Field(
-        default=None, description="Longitude of the survey mark, WGS 84, east positive [deg]."
+    longitude_deg: Longitude | None = Field(
+        default=None, description="Longitude of the survey mark, WGS 84 or in crs, east positive [deg]."
     )
-    crs: Annotated[str, Field(pattern=r"^[A-Za-z]+:[0-9A-Za-z_.]+$")] | None = Field(
+    crs: SystemCode | None = Field(
         default=None,
-        description="Projected reference system of easting_m and northing_m, such as EPSG:27700.",
+        description="Reference system of easting_m and northing_m, or of latitude_deg and longitude_deg, "
+        "such as EPSG:27700; with heights in it such as EPSG:27700+5701.",
     )
     easting_m: float | None = Field(default=None, description="Easting of the survey mark in crs [m].")
     northing_m: float | None = Field(default=None, description="Northing of the survey mark in crs [m].")
@@ -113,13 +125,13 @@ class Place(Record):
     )
     height_system: Literal["ellipsoidal", "orthometric"] | None = Field(
         default=None,
-        description="What height_m is above: the WGS 84 ellipsoid, or sea level. Required with crs; "
-        "without it, ellipsoidal.",
+        description="What height_m is above: the WGS 84 ellipsoid, or sea level. Required with a crs that "
+        "has no heights in it; without crs, ellipsoidal.",
     )
     geoid_height_m: Annotated[float, Field(ge=-150, le=150)] | None = Field(
         default=None,
         description="Height of the geoid above the ellipsoid, added to an orthometric height_m [m]. "
-        "Without it the orthometric height is used as it is.",
+        "Without it, from the grids that PROJ has installed.",
     )
     surveyed_by: Text | None = Field(default=None, description="Who surveyed the spot, for the report.")
 
@@ -268,8 +280,30 @@ class HorizonSource(Record):
     surveyed_on: date | None = Field(default=None, description="Day of the survey, such as 2026-10-04.")
     bearings: Literal["true-north", "magnetic-north", "grid-north"] = Field(
         default="true-north",
-        description="What the azimuths of the file are counted from. This version reads true-north; the "
-        "others are reserved.",
+        description="What the azimuths of the file are counted from. A landmark goes before it.",
+    )
+    landmark: Text | None = Field(
+        default=None, description="Name of the landmark that was sighted, for the report."
+    )
+    landmark_reading_deg: Azimuth | None = Field(
+        default=None,
+        description="Azimuth that the instrument showed toward a landmark of known direction [deg]; it turns "
+        "the whole survey.",
+    )
+    landmark_bearing_deg: Azimuth | None = Field(
+        default=None, description="Azimuth of the landmark from the instrument, from true north [deg]."
+    )
+    landmark_latitude_deg: Latitude | None = Field(
+        default=None, description="Latitude of the landmark, WGS 84 [deg]; in place of its bearing."
+    )
+    landmark_longitude_deg: Longitude | None = Field(
+        default=None, description="Longitude of the landmark, WGS 84 [deg]."
+    )
+    landmark_easting_m: float | None = Field(
+        default=None, description="Easting of the landmark in the site's crs [m]; in place of its bearing."
+    )
+    landmark_northing_m: float | None = Field(
+        default=None, description="Northing of the landmark in the site's crs [m]."
     )
     complete: bool = Field(
         default=False,
@@ -291,6 +325,19 @@ class HorizonSource(Record):
     instrument_up_m: Offset | None = Field(
         default=None,
         description="Height of the instrument's eye above the survey mark [m]; absent: at the phase centre.",
+    )
+
+
+class Foliage(Record):
+    """Table `[foliage]`: what leaves cost, and how fast trees grow."""
+
+    model: Literal["P.833 slant path", "P.833 woodland", "Weissberger"] = Field(
+        default="P.833 slant path", description="Model of the loss through leaves."
+    )
+    growth_m_per_year: Growth = Field(
+        default=0.0,
+        description="How fast trees grow whose rows do not say it themselves [m/year]; used with "
+        "require.good_for_years.",
     )
 
 
@@ -343,6 +390,10 @@ class Requirements(Record):
     count_weakened: bool = Field(
         default=False,
         description="Whether signals weakened by leaves or round a solid edge count as usable.",
+    )
+    good_for_years: Annotated[float, Field(gt=0, le=50)] | None = Field(
+        default=None,
+        description="For how many years the usable share must stay good while trees grow; none when absent.",
     )
     max_blocked_sky_share: Share | None = Field(
         default=None, description="Largest hidden sky above the mask, as a share of the hemisphere [share]."
@@ -404,6 +455,7 @@ class Site(Record):
     chain: tuple[Part, ...] = Field(min_length=1)
     parts: PartsChoice | None = None
     horizon: tuple[HorizonSource, ...] = ()
+    foliage: Foliage = Foliage()
     sky: SkyModel = SkyModel()
     require: Requirements
 

@@ -1,23 +1,26 @@
 """Where the survey mark is, from whichever way the site file says it."""
 
-import math
 from typing import TYPE_CHECKING
 
 from siteassess.errors import InputError, Mistake
 from siteassess.site_file.model import Place, Position
+from siteassess.site_file.reference_system import (
+    area_words,
+    horizontal_part,
+    known_system,
+    place_in,
+    sea_level,
+)
 from siteassess.wording import listed, shown
 
 if TYPE_CHECKING:
-    from pyproj import CRS, Transformer
+    from pyproj import CRS
 
-__all__ = ["survey_mark"]
+__all__ = ["counted_longitude_deg", "survey_mark"]
 
 GEOGRAPHIC = ("latitude_deg", "longitude_deg")
-PROJECTED = ("crs", "easting_m", "northing_m")
+PROJECTED = ("easting_m", "northing_m")
 EITHER = "it must hold latitude_deg and longitude_deg, or crs, easting_m and northing_m"
-# Bounds of reference systems are published to about 0.01 degrees.
-BOUNDS_MARGIN_DEG = 0.02
-FOLD_M = 10.0
 
 
 def survey_mark(place: Place, file: str) -> Position:
@@ -33,25 +36,32 @@ def survey_mark(place: Place, file: str) -> Position:
     Returns
     -------
     Position
-        Longitude from -180 to 180; ellipsoidal height where the file gives what it takes (an orthometric
-        height without its geoid height stands as it is).
+        Longitude from -180 to 180; the height is above the ellipsoid where the file, or the grids that are
+        installed, give what it takes.
 
     Raises
     ------
     InputError
         If the position is missing, given twice, incomplete or outside the area of its reference system.
     """
-    mistakes = [*_way_mistakes(place, file), *_height_mistakes(place, file)]
+    mistakes = _way_mistakes(place, file)
+    system = None
+    if place.crs is not None and not mistakes:
+        system = known_system(place.crs, file)
+        mistakes += _kind_mistakes(place, system, file)
+    mistakes += _height_mistakes(place, system, file)
     if mistakes:
         raise InputError(*mistakes)
-    latitude_deg, longitude_deg = place.latitude_deg, place.longitude_deg
-    if latitude_deg is None or longitude_deg is None:
-        latitude_deg, longitude_deg = _unprojected(place, file)
-    return Position(
-        latitude_deg=latitude_deg,
-        longitude_deg=longitude_deg - 360.0 if longitude_deg > 180.0 else longitude_deg,
-        height_m=place.height_m + (place.geoid_height_m or 0.0),
-    )
+    latitude_deg, longitude_deg = _latitude_and_longitude(place, system, file)
+    longitude_deg = counted_longitude_deg(longitude_deg)
+    if not _is_above_sea_level(place, system):
+        return Position(latitude_deg=latitude_deg, longitude_deg=longitude_deg, height_m=place.height_m)
+    return _above_sea_level(place, system, latitude_deg, longitude_deg)
+
+
+def counted_longitude_deg(longitude_deg: float) -> float:
+    """A longitude from -180 to 360, counted from -180 to 180."""
+    return longitude_deg - 360.0 if longitude_deg > 180.0 else longitude_deg
 
 
 def _way_mistakes(place: Place, file: str) -> list[Mistake]:
@@ -60,9 +70,11 @@ def _way_mistakes(place: Place, file: str) -> list[Mistake]:
     if geographic and projected:
         problem = f"gives its position twice, by {listed(geographic)} and by {listed(projected)}"
         return [Mistake(file=file, where="site", problem=problem, allowed=EITHER)]
-    if not geographic and not projected:
+    system = ["crs"] if place.crs is not None else []
+    given = system + geographic + projected
+    if not given:
         return [Mistake(file=file, where="site", problem="has no position", allowed=EITHER)]
-    given, way = (geographic, GEOGRAPHIC) if geographic else (projected, PROJECTED)
+    way = GEOGRAPHIC if geographic else ("crs", *PROJECTED)
     return [
         Mistake(file=file, where=f"site.{key}", problem="is missing", allowed=f"it goes with {listed(given)}")
         for key in way
@@ -70,97 +82,109 @@ def _way_mistakes(place: Place, file: str) -> list[Mistake]:
     ]
 
 
-def _height_mistakes(place: Place, file: str) -> list[Mistake]:
-    if place.height_system is None and place.crs is not None:
+def _kind_mistakes(place: Place, system: "CRS", file: str) -> list[Mistake]:
+    """Whether the system counts what the keys give."""
+    is_projected = horizontal_part(system).is_projected
+    if is_projected == (place.easting_m is not None):
+        return []
+    kind, keys = ("projected", PROJECTED) if is_projected else ("geographic", GEOGRAPHIC)
+    allowed = f"it is a {kind} system, which goes with {listed(keys)}"
+    return [
+        Mistake(
+            file=file, where="site.crs", problem=f"is {shown(place.crs)}", allowed=allowed, value=place.crs
+        )
+    ]
+
+
+def _height_mistakes(place: Place, system: "CRS | None", file: str) -> list[Mistake]:
+    stated = _stated_height_system(system)
+    if place.crs is not None and system is None:
+        return []  # what the system says of heights is not known
+    if place.height_system is None and system is not None and stated is None:
         allowed = 'with crs it must be "ellipsoidal" or "orthometric"'
         return [Mistake(file=file, where="site.height_system", problem="is missing", allowed=allowed)]
-    if place.geoid_height_m is not None and place.height_system != "orthometric":
-        return [
-            Mistake(
-                file=file,
-                where="site.geoid_height_m",
-                problem=f"is {shown(place.geoid_height_m)}",
-                allowed='it goes with height_system = "orthometric" only',
-                value=place.geoid_height_m,
-            )
-        ]
+    if stated is not None and place.height_system not in (None, stated):
+        allowed = f"the heights of {place.crs} are {stated}"
+        return [_given(file, "height_system", place.height_system, allowed)]
+    if place.geoid_height_m is not None and not _is_above_sea_level(place, system):
+        allowed = 'it goes with height_system = "orthometric" only'
+        return [_given(file, "geoid_height_m", place.geoid_height_m, allowed)]
     return []
 
 
-def _unprojected(place: Place, file: str) -> tuple[float, float]:
-    """Latitude and longitude [deg] of a projected position."""
-    assert place.easting_m is not None and place.northing_m is not None
-    system, to_wgs84 = _projected_system(place, file)
-    found_deg = _place_in_area(system, to_wgs84, place.easting_m, place.northing_m)
+def _stated_height_system(system: "CRS | None") -> str | None:
+    """What a system itself says of its heights, if it has any."""
+    if system is None or len(system.axis_info) < 3:
+        return None
+    return "orthometric" if system.is_compound else "ellipsoidal"
+
+
+def _is_above_sea_level(place: Place, system: "CRS | None") -> bool:
+    return "orthometric" in (place.height_system, _stated_height_system(system))
+
+
+def _latitude_and_longitude(place: Place, system: "CRS | None", file: str) -> tuple[float, float]:
+    if system is None:
+        assert place.latitude_deg is not None and place.longitude_deg is not None
+        return place.latitude_deg, place.longitude_deg
+    keys = PROJECTED if horizontal_part(system).is_projected else GEOGRAPHIC[::-1]
+    east, north = (float(getattr(place, key)) for key in keys)
+    found_deg = place_in(system, east, north, file)
     if found_deg is not None:
         return found_deg
-    swapped = _place_in_area(system, to_wgs84, place.northing_m, place.easting_m) is not None
+    swapped = -90.0 <= east <= 90.0 or keys == PROJECTED
+    swapped = swapped and place_in(system, north, east, file) is not None
+    shown_keys = keys if keys == PROJECTED else GEOGRAPHIC
+    values = tuple(float(getattr(place, key)) for key in shown_keys)
     raise InputError(
         Mistake(
             file=file,
-            where="site.easting_m and northing_m",
-            problem=f"are {shown(place.easting_m)} and {shown(place.northing_m)}",
+            where=f"site.{shown_keys[0]} and {shown_keys[1]}",
+            problem=f"are {shown(values[0])} and {shown(values[1])}",
             allowed="they lie in the area of the crs when swapped"
             if swapped
-            else _area_words(system, place.crs),
-            value=(place.easting_m, place.northing_m),
+            else area_words(system, str(place.crs)),
+            value=values,
         )
     )
 
 
-def _projected_system(place: Place, file: str) -> tuple["CRS", "Transformer"]:
-    from pyproj import CRS, Transformer
-    from pyproj.exceptions import CRSError, ProjError
-
-    def refusal(allowed: str) -> InputError:
-        problem = f"is {shown(place.crs)}"
-        return InputError(
-            Mistake(file=file, where="site.crs", problem=problem, allowed=allowed, value=place.crs)
+def _above_sea_level(
+    place: Place, system: "CRS | None", latitude_deg: float, longitude_deg: float
+) -> Position:
+    """A height above sea level, turned into one above the ellipsoid where the geoid is known."""
+    if place.geoid_height_m is not None:
+        return Position(
+            latitude_deg=latitude_deg,
+            longitude_deg=longitude_deg,
+            height_m=place.height_m + place.geoid_height_m,
         )
-
-    try:
-        system = CRS.from_user_input(place.crs)
-    except CRSError as error:
-        raise refusal("it must be a known reference system, such as EPSG:27700") from error
-    if not system.is_projected:
-        raise refusal("it must be a projected system; or give latitude_deg and longitude_deg instead of it")
-    if {axis.direction for axis in system.axis_info[:2]} != {"east", "north"}:
-        raise refusal(
-            "its axes must point east and north; or give latitude_deg and longitude_deg instead of it"
+    own = system if _stated_height_system(system) == "orthometric" else None
+    sea = sea_level(own, latitude_deg, longitude_deg, place.height_m)
+    if sea.geoid_height_m is not None:
+        remark = (
+            f"Sea level ({sea.surface}) was taken {sea.geoid_height_m:.2f} m above the ellipsoid, "
+            "from a grid that is installed."
         )
-    try:
-        # always_xy: easting before northing, longitude before latitude, whatever the system's own order.
-        return system, Transformer.from_crs(system, "EPSG:4326", always_xy=True)
-    except ProjError as error:
-        raise refusal(
-            "no way to WGS 84 is known; give latitude_deg and longitude_deg instead of it"
-        ) from error
-
-
-def _place_in_area(
-    system: "CRS", to_wgs84: "Transformer", easting_m: float, northing_m: float
-) -> tuple[float, float] | None:
-    """Latitude and longitude [deg], or None where the system does not reach."""
-    metre = 1.0 / system.axis_info[0].unit_conversion_factor  # some systems count in feet
-    easting, northing = easting_m * metre, northing_m * metre
-    longitude_deg, latitude_deg = to_wgs84.transform(easting, northing)
-    # Far outside its area a projection folds over: the way back then ends elsewhere.
-    back = to_wgs84.transform(longitude_deg, latitude_deg, direction="INVERSE")
-    if not math.dist(back, (easting, northing)) <= FOLD_M * metre:
-        return None
-    area = system.area_of_use
-    assert area is not None  # every projected system of the registry has one
-    width_deg = (area.east - area.west) % 360.0 or 360.0
-    east_of_edge_deg = (longitude_deg - area.west + BOUNDS_MARGIN_DEG) % 360.0
-    inside = (
-        area.south - BOUNDS_MARGIN_DEG <= latitude_deg <= area.north + BOUNDS_MARGIN_DEG
-        and east_of_edge_deg <= width_deg + 2.0 * BOUNDS_MARGIN_DEG
+        return Position(
+            latitude_deg=latitude_deg,
+            longitude_deg=longitude_deg,
+            height_m=place.height_m + sea.geoid_height_m,
+            remarks=(remark,),
+        )
+    why = f"the grid {sea.missing_grid} is not installed" if sea.missing_grid else "no grid covers the place"
+    remark = (
+        f"The height above sea level ({sea.surface}) was used as if it were above the ellipsoid: {why}. "
+        "The two lie less than 110 m apart."
     )
-    return (latitude_deg, longitude_deg) if inside else None
+    return Position(
+        latitude_deg=latitude_deg,
+        longitude_deg=longitude_deg,
+        height_m=place.height_m,
+        above="sea level",
+        remarks=(remark,),
+    )
 
 
-def _area_words(system: "CRS", crs: str | None) -> str:
-    area = system.area_of_use
-    assert area is not None
-    latitudes = f"latitude {area.south:g} to {area.north:g}"
-    return f"the area of {crs} is {latitudes} and longitude {area.west:g} to {area.east:g}"
+def _given(file: str, key: str, value: object, allowed: str) -> Mistake:
+    return Mistake(file=file, where=f"site.{key}", problem=f"is {shown(value)}", allowed=allowed, value=value)

@@ -10,6 +10,7 @@ from typing import Any
 from pydantic import ValidationError
 
 from siteassess.errors import InputError, Mistake
+from siteassess.site_file.bearing_checks import bearing_mistakes
 from siteassess.site_file.checks import Sections, cross_mistakes, signals_of, systems_of
 from siteassess.site_file.legible import legible_site
 from siteassess.site_file.model import Place, Position, Site, SkyModel
@@ -65,6 +66,7 @@ def read_site(path: str | os.PathLike[str]) -> Site:
     sections = Sections.of(raw)
     position, mistakes = _surveyed(sections.place, file)
     mistakes += cross_mistakes(sections, file)
+    mistakes += bearing_mistakes(sections.horizon, sections.place, position, file)
     try:
         site = Site.model_validate(raw)
     except ValidationError as error:
