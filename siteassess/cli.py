@@ -133,6 +133,41 @@ def assess(
         ctx.exit(3)
 
 
+@main.command()
+@click.argument("pattern", metavar="PATTERN")
+@click.option(
+    "--out", type=click.Path(path_type=Path, dir_okay=False), metavar="FILE.svg",
+    help="Draw the polar cut into this file.",
+)  # fmt: skip
+@click.option("--json", "as_json", is_flag=True, help="Print the figures as JSON.")
+def antenna(pattern: str, out: Path | None, as_json: bool) -> None:
+    """Print the figures of PATTERN, a built-in antenna pattern or a CSV file.
+
+    Directivity, efficiency, beam width, front-to-back ratio, effective area, gain and axial ratio at four
+    elevations, one column a carrier.
+
+    \b
+    Example:
+      siteassess antenna choke-ring
+      siteassess antenna my_antenna.csv --out my_antenna.svg
+    """
+    if out is not None and out.suffix.lower() != ".svg":
+        raise click.BadParameter("the drawing is an SVG: its name must end in .svg", param_hint="--out")
+    from siteassess.antenna.read import named_pattern
+    from siteassess.report.antenna_table import antenna_json, antenna_lines
+
+    gain = named_pattern(pattern)
+    if out is not None:
+        from siteassess.report.antenna_plot import antenna_svg, write_svg
+
+        write_svg(out, antenna_svg(gain))
+    if as_json:
+        click.echo(antenna_json(gain).encode(), nl=False)
+    else:
+        for line in antenna_lines(gain):
+            click.echo(line)
+
+
 def _tell(text: str, indent: str = "") -> None:
     """A line on standard error; names of files cannot steer the terminal."""
     from siteassess.report.phrases import plain
