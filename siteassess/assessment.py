@@ -72,13 +72,16 @@ def assess(site: Site) -> Assessment:
     orbits = nominal_orbits(site.sky.systems, site.sky.start)
     tracks = sky_tracks(orbits, site.position, days=site.sky.days, step_s=site.sky.step_s)
     budget = link_budget(site, skyline, pattern, tracks)
+    later, years = None, site.require.good_for_years
+    if years is not None:
+        later = link_budget(site, read_skyline(site, years=years), pattern, tracks)
     return Assessment(
         site=site,
         skyline=skyline,
         pattern=pattern,
         tracks=tracks,
         budget=budget,
-        verdict=judge(site, skyline, tracks, budget),
+        verdict=judge(site, skyline, tracks, budget, later),
     )
 
 

@@ -1,5 +1,6 @@
 """The skyline of a site, from all the files that its site file names."""
 
+from dataclasses import replace
 from functools import partial
 
 import numpy as np
@@ -8,6 +9,7 @@ from siteassess.errors import gather
 from siteassess.horizon.bearings import north_turn
 from siteassess.horizon.curves import FloatArray
 from siteassess.horizon.outline import upper_envelope
+from siteassess.horizon.outlines import Outlines, read_outlines
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.survey import Survey, read_survey
 from siteassess.site_file.model import Site
@@ -32,20 +34,27 @@ def read_skyline(site: Site, *, years: float = 0.0) -> Skyline:
     InputError
         With the mistakes of all the files.
     """
-    surveys = gather(*(partial(_survey, site, index, years) for index in range(len(site.horizon))))
-    obstacles = tuple(obstacle for survey in surveys for obstacle in survey.obstacles)
+    surveys = gather(*(partial(_source, site, index, years) for index in range(len(site.horizon))))
+    obstacles = tuple(
+        replace(obstacle, foliage_model=site.foliage.model) if obstacle.cover == "foliage" else obstacle
+        for survey in surveys
+        for obstacle in survey.obstacles
+    )
     return Skyline(
         obstacles=obstacles,
         outline=upper_envelope(obstacles),
         unsurveyed_deg=_gaps(
             np.concatenate([np.empty((0, 2)), *(survey.surveyed_deg for survey in surveys)])
         ),
-        surveys=tuple(survey.facts for survey in surveys),
+        surveys=tuple(survey.facts for survey in surveys if isinstance(survey, Survey)),
+        remarks=tuple(remark for one in surveys if isinstance(one, Outlines) for remark in one.remarks),
     )
 
 
-def _survey(site: Site, index: int, years: float) -> Survey:
+def _source(site: Site, index: int, years: float) -> Survey | Outlines:
     source = site.horizon[index]
+    if source.source == "outlines":
+        return read_outlines(site.path.parent / source.file, source, site.mount, site.position)
     return read_survey(
         site.path.parent / source.file,
         source,

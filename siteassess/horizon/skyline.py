@@ -49,6 +49,8 @@ class Obstacle(_ReadOnlyArrays):
         NaN where single points of the general skyline carry none.
     depth_m : array, shape (point,), or None
         Path through leaves; for foliage only.
+    foliage_model : str
+        Name of the model of their loss; for foliage only.
     straight_in_space : bool
         True: neighbouring points are joined by arcs of great circles; False: linearly in azimuth and
         elevation.
@@ -66,6 +68,7 @@ class Obstacle(_ReadOnlyArrays):
     underside_deg: FloatArray | None = None
     distance_m: FloatArray | None = None
     depth_m: FloatArray | None = None
+    foliage_model: Literal["P.833 slant path", "P.833 woodland", "Weissberger"] = "P.833 slant path"
     straight_in_space: bool = False
     width_m: float | None = None
     source: str = ""
@@ -150,9 +153,12 @@ class Skyline(_ReadOnlyArrays):
         Azimuth ranges that nobody looked at, 0 <= start < end <= 360, ascending and disjoint.
     surveys : tuple of SurveyFacts
         How each survey was used, in the order of the site file.
+    remarks : tuple of str
+        What was changed in building outlines, one sentence each.
     """
 
     obstacles: tuple[Obstacle, ...]
     outline: Outline
     unsurveyed_deg: FloatArray
     surveys: tuple[SurveyFacts, ...] = ()
+    remarks: tuple[str, ...] = ()

@@ -1,16 +1,29 @@
 """Loss through leaves, by published models that disagree by 3 to 1 at 10 m: the model is a stated choice."""
 
+from collections.abc import Callable
 from typing import Any, Literal
 
 import numpy as np
 from numpy.typing import ArrayLike
 
-__all__ = ["leaf_factor", "slant_path_loss_db", "weissberger_loss_db", "woodland_loss_db"]
+__all__ = [
+    "FOLIAGE_MODELS",
+    "leaf_factor",
+    "leaves_loss_db",
+    "mixed_forest_loss_db",
+    "slant_path_loss_db",
+    "weissberger_loss_db",
+    "woodland_loss_db",
+]
 
 LEAFLESS_SHARE = 1.0 / 1.2  # [P.833]: near 1 GHz a tree in leaf costs about 20 % more dB than a bare one
 SHORTEST_DEPTH_M = 1.0  # the slant-path fit does not go to zero with the depth; own limit of its use
 LOWEST_ELEVATION_DEG = 1.0  # own limit of the elevation term of the fit, which vanishes at the horizon
 WEISSBERGER_BREAK_M = 14.0
+# [P.833] Table 1, mixed forest: carriers, loss per metre of a short path, largest loss.
+FOREST_HZ = (949e6, 1852.2e6, 2117.5e6)
+FOREST_DB_PER_M = (0.17, 0.30, 0.34)
+FOREST_LARGEST_DB = (26.5, 29.0, 34.1)
 
 
 def slant_path_loss_db(depth_m: ArrayLike, carrier_hz: ArrayLike, elevation_deg: ArrayLike) -> Any:
@@ -84,6 +97,57 @@ def woodland_loss_db(depth_m: ArrayLike, rate_db_per_m: ArrayLike, largest_loss_
     """
     largest = np.asarray(largest_loss_db, dtype=float)
     return largest * -np.expm1(-np.asarray(depth_m) * rate_db_per_m / largest)  # [P.833] 2.1
+
+
+def mixed_forest_loss_db(depth_m: ArrayLike, carrier_hz: ArrayLike) -> Any:
+    """Loss [dB] in the mixed forest of P.833, its rows interpolated to the carrier (own choice).
+
+    References
+    ----------
+    [P.833] ITU-R P.833-10, 2.1 and Table 1.
+
+    Examples
+    --------
+    >>> mixed_forest_loss_db(10.0, [1852.2e6, 1575.42e6]).round(2).tolist()
+    [2.85, 2.49]
+    """
+    carrier = np.asarray(carrier_hz, dtype=float)
+    rate_db_per_m = np.interp(carrier, FOREST_HZ, FOREST_DB_PER_M)
+    return woodland_loss_db(depth_m, rate_db_per_m, np.interp(carrier, FOREST_HZ, FOREST_LARGEST_DB))
+
+
+# By the names that a site file may choose. They take depth [m], carrier [Hz] and elevation [deg].
+FOLIAGE_MODELS: dict[str, Callable[[ArrayLike, ArrayLike, ArrayLike], Any]] = {
+    "P.833 slant path": slant_path_loss_db,
+    "P.833 woodland": lambda depth_m, carrier_hz, elevation_deg: mixed_forest_loss_db(depth_m, carrier_hz),
+    "Weissberger": lambda depth_m, carrier_hz, elevation_deg: weissberger_loss_db(depth_m, carrier_hz),
+}
+
+
+def leaves_loss_db(
+    model: str,
+    leaf: Literal["in-leaf", "leafless", "evergreen"],
+    depth_m: ArrayLike,
+    carrier_hz: ArrayLike,
+    elevation_deg: ArrayLike,
+) -> Any:
+    """Loss [dB] by one of the models in a state of the leaves.
+
+    Parameters
+    ----------
+    model : str
+        A name of `FOLIAGE_MODELS`.
+    leaf : str
+        "in-leaf", "leafless" or "evergreen".
+    depth_m, carrier_hz, elevation_deg : array
+        Path through leaves [m], carrier [Hz] and elevation of the path [deg]; their shapes broadcast.
+
+    Examples
+    --------
+    >>> [round(float(leaves_loss_db(name, "in-leaf", 10.0, 1575.42e6, 30.0)), 1) for name in FOLIAGE_MODELS]
+    [9.3, 2.5, 5.1]
+    """
+    return leaf_factor(leaf) * FOLIAGE_MODELS[model](depth_m, carrier_hz, elevation_deg)
 
 
 def leaf_factor(leaf: Literal["in-leaf", "leafless", "evergreen"]) -> float:

@@ -15,7 +15,7 @@ from siteassess.horizon.view import (
     underside_elevation_deg,
 )
 from siteassess.link_budget.brightness import sky_brightness_k
-from siteassess.link_budget.foliage import leaf_factor, slant_path_loss_db
+from siteassess.link_budget.foliage import leaves_loss_db
 
 __all__ = [
     "RING_DEG",
@@ -110,8 +110,11 @@ def _covered(lower_deg: FloatArray, upper_deg: FloatArray) -> FloatArray:
 
 
 def _transmitted(obstacle: Obstacle, azimuth_deg: FloatArray, carrier_hz: float) -> FloatArray:
-    loss_db = slant_path_loss_db(depth_m(obstacle, azimuth_deg), carrier_hz, RING_DEG[:, np.newaxis])
-    transmitted: FloatArray = to_ratio(-leaf_factor(obstacle.leaf) * loss_db)
+    through_m = depth_m(obstacle, azimuth_deg)
+    loss_db = leaves_loss_db(
+        obstacle.foliage_model, obstacle.leaf, through_m, carrier_hz, RING_DEG[:, np.newaxis]
+    )
+    transmitted: FloatArray = to_ratio(-loss_db)
     return transmitted
 
 

@@ -20,7 +20,7 @@ from siteassess.link_budget.diffraction import (
     strip_loss_db,
 )
 from siteassess.link_budget.edges import highest_within_reach_deg, lower_edges, smallest_detour_m, upper_edges
-from siteassess.link_budget.foliage import leaf_factor, slant_path_loss_db
+from siteassess.link_budget.foliage import leaves_loss_db
 
 __all__ = ["is_narrow", "skyline_loss_db"]
 
@@ -111,8 +111,9 @@ def _foliage_loss_db(
     near = np.flatnonzero(elevation_deg < np.max(obstacle.elevation_deg))
     near = near[covers(obstacle, azimuth_deg[near], elevation_deg[near])]
     through_m = depth_m(obstacle, azimuth_deg[near])
-    loss_db = slant_path_loss_db(through_m, carrier_hz, elevation_deg[near])
-    return near, leaf_factor(obstacle.leaf) * loss_db
+    return near, leaves_loss_db(
+        obstacle.foliage_model, obstacle.leaf, through_m, carrier_hz, elevation_deg[near]
+    )
 
 
 def _solid_loss_db(

@@ -4,8 +4,10 @@ import numpy as np
 from numpy.typing import NDArray
 
 from siteassess.horizon.shares import SkyShares
-from siteassess.horizon.skyline import Skyline
+from siteassess.horizon.skyline import Obstacle, Skyline
 from siteassess.link_budget.budget import LinkBudget, SkySamples
+from siteassess.link_budget.foliage import FOLIAGE_MODELS, leaves_loss_db
+from siteassess.link_budget.thin import grazes, is_thin, loss_behind_db
 from siteassess.verdict.states import SampleStates
 from siteassess.verdict.verdict import ObstacleCost, SectorShare
 
@@ -13,6 +15,7 @@ __all__ = ["SECTOR_NAMES", "obstacle_costs", "sector_shares"]
 
 FloatArray = NDArray[np.float64]
 
+L1_HZ = 1575.42e6  # [IS-GPS-200]; what single figures of an obstacle are given for
 SECTOR_NAMES = ("N", "NE", "E", "SE", "S", "SW", "W", "NW")
 
 
@@ -45,9 +48,32 @@ def obstacle_costs(
             blocked_share_above_mask=sky.obstacle_blocked_share_above_mask[index],
             blocked_satellite_time_share=float(blocked[index]),
             lost_satellite_time_share={signal: float(share[index]) for signal, share in lost.items()},
+            foliage_loss_db=_foliage_loss_db(obstacle),
+            behind_loss_db=loss_behind_db(obstacle, L1_HZ) if is_thin(obstacle, L1_HZ) else None,
+            grazing_hours_per_day=_grazing_hours_per_day(obstacle, samples, weight),
         )
         for index, obstacle in enumerate(skyline.obstacles)
     )
+
+
+def _foliage_loss_db(obstacle: Obstacle) -> dict[str, float] | None:
+    """Loss on L1 at the highest point, by every model."""
+    if obstacle.depth_m is None:
+        return None
+    top = int(np.argmax(obstacle.elevation_deg))
+    through_m, elevation_deg = obstacle.depth_m[top], obstacle.elevation_deg[top]
+    return {
+        model: float(leaves_loss_db(model, obstacle.leaf, through_m, L1_HZ, elevation_deg))
+        for model in FOLIAGE_MODELS
+    }
+
+
+def _grazing_hours_per_day(obstacle: Obstacle, samples: SkySamples, weight: FloatArray) -> float | None:
+    """Satellite-hours a day that pass a thin thing within the first Fresnel zone on L1."""
+    if not is_thin(obstacle, L1_HZ):
+        return None
+    near = grazes(obstacle, samples.azimuth_deg, samples.apparent_elevation_deg, L1_HZ)
+    return 24.0 * float(weight[near].sum())
 
 
 def _sum_by_obstacle(obstacle: NDArray[np.int64], weight: FloatArray, count: int) -> FloatArray:

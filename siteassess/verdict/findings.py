@@ -7,7 +7,7 @@ from siteassess.site_file.model import Mount, Requirements
 from siteassess.verdict.criteria import Criterion, read_criteria
 from siteassess.verdict.verdict import Finding, ObstacleCost, SignalShares
 
-__all__ = ["site_findings", "worst_first"]
+__all__ = ["BY_SITE_FILE", "outcome_of", "site_findings", "told_apart", "worst_first"]
 
 # Shares are printed with one decimal of a percent; a smaller part of it is not worth naming.
 WORTH_NAMING_SHARE = 0.0005
@@ -80,7 +80,7 @@ def _hemisphere_share_above(elevation_deg: float) -> float:
     return 1.0 - sin(radians(elevation_deg))
 
 
-def _outcome(missed: bool, depends_on_sky: bool, sky: SkyShares) -> Literal["met", "missed", "unproven"]:
+def outcome_of(missed: bool, depends_on_sky: bool, sky: SkyShares) -> Literal["met", "missed", "unproven"]:
     """What nobody looked at is counted as open, so a miss stands whatever is there, and a pass does not."""
     if missed:
         return "missed"
@@ -95,7 +95,7 @@ def _signal_finding(
     obstacles: tuple[ObstacleCost, ...],
 ) -> Finding:
     limit = require.min_usable_share
-    outcome = _outcome(signal.usable_share < limit, True, sky)
+    outcome = outcome_of(signal.usable_share < limit, True, sky)
     return Finding(
         criterion=criterion.key,
         signal=signal.signal,
@@ -119,12 +119,12 @@ def _signal_reason(
     min_cn0_dbhz, limit = require.min_cn0_for(signal.signal), require.min_usable_share
     if signal.hidden_share == signal.samples_share == 0.0:
         return f"No satellite that sends it rises above the mask of {require.elevation_mask_deg:g} degrees."
-    usable, asked = _told_apart(signal.usable_share, limit)
+    usable, asked = told_apart(signal.usable_share, limit)
     sentences = [f"Usable for {usable} of the satellite-time above the mask; {asked} is asked."]
     if signal.open_sky_usable_share < limit:
         sentences.append(
             "Antenna and chain alone miss the limit: even under an open sky only "
-            f"{_told_apart(signal.open_sky_usable_share, limit)[0]} reaches {min_cn0_dbhz:g} dB-Hz."
+            f"{told_apart(signal.open_sky_usable_share, limit)[0]} reaches {min_cn0_dbhz:g} dB-Hz."
         )
     if signal.lost_share >= WORTH_NAMING_SHARE:
         sentences.append(
@@ -138,7 +138,7 @@ def _signal_reason(
     return " ".join(sentences)
 
 
-def _told_apart(share: float, limit: float) -> tuple[str, str]:
+def told_apart(share: float, limit: float) -> tuple[str, str]:
     """Both in percent, with as many decimals as it takes to see which is larger."""
     for decimals in (1, 2, 3, 4):
         texts = f"{share:.{decimals}%}", f"{limit:.{decimals}%}"
@@ -176,7 +176,7 @@ def _sky_finding(
         limit=limit,
         unit=criterion.unit,
         required=required,
-        outcome=_outcome(criterion.shortfall(value, limit) > 0, depends_on_sky, sky),
+        outcome=outcome_of(criterion.shortfall(value, limit) > 0, depends_on_sky, sky),
         source=BY_SITE_FILE if required else criterion.source,
         reason=reason,
     )

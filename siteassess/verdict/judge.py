@@ -2,23 +2,31 @@
 
 from typing import Literal
 
+import numpy as np
+from numpy.typing import NDArray
+
 from siteassess.horizon.shares import SkyShares, sky_shares
 from siteassess.horizon.skyline import Skyline
 from siteassess.link_budget.budget import LinkBudget
-from siteassess.site_file.model import Site
+from siteassess.site_file.model import Requirements, Site
 from siteassess.sky_tracks.tracks import SkyTracks
 from siteassess.verdict.causes import obstacle_costs, sector_shares
 from siteassess.verdict.chain_findings import chain_findings
 from siteassess.verdict.counts import usable_counts
 from siteassess.verdict.findings import site_findings, worst_first
+from siteassess.verdict.growth_findings import growth_findings
 from siteassess.verdict.shares import satellite_shares, signal_shares
-from siteassess.verdict.states import sample_states, sample_weights, share
-from siteassess.verdict.verdict import Finding, Verdict
+from siteassess.verdict.states import SampleStates, sample_states, sample_weights, share
+from siteassess.verdict.verdict import Finding, SignalShares, Verdict
 
 __all__ = ["judge"]
 
+FloatArray = NDArray[np.float64]
 
-def judge(site: Site, skyline: Skyline, tracks: SkyTracks, budget: LinkBudget) -> Verdict:
+
+def judge(
+    site: Site, skyline: Skyline, tracks: SkyTracks, budget: LinkBudget, later: LinkBudget | None = None
+) -> Verdict:
     """Hold the site against what its file requires, and against the published advice.
 
     Parameters
@@ -31,6 +39,8 @@ def judge(site: Site, skyline: Skyline, tracks: SkyTracks, budget: LinkBudget) -
         Where the satellites stand.
     budget : LinkBudget
         How strong what arrives is.
+    later : LinkBudget or None
+        The same with grown trees, where the site file asks for it.
 
     Returns
     -------
@@ -39,18 +49,18 @@ def judge(site: Site, skyline: Skyline, tracks: SkyTracks, budget: LinkBudget) -
     """
     sky = sky_shares(skyline, site.require.elevation_mask_deg)
     weight = sample_weights(budget.samples, tracks)
-    states = {
-        signal.signal.name: sample_states(
-            signal, budget.samples, weight, count_weakened=site.require.count_weakened
-        )
-        for signal in budget.signals
-    }
-    signals = tuple(signal_shares(signal, states[signal.signal.name]) for signal in budget.signals)
+    states = _states(budget, weight, site.require)
+    signals = _signals(budget, states)
+    growth: tuple[Finding, ...] = ()
+    if later is not None:
+        signals_later = _signals(later, _states(later, weight, site.require))
+        growth = growth_findings(site.require, signals, signals_later, sky)
     obstacles = obstacle_costs(skyline, sky, budget.samples, weight, states)
     noises = tuple({signal.noise.carrier_hz: signal.noise for signal in budget.signals}.values())
     findings = worst_first(
         (
             *site_findings(site.require, site.mount, sky, signals, obstacles),
+            *growth,
             *chain_findings(site.require, site.chain, noises, site.antenna.unwanted_level_dbm),
         )
     )
@@ -69,6 +79,19 @@ def judge(site: Site, skyline: Skyline, tracks: SkyTracks, budget: LinkBudget) -
         sectors=sector_shares(sky, budget, states),
         counts=usable_counts(budget, tracks, states),
     )
+
+
+def _states(budget: LinkBudget, weight: FloatArray, require: Requirements) -> dict[str, SampleStates]:
+    return {
+        signal.signal.name: sample_states(
+            signal, budget.samples, weight, count_weakened=require.count_weakened
+        )
+        for signal in budget.signals
+    }
+
+
+def _signals(budget: LinkBudget, states: dict[str, SampleStates]) -> tuple[SignalShares, ...]:
+    return tuple(signal_shares(signal, states[signal.signal.name]) for signal in budget.signals)
 
 
 def _outcome(findings: tuple[Finding, ...], sky: SkyShares) -> Literal["pass", "fail", "unproven"]:
