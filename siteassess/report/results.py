@@ -2,12 +2,12 @@
 
 from __future__ import annotations
 
-import json
 import math
-import re
 from typing import TYPE_CHECKING, Any
 
 from siteassess.link_budget.supply import preamplifier_voltage_v
+from siteassess.report.plain_json import as_json
+from siteassess.report.plain_json import rounded as _rounded
 from siteassess.report.setting import CAUTIONS, assumptions
 
 if TYPE_CHECKING:
@@ -18,9 +18,6 @@ if TYPE_CHECKING:
 __all__ = ["FORMAT", "assessment_record", "json_text"]
 
 FORMAT = "siteassess-assessment/1"
-# Beyond ASCII, where JSON escapes nothing: they steer terminals, end lines or turn the reading direction.
-STEERING_SIGNS = re.compile("[\x7f-\x9f\u2028\u2029\u200e\u200f\u202a-\u202e\u2066-\u2069]")
-DECIMALS = {"share": 6, "db": 3, "deg": 4, "m": 3, "k": 3, "hz": 0, "count": 3, "v": 3, "db/m": 4}
 
 
 def json_text(assessment: Assessment) -> str:
@@ -31,8 +28,7 @@ def json_text(assessment: Assessment) -> str:
     assessment : Assessment
         What `assess` returned.
     """
-    text = json.dumps(assessment_record(assessment), ensure_ascii=False, allow_nan=False, indent=2) + "\n"
-    return STEERING_SIGNS.sub(lambda sign: f"\\u{ord(sign[0]):04x}", text)
+    return as_json(assessment_record(assessment))
 
 
 def assessment_record(assessment: Assessment) -> dict[str, Any]:
@@ -105,12 +101,6 @@ def assessment_record(assessment: Assessment) -> dict[str, Any]:
         "assumptions": list(assumptions(assessment)),
         "cautions": list(CAUTIONS),
     }
-
-
-def _rounded(value: float | None, kind: str) -> float | None:
-    if value is None or not math.isfinite(value):
-        return None
-    return round(float(value), DECIMALS[kind.lower()]) + 0.0  # no minus zero
 
 
 def _finding(finding: Finding) -> dict[str, Any]:

@@ -1,0 +1,31 @@
+"""JSON as the tool writes it: rounded numbers, no NaN, no sign that steers a terminal."""
+
+import json
+import math
+import re
+from typing import Any
+
+__all__ = ["as_json", "rounded"]
+
+# Beyond ASCII, where JSON escapes nothing: they steer terminals, end lines or turn the reading direction.
+STEERING_SIGNS = re.compile("[\x7f-\x9f\u2028\u2029\u200e\u200f\u202a-\u202e\u2066-\u2069]")
+DECIMALS = {"share": 6, "db": 3, "deg": 4, "m": 3, "k": 3, "hz": 0, "count": 3, "v": 3, "db/m": 4}
+
+
+def as_json(record: dict[str, Any]) -> str:
+    """A record as JSON, ending in a newline; the same text for the same record."""
+    text = json.dumps(record, ensure_ascii=False, allow_nan=False, indent=2) + "\n"
+    return STEERING_SIGNS.sub(lambda sign: f"\\u{ord(sign[0]):04x}", text)
+
+
+def rounded(value: float | None, kind: str) -> float | None:
+    """A value with the decimals of its kind; None where it does not exist.
+
+    Examples
+    --------
+    >>> rounded(0.12345678, "share"), rounded(-0.0001, "dB"), rounded(float("nan"), "deg")
+    (0.123457, 0.0, None)
+    """
+    if value is None or not math.isfinite(value):
+        return None
+    return round(float(value), DECIMALS[kind.lower()]) + 0.0  # no minus zero
