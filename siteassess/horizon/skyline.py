@@ -111,6 +111,8 @@ class SurveyFacts:
     ----------
     file : str
         Name of the survey file.
+    bearings : str
+        What its azimuths are counted from: a key of the site file, or "landmark".
     correction_deg : float
         What was added to its azimuths.
     uncertainty_deg : float or None
@@ -129,6 +131,7 @@ class SurveyFacts:
     """
 
     file: str
+    bearings: Literal["true-north", "magnetic-north", "grid-north", "landmark"]
     correction_deg: float
     uncertainty_deg: float | None
     offset_m: float

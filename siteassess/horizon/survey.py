@@ -103,7 +103,7 @@ def read_survey(
     up_m = mount.phase_centre_height_m if source.instrument_up_m is None else source.instrument_up_m
     offset_m = (source.instrument_east_m, source.instrument_north_m, up_m - mount.phase_centre_height_m)
     instrument = _Instrument(offset_m=offset_m, turn_deg=turn.correction_deg)
-    facts = _facts(rows, offset_m, turn)
+    facts = _facts(rows, source, offset_m, turn)
     if years > 0.0:
         rows = grown(rows, years, growth_m_per_year)
     obstacles: list[Obstacle] = []
@@ -123,7 +123,9 @@ def read_survey(
     return Survey(obstacles=tuple(obstacles), surveyed_deg=surveyed_deg, facts=facts)
 
 
-def _facts(rows: Rows, offset_m: tuple[float, float, float], turn: NorthTurn) -> SurveyFacts:
+def _facts(
+    rows: Rows, source: HorizonSource, offset_m: tuple[float, float, float], turn: NorthTurn
+) -> SurveyFacts:
     without_distance = int(np.isnan(rows.slant_m).sum())
     away_m, bound_deg = float(np.linalg.norm(offset_m)), parallax_bound_deg(offset_m)
     remarks = list(turn.remarks)
@@ -136,6 +138,7 @@ def _facts(rows: Rows, offset_m: tuple[float, float, float], turn: NorthTurn) ->
         )
     return SurveyFacts(
         file=rows.file,
+        bearings="landmark" if source.landmark_reading_deg is not None else source.bearings,
         correction_deg=turn.correction_deg,
         uncertainty_deg=turn.uncertainty_deg,
         offset_m=away_m,

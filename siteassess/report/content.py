@@ -57,7 +57,7 @@ def report_content(assessment: Assessment) -> Content:
             _horizon_section(assessment),
             findings_section(verdict),
             signals_section(assessment),
-            obstacles_section(verdict),
+            obstacles_section(assessment),
             sectors_section(verdict),
             counts_section(assessment),
             budget_section(assessment),
@@ -83,7 +83,7 @@ def _facts(assessment: Assessment) -> tuple[tuple[str, str], ...]:
         (
             "Survey mark",
             f"{number(position.latitude_deg, 6)}°, {number(position.longitude_deg, 6)}° (WGS 84), "
-            f"{number(position.height_m, 2)} m above the ellipsoid",
+            f"{number(position.height_m, 2)} m above {position.above.replace('ellipsoid', 'the ellipsoid')}",
         ),
         (
             "Antenna",
@@ -164,6 +164,12 @@ def _survey_section(assessment: Assessment) -> Section:
         sentences.append(f"Nobody looked at these azimuths: {gaps}.")
     elif site.horizon:
         sentences.append("Every azimuth was looked at.")
+    sentences += [
+        f"{plain(survey.file)}: {plain(remark)}"
+        for survey in assessment.skyline.surveys
+        for remark in survey.remarks
+    ]
+    sentences += [plain(remark) for remark in assessment.skyline.remarks]
     table = Table(
         caption="Sources of the horizon. Errors are one standard deviation.",
         header=(
@@ -191,14 +197,22 @@ def _source_row(source: HorizonSource) -> tuple[str, ...]:
     def error(value_deg: float | None) -> str:
         return "not given" if value_deg is None else f"{value_deg:g}°"
 
-    up = "at the antenna" if source.instrument_up_m is None else f"{number(source.instrument_up_m, 2)} m up"
     return (
         SOURCES[source.source],
         plain(source.file.replace("\\", "/").rsplit("/", 1)[-1]),
         source.surveyed_on.isoformat() if source.surveyed_on else "not given",
-        BEARINGS[source.bearings],
+        "a landmark" if source.landmark_reading_deg is not None else BEARINGS[source.bearings],
         error(source.azimuth_error_deg),
         error(source.elevation_error_deg),
         "yes" if source.complete else "not stated",
-        f"{number(source.instrument_east_m, 2)} m east, {number(source.instrument_north_m, 2)} m north, {up}",
+        _seen_from(source),
+    )
+
+
+def _seen_from(source: HorizonSource) -> str:
+    if source.source == "outlines":
+        return f"the antenna, with the ground {number(source.ground_up_m, 2)} m above the mark"
+    up = "at the antenna" if source.instrument_up_m is None else f"{number(source.instrument_up_m, 2)} m up"
+    return (
+        f"{number(source.instrument_east_m, 2)} m east, {number(source.instrument_north_m, 2)} m north, {up}"
     )

@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from siteassess.report.answers import ranked_obstacles
+from siteassess.report.obstacle_tables import leaves_table, thin_table
 from siteassess.report.phrases import azimuth_range, decibels, number, percent, plain, told_apart
 from siteassess.report.pieces import Section, Table
 from siteassess.verdict.criteria import read_criteria
@@ -103,12 +104,14 @@ def signals_section(assessment: Assessment) -> Section:
     return Section(key="signals", heading="Signal by signal", tables=(table,))
 
 
-def obstacles_section(verdict: Verdict) -> Section:
-    """What each obstacle costs, the dearest first."""
+def obstacles_section(assessment: Assessment) -> Section:
+    """What each obstacle costs, the dearest first; what leaves and thin things do."""
+    verdict = assessment.verdict
     if not verdict.obstacles:
         return Section(key="obstacles", heading="Obstacles", sentences=("No obstacle is known.",))
     rows = []
-    for rank, (_, obstacle) in enumerate(ranked_obstacles(verdict), start=1):
+    ranked = [(rank, obstacle) for rank, (_, obstacle) in enumerate(ranked_obstacles(verdict), start=1)]
+    for rank, obstacle in ranked:
         lost = obstacle.lost_satellite_time_share
         dearest = max(lost, key=lambda signal: lost[signal], default=None)
         rows.append(
@@ -133,7 +136,12 @@ def obstacles_section(verdict: Verdict) -> Section:
         rows=tuple(rows),
         align="rlllrrrr",
     )
-    return Section(key="obstacles", heading="Obstacles and what each costs", tables=(table,))
+    details = (leaves_table(assessment, ranked), thin_table(ranked))
+    return Section(
+        key="obstacles",
+        heading="Obstacles and what each costs",
+        tables=(table, *(detail for detail in details if detail is not None)),
+    )
 
 
 def sectors_section(verdict: Verdict) -> Section:

@@ -70,8 +70,28 @@ def assessment_record(assessment: Assessment) -> dict[str, Any]:
                     signal: _rounded(share, "share")
                     for signal, share in obstacle.lost_satellite_time_share.items()
                 },
+                "foliage_loss_db": None
+                if obstacle.foliage_loss_db is None
+                else {model: _rounded(loss, "db") for model, loss in obstacle.foliage_loss_db.items()},
+                "behind_loss_db": _rounded(obstacle.behind_loss_db, "db"),
+                "grazing_hours_per_day": _rounded(obstacle.grazing_hours_per_day, "count"),
             }
             for obstacle in verdict.obstacles
+        ],
+        "surveys": [
+            {
+                "file": survey.file,
+                "bearings": survey.bearings,
+                "correction_deg": _rounded(survey.correction_deg, "deg"),
+                "uncertainty_deg": _rounded(survey.uncertainty_deg, "deg"),
+                "instrument_offset_m": _rounded(survey.offset_m, "m"),
+                "rows": survey.rows,
+                "rows_without_distance": survey.rows_without_distance,
+                "parallax_bound_deg": _rounded(survey.parallax_bound_deg, "deg"),
+                "parallax_distance_m": _rounded(survey.parallax_distance_m, "m"),
+                "remarks": list(survey.remarks),
+            }
+            for survey in assessment.skyline.surveys
         ],
         "sectors": [
             {

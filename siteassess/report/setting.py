@@ -97,14 +97,34 @@ def _obstacles(assessment: Assessment) -> list[str]:
     texts = []
     if not assessment.site.horizon:
         texts.append("No horizon was given: the whole sky counts as unsurveyed, and nothing is hidden.")
-    if any(source.bearings != "true-north" for source in assessment.site.horizon):
-        texts.append("Bearings that were not read from true north were turned to it before use.")
+    texts.extend(assessment.site.position.remarks)
+    if any(survey.bearings != "true-north" for survey in assessment.skyline.surveys):
+        texts.append("Azimuths that were not read from true north were turned to it before use.")
     if any(obstacle.cover == "solid" for obstacle in obstacles):
         texts.append("A satellite behind a solid outline is hidden, however near it stands to the edge.")
     if any(obstacle.cover == "solid" and obstacle.distance_m is None for obstacle in obstacles):
         texts.append("Solid edges without a distance cost nothing beside them; those with one diffract.")
     if any(obstacle.cover == "foliage" for obstacle in obstacles):
         texts.append("Leaves weaken a signal by the length of its path through them, and hide nothing.")
+        texts.append(f"The loss of leaves follows the model {assessment.site.foliage.model}.")
+    return texts + _growth(assessment)
+
+
+def _growth(assessment: Assessment) -> list[str]:
+    """How trees were grown, where the site file asks for it."""
+    years = assessment.site.require.good_for_years
+    if years is None:
+        return []
+    trees = [one for one in assessment.skyline.obstacles if one.cover == "foliage"]
+    left = [plain(one.name) for one in trees if one.distance_m is None]
+    texts = [
+        f"For the time after {years:g} years the tops of trees were raised by their growth; how far a signal "
+        "goes through their leaves, and everything else, stayed as it is."
+    ]
+    if not trees:
+        texts = [f"Nothing in the surveys grows: {years:g} years change nothing."]
+    if left:
+        texts.append(f"Not grown, because no distance is known: {listed(left)}.")
     return texts
 
 

@@ -13,7 +13,7 @@ from siteassess.report.setting import CAUTIONS
 KEYS = {
     "": {
         "format", "tool_version", "site", "verdict", "findings", "sky", "obstacles", "signals", "satellites",
-        "noise", "assumptions", "cautions", "sectors", "counts",
+        "noise", "assumptions", "cautions", "surveys", "sectors", "counts",
     },
     "site": {"name", "latitude_deg", "longitude_deg", "height_m"},
     "findings": {
@@ -25,6 +25,11 @@ KEYS = {
     },
     "obstacles": {
         "name", "blocked_share_above_mask", "blocked_satellite_time_share", "lost_satellite_time_share",
+        "foliage_loss_db", "behind_loss_db", "grazing_hours_per_day",
+    },
+    "surveys": {
+        "file", "bearings", "correction_deg", "uncertainty_deg", "instrument_offset_m", "rows",
+        "rows_without_distance", "parallax_bound_deg", "parallax_distance_m", "remarks",
     },
     "signals": {
         "signal", "system", "carrier_hz", "usable_share", "usable_share_of_open_sky", "weakened_share",
@@ -50,7 +55,7 @@ def test_keys_are_those_of_the_format(markup_assessment):
     assert set(record) == KEYS[""]
     for part in ("site", "sky"):
         assert set(record[part]) == KEYS[part]
-    for part in ("findings", "obstacles", "signals", "satellites", "noise"):
+    for part in ("findings", "obstacles", "surveys", "signals", "satellites", "noise"):
         assert record[part], part
         assert all(set(entry) == KEYS[part] for entry in record[part])
     for signal in record["signals"]:
