@@ -93,8 +93,9 @@ class Content:
     sections : tuple of Section
         Everything else, in the order of reading.
     sign_heading, photographs, signatures : str, tuple of str, tuple of str
-        Heading and labels of the boxes that are filled in by hand; they come before the appendix.
-    appendix : Section
+        Heading and labels of the boxes that are filled in by hand, where there are any; they come before the
+        appendix.
+    appendix : Section or None
         Satellite by satellite.
     maker : str
         Program and version.
@@ -109,8 +110,8 @@ class Content:
     cautions_heading: str
     cautions: tuple[str, ...]
     sections: tuple[Section, ...]
-    sign_heading: str
-    photographs: tuple[str, ...]
-    signatures: tuple[str, ...]
-    appendix: Section
     maker: str
+    sign_heading: str = ""
+    photographs: tuple[str, ...] = ()
+    signatures: tuple[str, ...] = ()
+    appendix: Section | None = None
