@@ -2,6 +2,7 @@
 
 import json
 from dataclasses import dataclass
+from pathlib import PurePath
 from typing import Literal
 
 from siteassess.assessment import Assessment
@@ -100,6 +101,17 @@ class RefusedCandidate:
     given: str
     place: str
     mistakes: tuple[Mistake, ...]
+
+    @property
+    def messages(self) -> tuple[str, ...]:
+        """Each mistake with the site as the user gave it, because many files have the same name."""
+        own_file = PurePath(self.given).name
+        return tuple(
+            f"{self.given}{str(mistake).removeprefix(own_file)}"
+            if mistake.file == own_file
+            else f"{self.given}: {mistake}"
+            for mistake in self.mistakes
+        )
 
 
 def room(finding: Finding) -> float:

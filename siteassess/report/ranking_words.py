@@ -1,0 +1,84 @@
+"""How a ranking names its sites and criteria, and writes margins and prices."""
+
+from collections import Counter
+from collections.abc import Sequence
+
+from siteassess.candidates.ranking import USABLE_SATELLITES, Difference, RankedSite, Ranking
+from siteassess.report.phrases import NOTHING, number, percent, plain, told_apart
+from siteassess.verdict.criteria import read_criteria
+
+__all__ = ["OUTCOMES", "beaten_by", "criterion_name", "gains", "gives_up", "margin_text", "site_names"]
+
+OUTCOMES = {"pass": "passes", "unproven": "unproven", "fail": "fails"}
+MOST_SHOWN_PERCENT = 999.0
+MOST_DIFFERENCES = 5
+
+
+def site_names(ranking: Ranking) -> list[str]:
+    """Name of each ranked site; with its place where another has the same name."""
+    names = [plain(site.candidate.name) for site in ranking.sites]
+    times = Counter(names)
+    return [
+        f"{name} ({plain(site.candidate.place)})" if times[name] > 1 else name
+        for name, site in zip(names, ranking.sites, strict=True)
+    ]
+
+
+def criterion_name(criterion: str, signal: str | None) -> str:
+    """What a criterion is about; the name of a signal alone stands for its usable share."""
+    if criterion == USABLE_SATELLITES:
+        return "Usable satellites"
+    if criterion == "min_usable_share" and signal is not None:
+        return signal
+    title = read_criteria()[criterion].title
+    return f"{signal}: {title}" if signal else title
+
+
+def margin_text(margin: float) -> str:
+    """A margin in percent of the limit, with its sign, and decimals enough to tell it from none.
+
+    Examples
+    --------
+    >>> margin_text(0.0459), margin_text(-0.00002), margin_text(-1e8)
+    ('+4.6\\xa0%', '−0.002\\xa0%', 'below −999\\xa0%')
+    """
+    if abs(100.0 * margin) > MOST_SHOWN_PERCENT:
+        edge = percent(MOST_SHOWN_PERCENT / 100.0, 0)
+        return f"above +{edge}" if margin > 0 else f"below −{edge}"
+    decimals = next((digits for digits in (1, 2, 3) if round(100.0 * margin, digits) or not margin), 4)
+    return f"{'+' if margin > 0 else ''}{percent(margin, decimals)}"
+
+
+def beaten_by(site: RankedSite, most_ranks: int) -> str:
+    """Ranks of the sites that are better in everything, or how many they are; a dash where there is none."""
+    ranks = site.dominated_by
+    if len(ranks) > most_ranks:
+        return f"{len(ranks)} spots"
+    return "no. " + ", ".join(str(rank) for rank in ranks) if ranks else NOTHING
+
+
+def gives_up(site: RankedSite) -> str:
+    """Where the site is worse than the first."""
+    return _differences([difference for difference in site.differences if difference.gain < 0])
+
+
+def gains(site: RankedSite) -> str:
+    """Where the site is better than the first."""
+    return _differences([difference for difference in site.differences if difference.gain > 0])
+
+
+def _differences(differences: Sequence[Difference]) -> str:
+    told = [_difference(difference) for difference in differences[:MOST_DIFFERENCES]]
+    more = len(differences) - len(told)
+    if more > 0:
+        told.append(f"and {more} more")
+    return "; ".join(told) or "nothing"
+
+
+def _difference(difference: Difference) -> str:
+    name = criterion_name(difference.criterion, difference.signal)
+    if difference.unit == "count":
+        value, first = number(difference.value), number(difference.first_value)
+    else:
+        value, first = told_apart(difference.value, difference.first_value, difference.unit)
+    return f"{name} {value} instead of {first}"
