@@ -26,6 +26,15 @@ Exit status:
   3  with --require-pass, the verdict is not "pass"
 """
 
+RANK_EXIT_STATUS = """\b
+Exit status:
+  0  done, whatever the verdicts
+  1  a site cannot be assessed: each mistake is named on standard error, the
+     other sites are ranked
+  2  wrong command line
+  3  with --require-pass, no site passes
+"""
+
 
 class Commands(click.Group):
     """Prints the mistakes of an input, one a line, instead of a traceback."""
@@ -166,6 +175,74 @@ def antenna(pattern: str, out: Path | None, as_json: bool) -> None:
     else:
         for line in antenna_lines(gain):
             click.echo(line)
+
+
+@main.command(epilog=RANK_EXIT_STATUS)
+@click.argument("sites", metavar="SITE...", nargs=-1, required=True, type=click.Path(path_type=Path))
+@click.option(
+    "--out", type=click.Path(path_type=Path), metavar="FOLDER",
+    help="Write the ranking here instead of ranking-report in the working folder.",
+)  # fmt: skip
+@click.option("--json", "as_json", is_flag=True, help="Print the ranking as JSON; write files only with --out.")
+@click.option("--jobs", type=click.IntRange(min=1), metavar="N", help="Number of processes; one a core.")
+@click.option("--quiet", is_flag=True, help="No summary, notes or progress.")
+@click.option("--require-pass", is_flag=True, help="Exit with 3 unless a site passes.")
+@click.pass_context
+def rank(
+    ctx: click.Context,
+    sites: tuple[Path, ...],
+    out: Path | None,
+    as_json: bool,
+    jobs: int | None,
+    quiet: bool,
+    require_pass: bool,
+) -> None:
+    """Assess every SITE and put them in order, the best first.
+
+    The ranking is ranking.html, ranking.pdf, ranking.json, ranking.csv and ranking.svg. It says who is better
+    in everything than whom, and what each other choice costs.
+
+    \b
+    Example:
+      siteassess rank harbour/quay_office harbour/silo_yard harbour/tree_line
+      siteassess rank roofs/*.toml --out reports/roofs
+    """
+    from siteassess.candidates.places import distinct_sites
+    from siteassess.candidates.rank import rank_sites
+
+    folder = out if out is not None or as_json else Path("ranking-report")
+    with _progress(shown=not quiet) as step:
+        step("reading and assessing")
+        ranking = rank_sites(sites, jobs=jobs, progress=step)
+        if folder is not None and ranking.sites:
+            import logging
+
+            from siteassess.report.write_ranking import write_ranking
+
+            logging.getLogger("matplotlib").setLevel(logging.ERROR)
+            write_ranking(ranking, folder, step)
+    if ranking.sites and as_json:
+        from siteassess.report.ranking_results import ranking_json
+
+        click.echo(ranking_json(ranking).encode(), nl=False)
+    elif ranking.sites and not quiet:
+        from siteassess.report.ranking_summary import ranking_lines
+
+        for line in ranking_lines(ranking):
+            click.echo(line)
+    if not quiet:
+        for site in distinct_sites(sites):
+            if site.repeated:
+                _tell(f"{site.given} is named more than once; it counts once")
+        if folder is not None and ranking.sites:
+            _tell(f"Ranking written to {folder}")
+    for refused in ranking.refused:
+        for message in refused.messages:
+            _tell(f"Error: {message}")
+    if ranking.refused:
+        ctx.exit(1)
+    if require_pass and ranking.sites[0].candidate.outcome != "pass":
+        ctx.exit(3)
 
 
 def _tell(text: str, indent: str = "") -> None:
