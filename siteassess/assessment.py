@@ -17,6 +17,7 @@ from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
 from siteassess.verdict.judge import judge
 from siteassess.verdict.verdict import Verdict
+from siteassess.verdict.what_if import Change, what_if
 
 __all__ = ["Assessment", "assess", "assess_file"]
 
@@ -39,6 +40,8 @@ class Assessment:
         How strong what arrives is.
     verdict : Verdict
         Whether it is good enough.
+    what_if : tuple of Change
+        What another cable, preamplifier or antenna would change.
     """
 
     site: Site
@@ -47,6 +50,7 @@ class Assessment:
     tracks: SkyTracks
     budget: LinkBudget
     verdict: Verdict
+    what_if: tuple[Change, ...] = ()
 
 
 def assess(site: Site) -> Assessment:
@@ -82,6 +86,7 @@ def assess(site: Site) -> Assessment:
         tracks=tracks,
         budget=budget,
         verdict=judge(site, skyline, tracks, budget, later),
+        what_if=what_if(site, skyline, pattern, tracks, budget),
     )
 
 

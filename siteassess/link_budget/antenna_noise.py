@@ -15,7 +15,7 @@ from siteassess.link_budget.brightness import sky_brightness_k
 from siteassess.link_budget.seen_sky import RING_DEG, RING_SHARE, SECTOR_DEG, SeenSky, seen_sky
 from siteassess.site_file.model import Mount
 
-__all__ = ["AntennaNoise", "antenna_noise", "ring_gain", "seen_temperature_k"]
+__all__ = ["AntennaNoise", "antenna_noise", "noise_of_seen", "ring_gain", "seen_temperature_k"]
 
 FloatArray = NDArray[np.float64]
 
@@ -63,9 +63,13 @@ def antenna_noise(pattern: GainPattern, mount: Mount, skyline: Skyline, carrier_
     ----------
     [P.372] Radio noise.
     """
+    return noise_of_seen(pattern, mount, seen_sky(skyline, carrier_hz), carrier_hz)
+
+
+def noise_of_seen(pattern: GainPattern, mount: Mount, seen: SeenSky, carrier_hz: float) -> AntennaNoise:
+    """The same, of a sky that was looked at before; see :func:`antenna_noise`."""
     radiated = efficiency(pattern, carrier_hz)
     taken_in = ring_gain(pattern, mount, carrier_hz) / max(1.0, radiated)
-    seen = seen_sky(skyline, carrier_hz)
     sky_k = sky_brightness_k(carrier_hz, RING_DEG)
     above, leaves, solid = (
         float(np.sum(taken_in * share)) for share in (1.0, seen.leaves_share, seen.solid_share)

@@ -9,6 +9,7 @@ from siteassess.link_budget.supply import preamplifier_voltage_v
 from siteassess.report.plain_json import as_json
 from siteassess.report.plain_json import rounded as _rounded
 from siteassess.report.setting import CAUTIONS, assumptions
+from siteassess.verdict.what_if import WHAT_IF_ELEVATIONS_DEG, Change
 
 if TYPE_CHECKING:
     from siteassess.assessment import Assessment
@@ -118,6 +119,7 @@ def assessment_record(assessment: Assessment) -> dict[str, Any]:
         ],
         "satellites": [_satellite(share) for share in verdict.satellites],
         "noise": _noise(assessment),
+        "what_if": [_change(change) for change in assessment.what_if],
         "assumptions": list(assumptions(assessment)),
         "cautions": list(CAUTIONS),
     }
@@ -212,6 +214,15 @@ def _noise(assessment: Assessment) -> list[dict[str, Any]]:
         {
             "carrier_hz": _rounded(noise.carrier_hz, "hz"),
             "antenna_temperature_k": _rounded(noise.antenna_temperature_k, "k"),
+            "antenna_noise_k": {
+                "sky": _rounded(noise.antenna.sky_k, "k"),
+                "leaves": _rounded(noise.antenna.leaves_k, "k"),
+                "obstacles": _rounded(noise.antenna.obstacles_k, "k"),
+                "ground": _rounded(noise.antenna.ground_k, "k"),
+                "loss": _rounded(noise.antenna.loss_k, "k"),
+                "open_site": _rounded(noise.antenna.open_site_k, "k"),
+            },
+            "surroundings_cost_db": _rounded(noise.surroundings_cost_db, "db"),
             "system_temperature_k": _rounded(noise.system_temperature_k, "k"),
             "noise_figure_db": _rounded(noise.noise_figure_db, "db"),
             "net_gain_db": _rounded(noise.net_gain_db, "db"),
@@ -228,3 +239,16 @@ def _noise(assessment: Assessment) -> list[dict[str, Any]]:
         }
         for noise in by_carrier.values()
     ]
+
+
+def _change(change: Change) -> dict[str, Any]:
+    at_elevations = zip(WHAT_IF_ELEVATIONS_DEG, change.cn0_gain_db, strict=True)
+    return {
+        "change": change.change,
+        "signal": change.signal,
+        "cn0_gain_db": {
+            f"at_{elevation_deg:g}_deg": _rounded(gain_db, "db") for elevation_deg, gain_db in at_elevations
+        },
+        "usable_share": _rounded(change.usable_share, "share"),
+        "usable_share_now": _rounded(change.usable_share_now, "share"),
+    }

@@ -132,7 +132,7 @@ def _antenna_and_noise(assessment: Assessment) -> list[str]:
     pattern = assessment.pattern
     texts = [f"The gain pattern “{plain(pattern.name)}” is used at every carrier without change."]
     if len(pattern.carrier_hz) > 1:
-        texts = [f"The gain pattern “{plain(pattern.name)}” is used at the nearest of its carriers."]
+        texts = [f"The gain pattern “{plain(pattern.name)}” is read between its carriers."]
     if pattern.rests_on:
         texts.append(f"It rests on: {plain(pattern.rests_on)}.")
     texts.extend(plain(remark) for remark in pattern.remarks)
@@ -141,7 +141,10 @@ def _antenna_and_noise(assessment: Assessment) -> list[str]:
             "No cross-polar gain is known: power missing from the pattern counts as loss or cross-polar, "
             "unknown, at 290 K."
         )
-    texts.append("Ground and obstacles radiate as bodies of 290 K; the open sky has its own brightness.")
+    texts.append(
+        "Ground, obstacles and leaves radiate as bodies of 290 K, leaves by what they hold back; the open "
+        "sky has its own brightness."
+    )
     return texts
 
 

@@ -13,7 +13,7 @@ from siteassess.report.setting import CAUTIONS
 KEYS = {
     "": {
         "format", "tool_version", "site", "verdict", "findings", "sky", "obstacles", "signals", "satellites",
-        "noise", "assumptions", "cautions", "surveys", "sectors", "counts",
+        "noise", "what_if", "assumptions", "cautions", "surveys", "sectors", "counts",
     },
     "site": {"name", "latitude_deg", "longitude_deg", "height_m"},
     "findings": {
@@ -39,8 +39,11 @@ KEYS = {
         "satellite", "system", "orbit_class", "signal", "hours_above_mask_per_day", "usable_share",
         "received_power_dbw", "cn0_dbhz",
     },
+    "what_if": {"change", "signal", "cn0_gain_db", "usable_share", "usable_share_now"},
     "noise": {
-        "carrier_hz", "antenna_temperature_k", "system_temperature_k", "noise_figure_db", "net_gain_db",
+        "carrier_hz", "antenna_temperature_k", "antenna_noise_k", "surroundings_cost_db",
+        "system_temperature_k", "noise_figure_db", "net_gain_db", "gain_over_temperature_db_per_k",
+        "supply_voltage_v", "parts",
     },
 }  # fmt: skip
 BY_ELEVATION = {
@@ -55,7 +58,7 @@ def test_keys_are_those_of_the_format(markup_assessment):
     assert set(record) == KEYS[""]
     for part in ("site", "sky"):
         assert set(record[part]) == KEYS[part]
-    for part in ("findings", "obstacles", "surveys", "signals", "satellites", "noise"):
+    for part in ("findings", "obstacles", "surveys", "signals", "satellites", "noise", "what_if"):
         assert record[part], part
         assert all(set(entry) == KEYS[part] for entry in record[part])
     for signal in record["signals"]:
