@@ -9,7 +9,15 @@ from siteassess.horizon.crossings import SAME_EDGE_DEG, crossing_azimuths
 from siteassess.horizon.curves import Curves, FloatArray, IndexArray, curves_between, edge_elevation
 from siteassess.horizon.skyline import Obstacle, Outline
 
-__all__ = ["Circle", "circle_of", "envelope", "obstacle_curves", "outline_curves", "upper_envelope"]
+__all__ = [
+    "Circle",
+    "circle_of",
+    "envelope",
+    "envelopes",
+    "obstacle_curves",
+    "outline_curves",
+    "upper_envelope",
+]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -129,6 +137,45 @@ def envelope(curves: Curves, group: IndexArray) -> Circle:
         curve = np.append(merged[2], curve[rest:])
         size = np.bincount(group)
     return Circle(start_deg=start_deg, curve=curve)
+
+
+def envelopes(
+    curves: Curves, group: IndexArray, owner: IndexArray
+) -> tuple[IndexArray, FloatArray, IndexArray]:
+    """The upper envelopes of the curves of many owners at once, each by itself.
+
+    Parameters
+    ----------
+    curves, group
+        As for `envelope`.
+    owner : integer array, shape (curve,)
+        Whose envelope a curve takes part in; the same for all the curves of a group.
+
+    Returns
+    -------
+    owner, start_deg, curve : array, shape (piece,)
+        Pieces ascending by owner, then from 0 degrees to 360.
+    """
+    _, one_of_group, group = np.unique(group, return_index=True, return_inverse=True)
+    owners, of_group = np.unique(owner[one_of_group], return_inverse=True)
+    # Groups are counted by owner, so that neighbours to be merged have one owner.
+    rank = np.argsort(np.argsort(of_group, kind="stable"), kind="stable")
+    of_group = np.sort(of_group)
+    group, start_deg, curve = _filled(curves, rank[group])
+    while len(of_group) > len(owners):
+        size = np.bincount(of_group)
+        pairs = (size + 1) // 2
+        from_group, from_pair = np.cumsum(size) - size, np.cumsum(pairs) - pairs
+        number = np.arange(len(of_group)) + (2 * from_pair - from_group)[of_group]
+        alone = (2 * from_pair + size)[size % 2 == 1]  # an odd one is merged with nothing
+        group, start_deg, curve = _merged_pairs(
+            curves,
+            np.append(number[group], alone),
+            np.append(start_deg, np.zeros(len(alone))),
+            np.append(curve, np.full(len(alone), -1)),
+        )
+        of_group = np.repeat(np.arange(len(owners)), pairs)
+    return owners[of_group[group]], start_deg, curve
 
 
 def _filled(curves: Curves, group: IndexArray) -> tuple[IndexArray, FloatArray, IndexArray]:

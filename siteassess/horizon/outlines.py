@@ -1,0 +1,70 @@
+"""One file of building outlines, from its coordinates to obstacles."""
+
+from dataclasses import dataclass
+from pathlib import Path
+
+import numpy as np
+
+from siteassess.horizon.building import checked_buildings
+from siteassess.horizon.curves import FloatArray
+from siteassess.horizon.geojson import read_geojson
+from siteassess.horizon.outline_obstacles import obstacles_of
+from siteassess.horizon.placed import placed_parts, remark
+from siteassess.horizon.skyline import Obstacle
+from siteassess.horizon.vector_file import read_vector_file
+from siteassess.site_file.model import HorizonSource, Mount, Position
+
+__all__ = ["Outlines", "read_outlines"]
+
+GEOJSON = (".geojson", ".json")
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class Outlines:
+    """What one file of outlines says.
+
+    Attributes
+    ----------
+    obstacles : tuple of Obstacle
+        As seen from the antenna, in the order of the file; buildings that others hide are left out.
+    surveyed_deg : array, shape (stretch, 2)
+        Azimuths from and to of what was looked at.
+    remarks : tuple of str
+        What was changed in the outlines, in sentences.
+    """
+
+    obstacles: tuple[Obstacle, ...]
+    surveyed_deg: FloatArray
+    remarks: tuple[str, ...]
+
+
+def read_outlines(path: Path, source: HorizonSource, mount: Mount, position: Position) -> Outlines:
+    """A file of building outlines, as seen from the antenna's phase centre.
+
+    Parameters
+    ----------
+    path : Path
+        GeoJSON, or any other vector file when the extra `vector` is installed.
+    source : HorizonSource
+        Reference system, height of the ground, and whether the file holds all that hides the sky.
+    mount : Mount
+        Height of the antenna above the survey mark.
+    position : Position
+        The survey mark.
+
+    Raises
+    ------
+    InputError
+        With the mistakes of the file.
+    """
+    features = (read_geojson if path.suffix.lower() in GEOJSON else read_vector_file)(path)
+    buildings, unclosed = checked_buildings(features, path.name)
+    parts, remarks = placed_parts(buildings, source.crs or features.crs, position, path.name)
+    antenna_m = mount.phase_centre_height_m - source.ground_up_m
+    if unclosed:
+        remarks = (remark(path.name, unclosed, "was not closed and was closed"), *remarks)
+    return Outlines(
+        obstacles=obstacles_of(buildings, parts, antenna_m, path.name),
+        surveyed_deg=np.array([[0.0, 360.0]]) if source.complete else np.empty((0, 2)),
+        remarks=remarks,
+    )
