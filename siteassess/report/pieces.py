@@ -14,7 +14,7 @@ class Table:
     caption : str
         One sentence: what the table shows and how to read it.
     header : tuple of str
-        Column headings, with units.
+        Column headings, with units; a line break in one is for paper, where columns are narrow.
     rows : tuple of tuple of str
         Cells; every row has as many as `header`.
     align : str
