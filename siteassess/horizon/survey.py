@@ -26,7 +26,7 @@ from siteassess.horizon.survey_rows import Rows, cell_mistake, read_rows
 from siteassess.site_file.model import HorizonSource, Mount
 from siteassess.wording import shown
 
-__all__ = ["Survey", "read_survey"]
+__all__ = ["NORTH_AS_READ", "Survey", "read_survey"]
 
 WIDEST_STEP_DEG = 30.0  # rows of the general skyline further apart leave the sky between them unsurveyed
 NEAREST_M = 0.001  # a point nearer to the antenna's vertical axis has no azimuth

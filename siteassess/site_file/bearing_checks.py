@@ -98,7 +98,7 @@ def _place_mistakes(
 def _date_mistakes(source: HorizonSource, index: int, file: str) -> Iterator[Mistake]:
     first, last = MODEL_YEARS
     if source.surveyed_on is None:
-        yield _missing(file, index, "surveyed_on", 'bearings = "magnetic-north" need the day of the survey')
+        yield _missing(file, index, "surveyed_on", 'bearings = "magnetic-north" needs the day of the survey')
     elif not first <= source.surveyed_on <= last:
         years = f"from {first} to {last}, the years of the World Magnetic Model 2025"
         yield Mistake(

@@ -6,9 +6,10 @@ from pathlib import Path
 import numpy as np
 import pytest
 
+from siteassess.horizon.bearings import NorthTurn
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import Obstacle, Skyline
-from siteassess.horizon.survey import Survey, read_survey
+from siteassess.horizon.survey import NORTH_AS_READ, Survey, read_survey
 from siteassess.site_file.model import HorizonSource, Mount
 
 
@@ -44,10 +45,10 @@ def skyline() -> Callable[..., Skyline]:
 def survey(tmp_path: Path) -> Callable[..., Survey]:
     """Reads the text of a survey; the antenna stands 1.5 m above the mark."""
 
-    def read(text: str, **block: object) -> Survey:
+    def read(text: str, *, turn: NorthTurn = NORTH_AS_READ, years: float = 0.0, **block: object) -> Survey:
         path = tmp_path / "horizon.csv"
         path.write_text(text, encoding="utf-8")
         source = HorizonSource(source="survey", file=path.name, **block)
-        return read_survey(path, source, Mount(mast_height_m=1.5))
+        return read_survey(path, source, Mount(mast_height_m=1.5), turn=turn, years=years)
 
     return read
