@@ -25,7 +25,8 @@ __all__ = ["LINE_ELEVATIONS_DEG", "PRINTED_ELEVATIONS_DEG", "link_budget"]
 FloatArray = NDArray[np.float64]
 
 PRINTED_ELEVATIONS_DEG = np.array([5.0, 10.0, 30.0, 60.0, 90.0])
-LINE_ELEVATIONS_DEG = np.union1d(np.arange(2.5, 90.0, 5.0), PRINTED_ELEVATIONS_DEG)
+# Not np.union1d, which would load numpy.ma at every start.
+LINE_ELEVATIONS_DEG = np.sort(np.concatenate([np.arange(2.5, 90.0, 5.0), PRINTED_ELEVATIONS_DEG]))
 # Received power against elevation is smooth: read off a grid, it is within 0.001 dB of the formula.
 POWER_GRID_DEG = np.linspace(-2.0, 90.0, 921)
 

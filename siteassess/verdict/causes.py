@@ -86,10 +86,10 @@ def sector_shares(
 ) -> tuple[SectorShare, ...]:
     """Satellite-time and its losses in eight 45 degree sectors, all signals pooled."""
     time, lost = np.zeros(len(SECTOR_NAMES)), np.zeros(len(SECTOR_NAMES))
+    sector_of = ((budget.samples.azimuth_deg + 22.5) / 45.0).astype(np.int64) % len(SECTOR_NAMES)
     for signal_budget in budget.signals:
         states = by_signal[signal_budget.signal.name]
-        azimuth_deg = budget.samples.azimuth_deg[signal_budget.sample]
-        sector = (((azimuth_deg + 22.5) % 360.0) // 45.0).astype(np.int64)
+        sector = sector_of[signal_budget.sample]
         time += np.bincount(sector, weights=states.weight, minlength=len(SECTOR_NAMES))
         lost += np.bincount(sector, weights=states.weight * states.lost, minlength=len(SECTOR_NAMES))
     total = max(time.sum(), np.finfo(float).tiny)
