@@ -96,8 +96,8 @@ CASES = {
     "landmark outside the grid": (
         ["landmark_reading_deg = 10.0", "landmark_easting_m = 649000", "landmark_northing_m = -10000"],
         [GRID, ELLIPSOIDAL],
-        "horizon[1].landmark_easting_m and landmark_northing_m are 649000.0 and -10000.0; the area of EPSG:32632 "
-        "is latitude 0 to 84 and longitude 6 to 12",
+        "horizon[1].landmark_easting_m and landmark_northing_m are 649000.0 and -10000.0; the area of "
+        "EPSG:32632 is latitude 0 to 84 and longitude 6 to 12",
     ),
     "landmark at the instrument": (
         ["landmark_reading_deg = 10.0", "landmark_latitude_deg = 48.0", "landmark_longitude_deg = 11.0"],

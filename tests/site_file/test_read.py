@@ -260,8 +260,8 @@ def test_records_of_python_users_are_checked_too() -> None:
         (
             "format = 1",
             'format = 1\n"a b\\u0007" = 2',
-            '"a b " is an unknown key;'
-            " the keys here are format, site, mount, antenna, chain, horizon, sky and require",
+            '"a b " is an unknown key; the keys here are format, site, mount, antenna, chain, parts, horizon,'
+            " foliage, sky and require",
         ),
         ("57.14", "97.14", "site.latitude_deg is 97.14; it must lie from -90 to 90"),
         ("57.14", "nan", "site.latitude_deg is nan; it must be a number from -90 to 90"),
@@ -365,7 +365,13 @@ def test_records_of_python_users_are_checked_too() -> None:
         (
             "longitude_deg = -2.09",
             'longitude_deg = -2.09\ncrs = "EPSG:27700"\nheight_system = "ellipsoidal"',
-            f"site gives its position twice, by latitude_deg and longitude_deg and by crs; {EITHER_WAY}",
+            'site.crs is "EPSG:27700"; it is a projected system, which goes with easting_m and northing_m',
+        ),
+        (
+            "longitude_deg = -2.09",
+            "longitude_deg = -2.09\neasting_m = 394000",
+            "site gives its position twice, by latitude_deg and longitude_deg and by easting_m;"
+            f" {EITHER_WAY}",
         ),
         (
             "longitude_deg = -2.09",
@@ -493,11 +499,6 @@ def test_records_of_python_users_are_checked_too() -> None:
             'source = "survey"',
             'source = "terrain"',
             'horizon[1].source is "terrain"; this version supports "survey" only',
-        ),
-        (
-            'source = "survey"',
-            'source = "survey"\nbearings = "magnetic-north"',
-            'horizon[1].bearings is "magnetic-north"; this version supports "true-north" only',
         ),
     ],
 )
