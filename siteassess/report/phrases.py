@@ -25,7 +25,7 @@ COMPASS_POINTS = (
     "west",
     "north-west",
 )
-UNITS = {"deg": "°", "m": " m"}
+UNITS = {"deg": "°", "m": " m", "count": ""}
 
 
 def plain(text: str) -> str:
