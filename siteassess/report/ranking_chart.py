@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
@@ -21,12 +21,13 @@ if TYPE_CHECKING:
 __all__ = ["MOST_ROWS", "chart_svg"]
 
 FloatArray = NDArray[np.float64]
+Look = dict[str, Any]
 
 MOST_ROWS = 60
 WIDTH_IN, ABOVE_IN, BELOW_IN = 7.1, 0.42, 0.62
 ROOMY_ROW_IN, TIGHT_ROW_IN = 0.27, 0.135
 LEFT, RIGHT = 0.335, 0.695  # of the width: where the margins are drawn
-COLUMNS = ((0.775, "margin"), (0.842, "missed"), (0.917, "satellites"), (0.992, "beaten by"))
+COLUMNS = ((0.77, "margin"), (0.835, "missed"), (0.907, "satellites"), (0.992, "beaten by"))
 NAME_LETTERS = 38
 MOST_RANKS = 2
 
@@ -96,7 +97,7 @@ def _draw_frame(axes: Axes, sites: tuple[RankedSite, ...]) -> None:
         axes.spines[edge].set_visible(False)
     for place in _across(ticks).tolist():
         axes.axvline(place, color=QUIET, linewidth=0.25, zorder=1)
-    top = {"va": "bottom", "fontsize": 6.5, "color": INK}
+    top: Look = {"va": "bottom", "fontsize": 6.5, "color": INK}
     offset = axes.get_xaxis_transform()
     axes.text(-0.08, 1.005, "misses its limit", ha="right", transform=offset, **top)
     axes.text(0.08, 1.005, "room to spare", ha="left", transform=offset, **top)
@@ -153,7 +154,7 @@ def _draw_texts(axes: Axes, ranking: Ranking, sites: tuple[RankedSite, ...]) -> 
     beside = _beside(axes)
     for column, heading in COLUMNS:
         axes.text(
-            column, -0.62, heading, ha="right", va="bottom", fontsize=6.5, transform=beside, weight="bold"
+            column, -0.62, heading, ha="right", va="bottom", fontsize=6, transform=beside, weight="bold"
         )
     names = site_names(ranking)
     for row, (site, name) in enumerate(zip(sites, names[: len(sites)], strict=True)):
@@ -222,7 +223,5 @@ def _draw_key(figure: Figure, outcomes: set[str], height_in: float) -> None:
         handletextpad=0.4,
         columnspacing=1.6,
     )
-    figure.text(
-        (LEFT + RIGHT) / 2, 0.24 / height_in, "distance from the limit, relative to it", ha="center", va="bottom",
-        fontsize=6.5,
-    )  # fmt: skip
+    words = "distance from the limit, relative to it"
+    figure.text((LEFT + RIGHT) / 2, 0.24 / height_in, words, ha="center", va="bottom", fontsize=6.5)

@@ -26,7 +26,9 @@ if TYPE_CHECKING:
 __all__ = ["ranking_content"]
 
 MOST_RANKS = 4
-MOST_NAMED = 6
+MOST_NAMED = 4
+MOST_TOLD, MOST_PRICED = 2, 4  # differences: on the first page, in the table
+TONES = {"pass": "met", "unproven": "unproven", "fail": "missed"}
 
 RULES = (
     "First by verdict: pass before unproven before fail. Then by the number of required criteria that are "
@@ -34,7 +36,7 @@ RULES = (
     "Then by margin. The room of a criterion is how far inside its limit a site lies, relative to the limit; "
     "it is negative where the limit is missed. The margin of a site is the smallest room of its required "
     "criteria. Where two margins are equal, the next smallest room decides, and so on.",
-    "Then by the mean number of satellites that are usable at once, then by the room of advice, then by name.",
+    "Then by the mean number of satellites usable at once, then by the room of advice, then by name.",
     "A spot is beaten when another one is at least as good in everything, and better in something: verdict, "
     "every required criterion, every advice, usable satellites. Whoever beats a spot stands above it. Spots "
     "that are held against different criteria do not beat each other.",
@@ -82,8 +84,8 @@ def _answers(ranking: Ranking) -> tuple[Answer, ...]:
             Answer(
                 label="Second",
                 question="What is the second choice, and what does it cost?",
-                answer=f"{names[1]}; it {_verdict(second)}. It gives up: {gives_up(second)}. "
-                f"It gains: {gains(second)}.",
+                answer=f"{names[1]}; it {_verdict(second)}. It gives up: {gives_up(second, MOST_TOLD)}. "
+                f"It gains: {gains(second, MOST_TOLD)}.",
             )
         )
     answers.append(Answer(label="Count", question="How many are good enough?", answer=_how_many(ranking)))
@@ -106,7 +108,9 @@ def _why(site: RankedSite) -> str:
     closest = f"{name}, {value} against {limit}"
     asked = len(candidate.required)
     if candidate.outcome == "pass":
-        return f"It passes, with a margin of {margin_text(candidate.margin)}. Its closest criterion is {closest}."
+        return (
+            f"It passes. Its margin is {margin_text(candidate.margin)}; its closest criterion is {closest}."
+        )
     if candidate.outcome == "unproven":
         return (
             f"No spot passes. This one misses nothing, with a margin of {margin_text(candidate.margin)}, but "
@@ -121,12 +125,10 @@ def _why(site: RankedSite) -> str:
 
 def _how_many(ranking: Ranking) -> str:
     outcomes = [site.candidate.outcome for site in ranking.sites]
-    counts = [
-        f"{outcomes.count('pass')} of {len(outcomes)} pass",
-        f"{outcomes.count('unproven')} are unproven",
-        f"{outcomes.count('fail')} fail",
-    ]
-    text = listed(counts) + "."
+    counts = [f"{outcomes.count('pass') or 'none'} of {len(outcomes)} pass"]
+    counts += [f"{outcomes.count('unproven')} unproven"] if "unproven" in outcomes else []
+    counts += [f"{outcomes.count('fail')} failing"] if "fail" in outcomes else []
+    text = f"{', '.join(counts).capitalize()}."
     if ranking.refused:
         text += f" {_spots(len(ranking.refused)).capitalize()} could not be assessed."
     return text
@@ -136,11 +138,11 @@ def _left_out(ranking: Ranking, names: list[str]) -> str:
     beaten = [(site.rank, name) for site, name in zip(ranking.sites, names, strict=True) if site.dominated_by]
     if not beaten:
         return "None: each is better than every other one in something."
-    named = listed(f"no. {rank}, {name}" for rank, name in beaten[:MOST_NAMED])
+    named = "; ".join(f"no. {rank}, {name}" for rank, name in beaten[:MOST_NAMED])
     more = len(beaten) - MOST_NAMED
     return (
-        f"{_spots(len(beaten)).capitalize()}, each beaten by another one in everything: "
-        f"{named}{f' and {more} more' if more > 0 else ''}."
+        f"{_spots(len(beaten)).capitalize()}, beaten by another one in everything: "
+        f"{named}{f'; and {more} more' if more > 0 else ''}."
     )
 
 
@@ -184,17 +186,22 @@ def _order_section(ranking: Ranking) -> Section:
                 "hidden: sky above the mask behind solid obstacles; beaten by: spots that are better in "
                 "everything.",
                 header=(
-                    "No.", "Spot", "Site file", "Verdict", "Missed", "Margin", "Satellites", "Hidden", "Beaten by",
+                    "No.",
+                    "Spot",
+                    "Site file",
+                    "Verdict",
+                    "Missed",
+                    "Margin",
+                    "Satellites",
+                    "Hidden",
+                    "Beaten by",
                 ),
                 rows=tuple(_order_row(site, name) for site, name in zip(ranking.sites, names, strict=True)),
                 align="rlllrrrrl",
                 tones=tuple(TONES[site.candidate.outcome] for site in ranking.sites),
             ),
         ),
-    )  # fmt: skip
-
-
-TONES = {"pass": "met", "unproven": "unproven", "fail": "missed"}
+    )
 
 
 def _order_row(site: RankedSite, name: str) -> tuple[str, ...]:
@@ -235,11 +242,11 @@ def _price_section(ranking: Ranking) -> Section:
         sentences=(f"Each spot beside the first, {names[0]}.",),
         tables=(
             Table(
-                caption="Required criteria first, the largest difference first. The name of a signal stands for "
-                "its usable share.",
+                caption="Required criteria first, the largest difference first. The name of a signal stands "
+                "for its usable share.",
                 header=("No.", "Spot", "It gives up", "It gains"),
                 rows=tuple(
-                    (str(site.rank), name, gives_up(site), gains(site))
+                    (str(site.rank), name, gives_up(site, MOST_PRICED), gains(site, MOST_PRICED))
                     for site, name in zip(ranking.sites[1:], names[1:], strict=True)
                 ),
                 align="rlll",

@@ -2,6 +2,8 @@
 
 from __future__ import annotations
 
+from math import ceil
+from textwrap import wrap
 from typing import TYPE_CHECKING
 
 from siteassess.report.phrases import NOTHING, in_unit, plain, told_apart
@@ -16,7 +18,8 @@ if TYPE_CHECKING:
 
 __all__ = ["criteria_tables", "criterion_columns"]
 
-COLUMNS_OF_A_TABLE = 6
+MOST_COLUMNS = 6
+HEADING_LETTERS = 14
 SIGNS = {"met": "", "missed": "*", "unproven": "?"}
 
 
@@ -50,16 +53,15 @@ def criteria_tables(ranking: Ranking) -> tuple[Table, ...]:
     return _tables(
         ranking,
         asked,
-        "Required by at least one site. The name of a signal stands for its usable share. * misses its limit; "
-        "? met only if the unsurveyed sky is open.",
+        "Required by at least one site. The name of a signal stands for its usable share. "
+        "* misses its limit; ? met only if the unsurveyed sky is open.",
     ) + _tables(ranking, advised, "Advice, which fails no site. * is beyond it; ? as above.")
 
 
 def _tables(ranking: Ranking, columns: list[tuple[str, str | None]], caption: str) -> tuple[Table, ...]:
     names = site_names(ranking)
-    parts = [
-        columns[start : start + COLUMNS_OF_A_TABLE] for start in range(0, len(columns), COLUMNS_OF_A_TABLE)
-    ]
+    width = ceil(len(columns) / max(ceil(len(columns) / MOST_COLUMNS), 1)) or 1
+    parts = [columns[start : start + width] for start in range(0, len(columns), width)]
     return tuple(
         Table(
             caption=caption,
@@ -85,10 +87,12 @@ def _heading(ranking: Ranking, column: tuple[str, str | None]) -> str:
     findings = [_finding(site.candidate, column) for site in ranking.sites]
     limits = {(finding.limit, finding.unit) for finding in findings if finding is not None}
     name = plain(criterion_name(*column))
-    if len(limits) > 1:
-        return f"{name} (limits differ)"
-    limit, unit = limits.pop()
-    return f"{name} ({read_criteria()[column[0]].sense} {in_unit(limit, unit)})"
+    asked = "limits differ"
+    if len(limits) == 1:
+        limit, unit = limits.pop()
+        asked = f"{read_criteria()[column[0]].sense} {in_unit(limit, unit)}"
+    lines = wrap(name, HEADING_LETTERS, break_long_words=False, break_on_hyphens=False)
+    return "\n".join([*lines, asked])
 
 
 def _cell(candidate: Candidate, column: tuple[str, str | None]) -> str:

@@ -20,6 +20,19 @@ if TYPE_CHECKING:
 __all__ = ["FORMAT", "ranking_csv", "ranking_frame", "ranking_json", "ranking_record"]
 
 FORMAT = "siteassess-ranking/1"
+COLUMNS = (
+    "rank",
+    "name",
+    "site",
+    "latitude_deg",
+    "longitude_deg",
+    "height_m",
+    "verdict",
+    "required",
+    "required_missed",
+    "margin",
+    "usable_satellites",
+)
 TEXT_COLUMNS = ("name", "site", "verdict", "dominated_by")
 
 
@@ -123,8 +136,8 @@ def _refused(site: RefusedCandidate) -> dict[str, Any]:
 def ranking_frame(ranking: Ranking) -> pd.DataFrame:
     """One row a site in the order of choice: rank, names, verdict, margin, and the value of every criterion.
 
-    The column of a criterion is its key, followed by the signal where it is about one; NaN where a site is not
-    held against it.
+    The column of a criterion is its key, followed by the signal where it is about one; NaN where a site is
+    not held against it.
     """
     import pandas as pd
 
@@ -136,17 +149,11 @@ def ranking_frame(ranking: Ranking) -> pd.DataFrame:
             (finding["criterion"], finding["signal"]): finding["value"] for finding in record["findings"]
         }
         rows.append(
-            {
-                key: record[key]
-                for key in (
-                    "rank", "name", "site", "latitude_deg", "longitude_deg", "height_m", "verdict", "required",
-                    "required_missed", "margin", "usable_satellites",
-                )
-            }
+            {key: record[key] for key in COLUMNS}
             | {"dominated_by": " ".join(map(str, site.dominated_by))}
             | record["sky"]
             | {" ".join(filter(None, column)): values.get(column) for column in columns}
-        )  # fmt: skip
+        )
     return pd.DataFrame(rows)
 
 

@@ -4,14 +4,13 @@ from collections import Counter
 from collections.abc import Sequence
 
 from siteassess.candidates.ranking import USABLE_SATELLITES, Difference, RankedSite, Ranking
-from siteassess.report.phrases import NOTHING, number, percent, plain, told_apart
+from siteassess.report.phrases import NOTHING, percent, plain, told_apart
 from siteassess.verdict.criteria import read_criteria
 
 __all__ = ["OUTCOMES", "beaten_by", "criterion_name", "gains", "gives_up", "margin_text", "site_names"]
 
 OUTCOMES = {"pass": "passes", "unproven": "unproven", "fail": "fails"}
 MOST_SHOWN_PERCENT = 999.0
-MOST_DIFFERENCES = 5
 
 
 def site_names(ranking: Ranking) -> list[str]:
@@ -57,18 +56,18 @@ def beaten_by(site: RankedSite, most_ranks: int) -> str:
     return "no. " + ", ".join(str(rank) for rank in ranks) if ranks else NOTHING
 
 
-def gives_up(site: RankedSite) -> str:
-    """Where the site is worse than the first."""
-    return _differences([difference for difference in site.differences if difference.gain < 0])
+def gives_up(site: RankedSite, most: int) -> str:
+    """Where the site is worse than the first, the first few of the criteria."""
+    return _differences([difference for difference in site.differences if difference.gain < 0], most)
 
 
-def gains(site: RankedSite) -> str:
-    """Where the site is better than the first."""
-    return _differences([difference for difference in site.differences if difference.gain > 0])
+def gains(site: RankedSite, most: int) -> str:
+    """Where the site is better than the first, the first few of the criteria."""
+    return _differences([difference for difference in site.differences if difference.gain > 0], most)
 
 
-def _differences(differences: Sequence[Difference]) -> str:
-    told = [_difference(difference) for difference in differences[:MOST_DIFFERENCES]]
+def _differences(differences: Sequence[Difference], most: int) -> str:
+    told = [_difference(difference) for difference in differences[:most]]
     more = len(differences) - len(told)
     if more > 0:
         told.append(f"and {more} more")
@@ -77,8 +76,5 @@ def _differences(differences: Sequence[Difference]) -> str:
 
 def _difference(difference: Difference) -> str:
     name = criterion_name(difference.criterion, difference.signal)
-    if difference.unit == "count":
-        value, first = number(difference.value), number(difference.first_value)
-    else:
-        value, first = told_apart(difference.value, difference.first_value, difference.unit)
+    value, first = told_apart(difference.value, difference.first_value, difference.unit)
     return f"{name} {value} instead of {first}"
