@@ -3,10 +3,12 @@
 import errno
 import io
 import shlex
+import signal
 import sys
 from collections.abc import Callable, Iterator
 from contextlib import contextmanager
 from pathlib import Path
+from types import FrameType
 from typing import TYPE_CHECKING, Any
 
 import click
@@ -44,7 +46,8 @@ class Commands(click.Group):
             # Names may hold signs that the terminal's encoding lacks.
             sys.stdout.reconfigure(errors="replace")
         try:
-            return super().invoke(ctx)
+            with _interruptible():
+                return super().invoke(ctx)
         except SiteAssessError as error:
             messages = [str(mistake) for mistake in error.mistakes]
         except OSError as error:
@@ -183,7 +186,9 @@ def antenna(pattern: str, out: Path | None, as_json: bool) -> None:
     "--out", type=click.Path(path_type=Path), metavar="FOLDER",
     help="Write the ranking here instead of ranking-report in the working folder.",
 )  # fmt: skip
-@click.option("--json", "as_json", is_flag=True, help="Print the ranking as JSON; write files only with --out.")
+@click.option(
+    "--json", "as_json", is_flag=True, help="Print the ranking as JSON; write files only with --out."
+)
 @click.option("--jobs", type=click.IntRange(min=1), metavar="N", help="Number of processes; one a core.")
 @click.option("--quiet", is_flag=True, help="No summary, notes or progress.")
 @click.option("--require-pass", is_flag=True, help="Exit with 3 unless a site passes.")
@@ -243,6 +248,30 @@ def rank(
         ctx.exit(1)
     if require_pass and ranking.sites[0].candidate.outcome != "pass":
         ctx.exit(3)
+
+
+@contextmanager
+def _interruptible() -> Iterator[None]:
+    """Ends an interrupted command as such, whatever a library makes of it that was just being loaded."""
+    interrupted = False
+
+    def interrupt(number: int, frame: FrameType | None) -> None:
+        nonlocal interrupted
+        interrupted = True
+        signal.default_int_handler(number, frame)
+
+    if signal.getsignal(signal.SIGINT) is not signal.default_int_handler:  # ignored, as in the background
+        yield
+        return
+    signal.signal(signal.SIGINT, interrupt)
+    try:
+        yield
+    except Exception:
+        if interrupted:
+            raise KeyboardInterrupt from None
+        raise
+    finally:
+        signal.signal(signal.SIGINT, signal.default_int_handler)
 
 
 def _tell(text: str, indent: str = "") -> None:
