@@ -174,6 +174,40 @@ CASES = {
     ),
 }
 
+GROWTH_CASES = {
+    "growth out of range": (
+        "10,5,20,a,foliage,3,6\n20,5,20,a,foliage,3,-1",
+        [
+            "line 2, growth_m_per_year is 6; it must lie from 0 to 5",
+            "line 3, growth_m_per_year is -1; it must lie from 0 to 5",
+        ],
+    ),
+    "growth without a distance": (
+        "10,5,,a,foliage,3,0.3\n20,5,,a,foliage,3,",
+        ["line 2, growth_m_per_year is 0.3; it needs a distance in the same row"],
+    ),
+    "growth of what is solid": (
+        "10,5,20,a,solid,,0.3\n20,5,20,a,,,",
+        ["line 2, growth_m_per_year is 0.3; it may stand only where cover is foliage"],
+    ),
+    "growth of the general skyline": (
+        "10,5,20,,,,0.3\n20,5,20,,,,",
+        ["line 2, growth_m_per_year is 0.3; a row that gives it must name its obstacle"],
+    ),
+    "growth is no number": (
+        "10,5,20,a,foliage,3,fast\n20,5,20,a,foliage,3,",
+        ['line 2, growth_m_per_year is "fast"; it must be a number'],
+    ),
+}
+
+
+@pytest.mark.parametrize(("rows", "expected"), GROWTH_CASES.values(), ids=GROWTH_CASES.keys())
+def test_message_about_growth(rows: str, expected: list[str], survey: Read) -> None:
+    header = "azimuth_deg,elevation_deg,distance_m,obstacle,cover,depth_m,growth_m_per_year\n"
+    with pytest.raises(InputError) as refusal:
+        survey(header + rows + "\n")
+    assert str(refusal.value).splitlines() == [f"horizon.csv: {message}" for message in expected]
+
 
 @pytest.mark.parametrize(("rows", "expected"), CASES.values(), ids=CASES.keys())
 def test_message(rows: list[str], expected: list[str], survey: Read) -> None:

@@ -4,7 +4,10 @@ import numpy as np
 import pytest
 
 from siteassess.link_budget.foliage import (
+    FOLIAGE_MODELS,
     leaf_factor,
+    leaves_loss_db,
+    mixed_forest_loss_db,
     slant_path_loss_db,
     weissberger_loss_db,
     woodland_loss_db,
@@ -86,3 +89,41 @@ def test_shapes_broadcast_and_nan_stays(shape: tuple[int, ...]) -> None:
     assert np.shape(woodland_loss_db(depth_m, 0.3, 29.0)) == shape
     assert np.isnan(slant_path_loss_db(np.nan, L1_HZ, 30.0))
     assert np.isnan(weissberger_loss_db(np.nan, L1_HZ))
+
+
+# ITU-R P.833-10, Table 1, mixed forest: its own carriers, and between them linearly (0.26 dB/m and 28.2 dB at
+# 1575.42 MHz).
+@pytest.mark.parametrize(
+    ("carrier_hz", "loss_db"),
+    [(949e6, 1.647), (1852.2e6, 2.850), (L1_HZ, 28.23 * (1 - np.exp(-2.602 / 28.23)))],
+)
+def test_mixed_forest_follows_the_table(carrier_hz: float, loss_db: float) -> None:
+    assert mixed_forest_loss_db(10.0, carrier_hz) == pytest.approx(loss_db, abs=MILLIBEL_HALF)
+
+
+# The same three publications, 10 m of leaves at 30 degrees on L1; a bare tree costs 1 / 1.2 of it [P.833].
+@pytest.mark.parametrize(
+    ("model", "loss_db"), [("P.833 slant path", 9.306), ("P.833 woodland", 2.486), ("Weissberger", 5.120)]
+)
+def test_models_are_chosen_by_name(model: str, loss_db: float) -> None:
+    assert leaves_loss_db(model, "in-leaf", 10.0, L1_HZ, 30.0) == pytest.approx(loss_db, abs=MILLIBEL_HALF)
+    assert leaves_loss_db(model, "evergreen", 10.0, L1_HZ, 30.0) == pytest.approx(loss_db, abs=MILLIBEL_HALF)
+    assert leaves_loss_db(model, "leafless", 10.0, L1_HZ, 30.0) == pytest.approx(
+        loss_db / 1.2, abs=MILLIBEL_HALF
+    )
+
+
+def test_every_model_of_the_site_file_is_there() -> None:
+    from typing import get_args
+
+    from siteassess.site_file.model import Foliage
+
+    assert set(get_args(Foliage.model_fields["model"].annotation)) == set(FOLIAGE_MODELS)
+
+
+def test_models_take_arrays_that_broadcast() -> None:
+    for model in FOLIAGE_MODELS:
+        loss_db = leaves_loss_db(
+            model, "in-leaf", np.array([[1.0], [5.0]]), L1_HZ, np.array([5.0, 10.0, 20.0])
+        )
+        assert np.broadcast_shapes(np.shape(loss_db), (2, 3)) == (2, 3)
