@@ -51,6 +51,8 @@ UNITS = {
     "_dbw": "dBW",
     "_dbhz": "dB-Hz",
     "_dbw_per_hz": "dBW/Hz",
+    "_db_per_k": "dB/K",
+    "_dbm": "dBm",
     "_share": "1",
 }
 

@@ -20,7 +20,7 @@ TABLES = sorted(
 
 UNIT_SUFFIXES = (
     *("_deg", "_m", "_s", "_hz", "_k", "_db", "_dbi", "_dbic", "_dbw", "_dbhz", "_share"),
-    *("_per_day", "_utc"),
+    *("_per_day", "_utc", "_per_100m", "_v", "_ma"),
 )
 # Numbers that have no unit, or that carry it in the column beside them.
 WITHOUT_UNIT = {"slot", "advice_limit", "order", "f", "g"}
@@ -28,6 +28,11 @@ WITHOUT_UNIT = {"slot", "advice_limit", "order", "f", "g"}
 # A blank cell means something in these columns; everywhere else it is a gap.
 MAY_BE_BLANK = {
     "link_budget/beam.csv": {"gps_l1_ca_dbw", "gps_l1_p_dbw", "gps_l2_p_dbw"},  # peaks lie apart
+    "link_budget/parts.csv": {  # a kind has what its construction has
+        *("k1_db_per_100m", "k2_db_per_100m", "ohm_per_100m", "loss_db", "gain_db", "noise_figure_db"),
+        *("supply_voltage_v", "supply_current_ma", "min_supply_voltage_v", "max_supply_voltage_v"),
+        "passes_supply",
+    },
     "link_budget/signals.csv": {"meo_dbw", "igso_dbw", "geo_dbw", "atmosphere_included_db"},
     "orbits/beidou.csv": {
         *("node_deg", "argument_of_latitude_deg", "crossing_longitude_deg"),
@@ -140,5 +145,5 @@ def test_every_signal_has_satellites_in_the_constellation_tables() -> None:
 
 def test_criteria_say_how_they_are_met() -> None:
     for row in packaged_rows("verdict/criteria.csv"):
-        assert row["unit"] in {"share", "deg", "m"}
+        assert row["unit"] in {"share", "deg", "m", "dB", "dB/m", "V"}
         assert row["sense"] in {"at least", "at most"}

@@ -115,11 +115,11 @@ def _saturation(
         return None
     worst = min(margins, key=lambda margin: margin.margin_db)
     unwanted = (
-        "no transmitter outside the navigation bands is stated"
+        " alone"
         if unwanted_level_dbm is None
-        else f"{unwanted_level_dbm:g} dBm from outside the navigation bands at the antenna port"
+        else f", and other transmitters, {unwanted_level_dbm:g} dBm at the antenna port"
     )
-    reason = f"{worst.level_dbm:.1f} dBm reach {worst.part}: noise, with {unwanted}."
+    reason = f"{worst.level_dbm:.1f} dBm reach {worst.part}: noise of the navigation bands{unwanted}."
     return _finding("min_saturation_margin_db", require, worst.margin_db, reason)
 
 

@@ -15,7 +15,7 @@ from pathlib import Path
 
 import numpy as np
 from numpy.typing import NDArray
-from scipy.special import fresnel
+from scipy.special import erf, fresnel
 
 from siteassess import assess, read_site
 from siteassess.constants import BOLTZMANN_J_PER_K, SPEED_OF_LIGHT_M_PER_S
@@ -31,9 +31,11 @@ from siteassess.link_budget.diffraction import (
 )
 from siteassess.link_budget.foliage import slant_path_loss_db, weissberger_loss_db
 from siteassess.link_budget.gases import gas_loss_db
+from siteassess.link_budget.parts import part_kinds, whole_part
 from siteassess.link_budget.power import received_power
-from siteassess.link_budget.receive_chain import cascade
+from siteassess.link_budget.receive_chain import QUANTISATION_LOSS_DB, cascade, value_at_carrier
 from siteassess.link_budget.signals import read_signals
+from siteassess.link_budget.supply import supply_voltages_v
 from siteassess.orbits.constellations import nominal_orbits
 from siteassess.orbits.secular import secular_rates
 from siteassess.site_file.model import Part, Position
@@ -394,6 +396,48 @@ def _noise_rows() -> Iterator[Row]:
         decimals=2,
         source="[Pozar], problem on a GPS receiver, solved for the noise figure",
     )
+    for kind, carrier_hz, expected_db in (
+        ("foam, 10 mm", L1_HZ, 17.27),
+        ("foam, 10 mm", 1176.45e6, 14.8),
+        ("foam, 6 mm", L1_HZ, 33.2),
+        ("RG-58", 850e6, 58.2),
+    ):
+        cable = _cable(kind, carrier_hz)
+        yield Row(
+            quantity=f"loss of 100 m of {kind}, {carrier_hz / 1e6:.10g} MHz",
+            ours=value_at_carrier(cable.loss_db or 0.0, carrier_hz),
+            authority=expected_db,
+            unit="dB",
+            decimals=2 if expected_db == 17.27 else 1,
+            source="published coax table" if kind.startswith("RG") else "cable data sheets by construction",
+        )
+    for kind, expected_v in {"RG-58": 0.30, "foam, 6 mm": 0.14, "foam, 10 mm": 0.06}.items():
+        preamplifier = Part(part="preamplifier", gain_db=30.0, noise_figure_db=2.0, supply_current_ma=60.0)
+        chain = (
+            preamplifier,
+            _cable(kind, L1_HZ),
+            Part(part="receiver", noise_figure_db=8.0, supply_voltage_v=5.0),
+        )
+        yield Row(
+            quantity=f"voltage lost by 60 mA in 100 m of {kind}",
+            ours=5.0 - (supply_voltages_v(chain)[0] or 0.0),
+            authority=expected_v,
+            unit="V",
+            decimals=2,
+            source="Ohm's law with the resistance of data sheets",
+        )
+    for bits, authority_db, source in (
+        ("1-bit", 10.0 * math.log10(math.pi / 2.0), "closed form, pi / 2"),
+        ("2-bit", _four_level_loss_db(), "Gaussian integral, weights 1 and 3, best threshold"),
+    ):
+        yield Row(
+            quantity=f"loss by rounding to {bits}",
+            ours=QUANTISATION_LOSS_DB[bits],
+            authority=authority_db,
+            unit="dB",
+            decimals=2,
+            source=source,
+        )
     yield Row(
         quantity="noise density at 290 K",
         ours=_noise_density_dbw_per_hz(290.0),
@@ -402,6 +446,19 @@ def _noise_rows() -> Iterator[Row]:
         decimals=3,
         source="k of the SI, exact",
     )
+
+
+def _cable(kind: str, carrier_hz: float) -> Part:
+    return whole_part(Part(part="cable", kind=kind, length_m=100.0), part_kinds()[kind], [carrier_hz])
+
+
+def _four_level_loss_db() -> float:
+    """Loss of a weak signal in Gaussian noise, rounded to the weights 1 and 3, at the best threshold."""
+    threshold = np.linspace(0.5, 1.5, 1001)
+    density = np.exp(-(threshold**2) / 2.0) / math.sqrt(2.0 * math.pi)
+    slope = 2.0 / math.sqrt(2.0 * math.pi) + 4.0 * density
+    power = 1.0 + 8.0 * (1.0 - erf(threshold / math.sqrt(2.0)))
+    return float(-10.0 * np.log10(np.max(slope**2 / power)))
 
 
 def _noise_density_dbw_per_hz(temperature_k: float) -> float:

@@ -18,6 +18,7 @@ TABLES = {
     "[site]": "Place",
     "[mount]": "Mount",
     "[antenna]": "AntennaChoice",
+    "[parts]": "PartsChoice",
     "[[chain]]": "Part",
     "[[horizon]]": "HorizonSource",
     "[sky]": "SkyModel",
@@ -69,8 +70,8 @@ def test_every_table_stands_on_the_page(key: str) -> None:
 @pytest.mark.parametrize(("heading", "key"), KEYS)
 def test_every_key_describes_itself_with_its_unit(heading: str, key: str) -> None:
     description = SCHEMA["$defs"][TABLES[heading]]["properties"][key]["description"]
-    unit = re.search(r"_(deg|m|db|k|s|dbhz|share)$", key)
-    names = {"db": "dB", "k": "K", "dbhz": "dB-Hz"}
+    unit = re.search(r"_(db_per_m|deg|m|db|dbm|k|s|dbhz|share|v|ma|ohm)$", key)
+    names = {"db": "dB", "k": "K", "dbhz": "dB-Hz", "db_per_m": "dB/m", "dbm": "dBm", "v": "V", "ma": "mA"}
     if unit:
         assert f"[{names.get(unit[1], unit[1])}]" in description
 
