@@ -35,7 +35,7 @@ def chain_section(assessment: Assessment) -> Section:
 
 def part_name(part: Part) -> str:
     """A part's name with kind, length and number, where it has them."""
-    details = [part.kind] if part.kind else []
+    details = [part.kind] if part.kind and part.kind != part.part else []
     if part.length_m:
         details.append(f"{part.length_m:g} m")
     if part.count > 1:

@@ -43,6 +43,13 @@ def test_the_nearest_source_feeds() -> None:
     )
 
 
+def test_a_source_does_not_carry_what_another_feeds() -> None:
+    # Hand calculation: only the 40 mA behind the feed of 12 V run through the 2 ohm.
+    feed = Part(part="feed", loss_db=0.3, loop_resistance_ohm=0.0, supply_voltage_v=12.0)
+    chain = (amplifier(60.0), feed, amplifier(40.0), line(2.0), receiver())
+    assert supply_voltages_v(chain) == pytest.approx((12.0, None, 5.0 - 0.08, None, None))
+
+
 def test_what_blocks_direct_current_leaves_nothing() -> None:
     chain = (amplifier(), line(1.0), line(0.0, passes_supply=False), receiver())
     assert preamplifier_voltage_v(chain) == 0.0
