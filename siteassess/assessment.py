@@ -50,7 +50,7 @@ class Assessment:
     tracks: SkyTracks
     budget: LinkBudget
     verdict: Verdict
-    what_if: tuple[Change, ...] = ()
+    what_if: tuple[Change, ...]
 
 
 def assess(site: Site) -> Assessment:

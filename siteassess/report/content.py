@@ -6,7 +6,9 @@ from typing import TYPE_CHECKING
 
 from siteassess.report.answers import VERDICTS, answers
 from siteassess.report.chain import chain_section
-from siteassess.report.levels import antenna_section, budget_section, noise_section
+from siteassess.report.changes import changes_section
+from siteassess.report.levels import antenna_section, budget_section
+from siteassess.report.noise import noise_section
 from siteassess.report.outcomes import (
     counts_section,
     findings_section,
@@ -64,6 +66,7 @@ def report_content(assessment: Assessment) -> Content:
             noise_section(assessment),
             chain_section(assessment),
             antenna_section(assessment),
+            changes_section(assessment),
             _survey_section(assessment),
             Section(key="assumptions", heading="What was assumed", points=assumptions(assessment)),
             Section(key="limits", heading="Limits of the method", points=LIMITS),

@@ -19,7 +19,7 @@ def document_pdf(content: Content, figures: dict[str, str]) -> bytes:
     content : Content
         What is said.
     figures : dict of str to str
-        "skyplot" and "panorama" as SVG.
+        By name, as SVG.
     """
     import typst
 

@@ -1,4 +1,4 @@
-"""Sections on signal strength: the budget line by line, noise, antenna and chain."""
+"""Sections on signal strength: the budget line by line, the antenna."""
 
 from __future__ import annotations
 
@@ -7,15 +7,16 @@ from typing import TYPE_CHECKING
 import numpy as np
 
 from siteassess.report.chain import part_name
-from siteassess.report.phrases import decibels, number, percent, plain
+from siteassess.report.phrases import number, percent, plain
 from siteassess.report.pieces import Section, Table
+from siteassess.report.waterfall import HALF_BAND_DEG, Waterfall, waterfall
 
 if TYPE_CHECKING:
     from siteassess.assessment import Assessment
     from siteassess.link_budget.budget import BudgetLines, SignalBudget
     from siteassess.site_file.model import ByCarrier, Part
 
-__all__ = ["antenna_section", "budget_section", "noise_section"]
+__all__ = ["antenna_section", "budget_section"]
 
 PRINTED_ELEVATIONS_DEG = (5.0, 10.0, 30.0, 60.0, 90.0)
 
@@ -26,12 +27,28 @@ def budget_section(assessment: Assessment) -> Section:
         key="budget",
         heading="From the satellite to C/N0, line by line",
         sentences=(
-            "Under an open sky, at this place, with this antenna and chain. Losses are subtracted. "
-            "The gain is averaged over azimuth.",
+            "The tables hold under an open sky, at this place, with this antenna and chain. Losses are "
+            "subtracted. The gain is averaged over azimuth.",
         ),
+        figure="waterfall",
+        figure_caption=_waterfall_caption(waterfall(assessment)),
         tables=tuple(
             _budget_table(budget, lines) for budget in assessment.budget.signals for lines in budget.lines
         ),
+    )
+
+
+def _waterfall_caption(fall: Waterfall) -> str:
+    hidden = (
+        ""
+        if not fall.hidden_share
+        else f" Obstacles hide {percent(fall.hidden_share)} of the positions there."
+    )
+    return (
+        f"Which part costs what: {fall.signal}, {fall.orbit_class} satellites at {fall.elevation_deg:g}° "
+        "elevation, decibel by decibel. The upper bars run from the satellite to C/N0 of a 0 dBic antenna "
+        "with noise of 290 K; the lower ones go on from there on a wider scale. Obstacles and leaves count "
+        f"by their mean within {HALF_BAND_DEG:g}° of elevation, where they do not hide.{hidden}"
     )
 
 
@@ -68,42 +85,6 @@ def _budget_table(budget: SignalBudget, lines: BudgetLines) -> Table:
         align="lrrrrr",
         tones=("", "", "", "total", "", "", "", "", "total", ""),
     )
-
-
-def noise_section(assessment: Assessment) -> Section:
-    """Noise by carrier."""
-    by_carrier = {budget.noise.carrier_hz: budget.noise for budget in assessment.budget.signals}
-    table = Table(
-        caption=(
-            "Noise referred to the antenna port. "
-            "Efficiency: mean of co- plus cross-polar gain over the sphere."
-        ),
-        header=(
-            "Carrier, MHz",
-            "Antenna, K",
-            "Chain, K",
-            "System, K",
-            "Noise figure, dB",
-            "N0, dBW/Hz",
-            "Net gain, dB",
-            "Efficiency",
-        ),
-        rows=tuple(
-            (
-                number(noise.carrier_hz / 1e6, 3),
-                number(noise.antenna_temperature_k),
-                number(noise.chain_temperature_k),
-                number(noise.system_temperature_k),
-                number(noise.noise_figure_db, 2),
-                number(noise.noise_density_dbw_per_hz, 2),
-                decibels(noise.net_gain_db),
-                percent(noise.antenna_efficiency),
-            )
-            for noise in by_carrier.values()
-        ),
-        align="rrrrrrrr",
-    )
-    return Section(key="noise", heading="Noise", tables=(table,))
 
 
 def antenna_section(assessment: Assessment) -> Section:

@@ -16,7 +16,7 @@ def page_html(content: Content, figures: dict[str, str]) -> str:
     content : Content
         What is said.
     figures : dict of str to str
-        "skyplot" and "panorama" as SVG.
+        By name, as SVG.
     """
     from jinja2 import Environment, StrictUndefined
     from markupsafe import Markup

@@ -43,7 +43,7 @@ class Section:
     sentences : tuple of str
         Paragraphs.
     figure : str
-        "skyplot", "panorama" or "" for none.
+        Name of a figure, as `report_figures` has it, or "" for none.
     figure_caption : str
         What the figure shows and how to read it.
     tables : tuple of Table

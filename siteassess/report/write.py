@@ -44,14 +44,13 @@ def _files(assessment: Assessment, tell: Callable[[str], None]) -> Iterator[NewF
     """The files of the report, the figures being drawn once."""
     from siteassess.report.content import report_content
     from siteassess.report.document import document_pdf
+    from siteassess.report.figures import report_figures
     from siteassess.report.page import page_html
-    from siteassess.report.panorama import panorama_svg
     from siteassess.report.results import json_text
     from siteassess.report.satellite_table import csv_text
-    from siteassess.report.skyplot import skyplot_svg
 
     tell("drawing the sky")
-    figures = {"skyplot": skyplot_svg(assessment), "panorama": panorama_svg(assessment)}
+    figures = report_figures(assessment)
     content = report_content(assessment)
     yield NewFile("report.html", lambda: page_html(content, figures).encode(), "writing the page")
     yield NewFile("report.pdf", lambda: document_pdf(content, figures), "setting the document")
