@@ -99,9 +99,7 @@ class ChainNoise:
     @property
     def surroundings_cost_db(self) -> float:
         """C/N0 [dB] that the noise of obstacles and leaves costs, against level and open ground."""
-        return float(
-            to_db(self.system_temperature_k / (self.antenna.open_site_k + self.chain_temperature_k))
-        )
+        return float(to_db(self.system_temperature_k / (self.antenna.open_site_k + self.chain_temperature_k)))
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)
