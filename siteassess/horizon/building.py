@@ -187,11 +187,11 @@ def _parts(geometry: Any) -> tuple[list[tuple[Ring, ...]], bool]:
     coordinates = geometry.get("coordinates")
     polygons = [coordinates] if kind == "Polygon" else coordinates
     if not isinstance(polygons, list) or not polygons:
-        raise _WrongShapeError(", coordinates", "is no list of positions", SHAPES)
+        raise _WrongShapeError(", coordinates", "are no list of positions", SHAPES)
     parts, closed = [], False
     for polygon in polygons:
         if not isinstance(polygon, list) or not polygon:
-            raise _WrongShapeError(", coordinates", "holds a polygon without rings", SHAPES)
+            raise _WrongShapeError(", coordinates", "hold a polygon without rings", SHAPES)
         rings = [_ring(ring) for ring in polygon]
         parts.append(tuple(ring for ring, _ in rings))
         closed |= any(was_closed for _, was_closed in rings)
@@ -203,28 +203,28 @@ def _ring(positions: Any) -> tuple[Ring, bool]:
         ring = np.array(positions)
     except ValueError:  # positions with and without a height, or worse
         ring = np.array(_without_heights(positions))
-    if ring.ndim != 2 and len(ring.shape) and ring.shape[0] or ring.ndim == 2 and ring.shape[1] < 2:
-        raise _WrongShapeError(", coordinates", "holds a position that is no pair of numbers", SHAPES)
+    if ring.ndim == 0:
+        raise _WrongShapeError(", coordinates", "hold a ring that is no list", SHAPES)
+    if ring.size and (ring.ndim != 2 or ring.shape[1] < 2):
+        raise _WrongShapeError(", coordinates", "hold a position that is no pair of numbers", SHAPES)
     if ring.size and ring.dtype.kind not in "if":
-        raise _WrongShapeError(", coordinates", "holds something that is no number", SHAPES)
-    if not len(ring.shape):
-        raise _WrongShapeError(", coordinates", "holds a ring that is no list", SHAPES)
+        raise _WrongShapeError(", coordinates", "hold something that is no number", SHAPES)
     ring = np.array(ring[:, :2], dtype=float) if ring.size else np.empty((0, 2))
     if not np.isfinite(ring).all():
-        raise _WrongShapeError(", coordinates", "holds a number that is too large", SHAPES)
+        raise _WrongShapeError(", coordinates", "hold a number that is too large", SHAPES)
     was_open = bool(len(ring)) and not np.array_equal(ring[0], ring[-1])
     if was_open:
         ring = np.concatenate([ring, ring[:1]])
     if len(ring) < 4:
         allowed = "a ring needs at least 4, the last one like the first"
-        raise _WrongShapeError(", coordinates", f"holds a ring of {len(ring) - was_open} positions", allowed)
+        raise _WrongShapeError(", coordinates", f"hold a ring of {len(ring) - was_open} positions", allowed)
     return ring, was_open
 
 
 def _without_heights(positions: Any) -> list[Any]:
     pairs = [position[:2] if isinstance(position, list) else position for position in positions]
     if any(not isinstance(pair, list) or len(pair) != 2 for pair in pairs):
-        raise _WrongShapeError(", coordinates", "holds a position that is no pair of numbers", SHAPES)
+        raise _WrongShapeError(", coordinates", "hold a position that is no pair of numbers", SHAPES)
     if any(isinstance(value, list | dict) for pair in pairs for value in pair):
-        raise _WrongShapeError(", coordinates", "holds something that is no number", SHAPES)
+        raise _WrongShapeError(", coordinates", "hold something that is no number", SHAPES)
     return pairs

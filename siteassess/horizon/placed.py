@@ -8,7 +8,7 @@ import numpy as np
 from siteassess.errors import InputError, Mistake
 from siteassess.horizon.building import Building
 from siteassess.horizon.curves import BoolArray, FloatArray, IndexArray
-from siteassess.horizon.plan import east_north_m
+from siteassess.horizon.plan import east_north_m, far_m
 from siteassess.horizon.walls import Parts, parts_of
 from siteassess.site_file.model import Position
 from siteassess.wording import listed, shown
@@ -49,14 +49,14 @@ def placed_parts(
         If coordinates are out of range or far away, or an outline cannot be repaired.
     """
     rings = [ring for building in buildings for part in building.parts for ring in part]
-    coordinates = np.concatenate(rings)
+    degrees = _degrees(np.concatenate(rings), crs, file)
     parts = parts_of(
-        _plan_m(coordinates, crs, site, file),
+        np.stack(east_north_m(*degrees, site), axis=1),
         [len(ring) for ring in rings],
         [len(part) for building in buildings for part in building.parts],
         [len(building.parts) for building in buildings],
     )
-    parts, left_out = _near(parts, len(buildings), coordinates, crs, site, file)
+    parts, left_out = _near(parts, len(buildings), *degrees, site, file)
     parts, repaired = _repaired(parts, buildings, file)
     remarks = []
     if left_out:
@@ -76,7 +76,8 @@ def remark(file: str, names: Sequence[str], what: str) -> str:
     return f"{file}: the outline of {listed(some)} {what}."
 
 
-def _plan_m(coordinates: FloatArray, crs: str, site: Position, file: str) -> FloatArray:
+def _degrees(coordinates: FloatArray, crs: str, file: str) -> tuple[FloatArray, FloatArray]:
+    """Longitudes and latitudes."""
     longitude_deg, latitude_deg = coordinates.T
     if crs:
         longitude_deg, latitude_deg = _transformer(crs, file).transform(longitude_deg, latitude_deg)
@@ -92,7 +93,7 @@ def _plan_m(coordinates: FloatArray, crs: str, site: Position, file: str) -> Flo
             if crs
             else "they must be longitude and latitude in degrees; if they are projected, give crs",
         )
-    return np.stack(east_north_m(longitude_deg, latitude_deg, site), axis=1)
+    return longitude_deg, latitude_deg
 
 
 def _transformer(crs: str, file: str) -> Any:
@@ -107,20 +108,24 @@ def _transformer(crs: str, file: str) -> Any:
 
 
 def _near(
-    parts: Parts, buildings: int, coordinates: FloatArray, crs: str, site: Position, file: str
+    parts: Parts,
+    buildings: int,
+    longitude_deg: FloatArray,
+    latitude_deg: FloatArray,
+    site: Position,
+    file: str,
 ) -> tuple[Parts, int]:
     """The parts of buildings within reach, and the number of buildings beyond."""
-    owner = parts.building[parts.part[parts.ring]]
     distance_m = np.full(buildings, np.inf)
-    np.minimum.at(distance_m, owner, np.hypot(parts.east_m, parts.north_m))
+    owner = parts.building[parts.part[parts.ring]]
+    np.minimum.at(distance_m, owner, far_m(longitude_deg, latitude_deg, site))
     near = distance_m <= FARTHEST_M
     if not near.any():
         allowed = "check the site's position and the reference system of the file"
-        swapped = np.abs(coordinates[:, 0]) <= 90.0 if not crs else np.zeros(1, dtype=np.bool_)
-        if swapped.any():
-            around_m = np.hypot(*east_north_m(coordinates[swapped, 1], coordinates[swapped, 0], site))
-            if around_m.min() <= FARTHEST_M:
-                allowed = "longitude must stand before latitude; swapped, they lie at the site"
+        could_be = np.abs(longitude_deg) <= 90.0
+        swapped_m = far_m(latitude_deg[could_be], longitude_deg[could_be], site)
+        if (swapped_m <= FARTHEST_M).any():
+            allowed = "longitude must stand before latitude; swapped, they lie at the site"
         nearest_km = distance_m.min() / 1000.0
         raise _refusal(file, "the nearest building", f"is {nearest_km:.0f} km away", allowed)
     return (parts if near.all() else _kept(parts, near)), int((~near).sum())

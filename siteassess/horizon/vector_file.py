@@ -19,7 +19,7 @@ def read_vector_file(path: Path) -> Features:
         If the library is not there, the file cannot be read, or it does not hold exactly one layer.
     """
     try:
-        import pyogrio  # type: ignore[import-untyped,unused-ignore]
+        import pyogrio
         from pyogrio.errors import DataSourceError
     except ImportError as error:
         raise _refusal(

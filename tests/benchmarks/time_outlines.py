@@ -97,9 +97,8 @@ def main() -> None:
             upper_envelope(obstacles)
             taken = time.perf_counter() - begun
             memory = resource.getrusage(resource.RUSAGE_SELF).ru_maxrss / 1e6
-            print(
-                f"{count} buildings of {corners} corners: {taken:.1f} s, {len(obstacles)} seen, {memory:.1f} GB"
-            )
+            size = f"{count} of {corners} corners"
+            print(f"{size}: {taken:.1f} s, {len(obstacles)} seen, {memory:.1f} GB")
 
 
 if __name__ == "__main__":
