@@ -47,10 +47,11 @@ def distinct_sites(paths: Iterable[str | os.PathLike[str]]) -> tuple[SitePlace, 
     first_given = dict(zip(reversed(files), reversed(given), strict=True))
     targets = {file: _target(file) for file in times}
     common = _common_folder(list(targets.values()))
-    return tuple(
+    sites = [
         SitePlace(given=first_given[file], place=_as_seen_from(common, targets[file]), repeated=count > 1)
-        for file, count in sorted(times.items())
-    )
+        for file, count in times.items()
+    ]
+    return tuple(sorted(sites, key=lambda site: (site.place, site.given)))
 
 
 def _site_file(given: str) -> Path:

@@ -15,6 +15,7 @@ from siteassess.report.ranking_words import (
     gains,
     gives_up,
     margin_text,
+    mistake_text,
     site_names,
 )
 from siteassess.report.setting import CAUTIONS
@@ -265,7 +266,7 @@ def _refused_section(ranking: Ranking) -> Section:
                 caption="Every mistake that was found.",
                 header=("Site file", "Mistake"),
                 rows=tuple(
-                    (plain(site.place) or NOTHING, plain(str(mistake)))
+                    (plain(site.place) or NOTHING, mistake_text(mistake))
                     for site in ranking.refused
                     for mistake in site.mistakes
                 ),

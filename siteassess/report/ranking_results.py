@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING, Any
 from siteassess.candidates.candidate import room
 from siteassess.report.plain_json import as_json, rounded
 from siteassess.report.ranking_criteria import criterion_columns
+from siteassess.report.ranking_words import mistake_text
 from siteassess.report.satellite_table import spreadsheet_safe
 from siteassess.report.setting import CAUTIONS
 
@@ -130,7 +131,7 @@ def _difference(difference: Difference) -> dict[str, Any]:
 
 
 def _refused(site: RefusedCandidate) -> dict[str, Any]:
-    return {"site": site.place, "mistakes": [str(mistake) for mistake in site.mistakes]}
+    return {"site": site.place, "mistakes": [mistake_text(mistake) for mistake in site.mistakes]}
 
 
 def ranking_frame(ranking: Ranking) -> pd.DataFrame:

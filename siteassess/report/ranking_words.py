@@ -2,13 +2,26 @@
 
 from collections import Counter
 from collections.abc import Sequence
+from dataclasses import replace
 
 from siteassess.candidates.ranking import USABLE_SATELLITES, Difference, RankedSite, Ranking
+from siteassess.errors import Mistake
 from siteassess.report.phrases import NOTHING, percent, plain, told_apart
 from siteassess.verdict.criteria import read_criteria
 
-__all__ = ["OUTCOMES", "beaten_by", "criterion_name", "gains", "gives_up", "margin_text", "site_names"]
+__all__ = [
+    "OUTCOMES",
+    "beaten_by",
+    "criterion_name",
+    "gains",
+    "gives_up",
+    "margin_text",
+    "mistake_text",
+    "site_names",
+]
 
+# A file that is not there is told with its folders on standard error; a report holds none of the machine's.
+LOOKED_FOR = "it was looked for as"
 OUTCOMES = {"pass": "passes", "unproven": "unproven", "fail": "fails"}
 MOST_SHOWN_PERCENT = 999.0
 
@@ -46,6 +59,20 @@ def margin_text(margin: float) -> str:
         return f"above +{edge}" if margin > 0 else f"below −{edge}"
     decimals = next((digits for digits in (1, 2, 3) if round(100.0 * margin, digits) or not margin), 4)
     return f"{'+' if margin > 0 else ''}{percent(margin, decimals)}"
+
+
+def mistake_text(mistake: Mistake) -> str:
+    """A mistake in the words of the reader, without folders of the machine.
+
+    Examples
+    --------
+    >>> mistake_text(Mistake(file="site.toml", where="", problem="there is no such file",
+    ...                      allowed="it was looked for as /home/a/site.toml"))
+    'site.toml: there is no such file'
+    """
+    if mistake.allowed.startswith(LOOKED_FOR):
+        mistake = replace(mistake, allowed="")
+    return plain(str(mistake))
 
 
 def beaten_by(site: RankedSite, most_ranks: int) -> str:
