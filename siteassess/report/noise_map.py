@@ -22,8 +22,10 @@ __all__ = ["noise_map_svg"]
 
 FloatArray = NDArray[np.float64]
 
-SIZE_IN = (7.1, 3.0)
-MAP_IN = 2.75
+SIZE_IN = (7.1, 2.7)
+CENTRE_IN, RIM_IN = (1.35, 1.35), 1.16
+SCALE_IN = (2.8, 2.92, 0.45, 2.25)  # left, right, bottom, top
+BARS_IN = (4.15, 6.6, 0.75, 2.4)
 PIXELS = 240
 SHADES = ("#f1f6f8", "#cddfe4", "#d8c8a0", "#b88a53", "#643620")  # from cold to warm, ever darker
 COLDEST_K, WARMEST_K = 4.0, 300.0
@@ -48,11 +50,12 @@ def _figure(assessment: Assessment) -> Figure:
     noises = list({budget.noise.carrier_hz: budget.noise for budget in assessment.budget.signals}.values())
     carrier_hz = noises[0].carrier_hz
     figure = Figure(figsize=SIZE_IN)
-    wide, high = MAP_IN / SIZE_IN[0], MAP_IN / SIZE_IN[1]
-    sky = figure.add_axes((0.0, 0.5 * (1.0 - high), wide, high))
-    _draw_map(sky, seen_brightness_k(seen_sky(assessment.skyline, carrier_hz), carrier_hz))
-    _draw_scale(figure.add_axes((wide + 0.015, 0.16, 0.015, 0.68)))
-    _draw_sources(figure.add_axes((wide + 0.17, 0.30, 0.97 - wide - 0.17, 0.60)), noises)
+    axes = figure.add_axes((0.0, 0.0, 1.0, 1.0))
+    axes.axis("off")
+    _draw_map(axes, seen_brightness_k(seen_sky(assessment.skyline, carrier_hz), carrier_hz))
+    _draw_scale(axes)
+    _draw_sources(axes, noises)
+    axes.set(xlim=(0.0, SIZE_IN[0]), ylim=(0.0, SIZE_IN[1]), aspect="auto")  # inches
     return figure
 
 
@@ -77,50 +80,69 @@ def _draw_map(axes: Axes, brightness_k: FloatArray) -> None:
     sector = (np.rad2deg(np.arctan2(east, north)) % 360.0 / sector_deg).astype(int) % SECTOR_DEG.size
     picture = _shades()(_step(brightness_k[ring, sector]))
     picture[radius > 1.0] = 0.0
-    limit = 1.16
-    axes.set(xlim=(-limit, limit), ylim=(-limit, limit), aspect="equal")
-    axes.axis("off")
-    axes.imshow(picture, extent=(-1.0, 1.0, -1.0, 1.0), interpolation="none", aspect="auto")
+    (east_in, north_in), rim_in = CENTRE_IN, RIM_IN
+    ends_in = (east_in - rim_in, east_in + rim_in, north_in - rim_in, north_in + rim_in)
+    axes.imshow(picture, extent=ends_in, interpolation="none", aspect="auto")
     around = np.linspace(0.0, 2.0 * np.pi, 181)
     for level, width in ((1.0, 0.9), (2.0 / 3.0, 0.3), (1.0 / 3.0, 0.3)):
-        axes.plot(level * np.sin(around), level * np.cos(around), color=INK, linewidth=width)
-    for x, y, point in ((0.0, 1.08, "N"), (1.08, 0.0, "E"), (0.0, -1.08, "S"), (-1.08, 0.0, "W")):
-        axes.text(x, y, point, ha="center", va="center", fontsize=8, fontweight="bold")
+        axes.plot(
+            east_in + rim_in * level * np.sin(around),
+            north_in + rim_in * level * np.cos(around),
+            color=INK,
+            linewidth=width,
+        )
+    for x, y, point in ((0.0, 1.1, "N"), (1.1, 0.0, "E"), (0.0, -1.1, "S"), (-1.1, 0.0, "W")):
+        axes.text(
+            east_in + rim_in * x,
+            north_in + rim_in * y,
+            point,
+            ha="center",
+            va="center",
+            fontsize=8,
+            fontweight="bold",
+        )
 
 
 def _draw_scale(axes: Axes) -> None:
-    axes.imshow(
-        np.linspace(0.0, 1.0, 64)[:, np.newaxis], cmap=_shades(), origin="lower", aspect="auto",
-        extent=(0.0, 1.0, 0.0, 1.0),
-    )  # fmt: skip
-    axes.set_xticks([])
-    axes.yaxis.tick_right()
-    axes.set_yticks([float(_step(tick_k)) for tick_k in TICKS_K], [f"{tick_k:g} K" for tick_k in TICKS_K])
-    axes.tick_params(axis="y", length=2, labelsize=6.5, color=QUIET)
-    axes.spines[:].set_linewidth(0.4)
+    left_in, right_in, bottom_in, top_in = SCALE_IN
+    strip = _shades()(np.linspace(1.0, 0.0, 64))[:, np.newaxis]
+    axes.imshow(strip, aspect="auto", extent=SCALE_IN)
+    for tick_k in TICKS_K:
+        at_in = bottom_in + float(_step(tick_k)) * (top_in - bottom_in)
+        axes.text(right_in + 0.05, at_in, f"{tick_k:g} K", va="center", fontsize=6.5)
+    frame = (
+        [left_in, right_in, right_in, left_in, left_in],
+        [bottom_in, bottom_in, top_in, top_in, bottom_in],
+    )
+    axes.plot(*frame, color=QUIET, linewidth=0.5)
 
 
 def _draw_sources(axes: Axes, noises: list[ChainNoise]) -> None:
-    rows = np.arange(len(noises))
-    left = np.zeros(len(noises))
+    """One bar a carrier; the upright line is an open site."""
+    left_in, right_in, bottom_in, top_in = BARS_IN
+    warmest_k = max(max(noise.antenna_temperature_k, noise.antenna.open_site_k) for noise in noises)
+    per_k = (right_in - left_in) / warmest_k
+    pitch_in = min(0.42, (top_in - bottom_in) / len(noises))
+    middle_in = top_in - pitch_in * (np.arange(len(noises)) + 0.5)
+    reached_in = np.full(len(noises), left_in)
     for field, name, colour in SOURCES:
-        part_k = np.array([getattr(noise.antenna, field) for noise in noises])
-        axes.barh(rows, part_k, left=left, height=0.55, color=colour, label=name, linewidth=0)
-        left = left + part_k
-    open_k = [noise.antenna.open_site_k for noise in noises]
-    axes.vlines(open_k, rows - 0.4, rows + 0.4, color=INK, linewidth=1.2, label="with nothing in sight")
-    axes.set_yticks(rows, [f"{noise.carrier_hz / 1e6:.2f} MHz" for noise in noises])
-    axes.set(xlim=(0.0, 1.18 * max(left.max(), max(open_k))), ylim=(len(noises) - 0.4, -0.6))
-    for row, noise in zip(rows.tolist(), noises, strict=True):
-        axes.text(left[row], row, f"  {number(noise.antenna_temperature_k, 0)} K", va="center", fontsize=6.5)
-    axes.tick_params(axis="y", length=0)
-    axes.tick_params(axis="x", labelsize=6.5, color=QUIET)
-    axes.set_xlabel("Noise of the antenna, K", fontsize=6.5, labelpad=2)
-    axes.spines[["top", "right"]].set_visible(False)
-    axes.spines[["left", "bottom"]].set_color(QUIET)
+        wide_in = per_k * np.array([getattr(noise.antenna, field) for noise in noises])
+        axes.barh(
+            middle_in, wide_in, left=reached_in, height=0.6 * pitch_in, color=colour, label=name, linewidth=0
+        )
+        reached_in = reached_in + wide_in
+    open_in = left_in + per_k * np.array([noise.antenna.open_site_k for noise in noises])
+    axes.vlines(
+        open_in, middle_in - 0.42 * pitch_in, middle_in + 0.42 * pitch_in, color=INK, linewidth=1.2,
+        label="with nothing in sight",
+    )  # fmt: skip
+    for at_in, end_in, noise in zip(middle_in.tolist(), reached_in.tolist(), noises, strict=True):
+        axes.text(left_in - 0.06, at_in, f"{noise.carrier_hz / 1e6:.2f} MHz", ha="right", va="center")
+        axes.text(end_in + 0.08, at_in, f"{number(noise.antenna_temperature_k, 0)} K", va="center")
     axes.legend(
-        loc="upper center",
-        bbox_to_anchor=(0.45, -0.22),
+        loc="upper left",
+        bbox_to_anchor=(left_in - 0.85, float(middle_in[-1]) - 0.6 * pitch_in),
+        bbox_transform=axes.transData,
         ncols=3,
         frameon=False,
         fontsize=6.5,

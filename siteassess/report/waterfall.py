@@ -6,6 +6,7 @@ from dataclasses import dataclass
 from typing import TYPE_CHECKING
 
 import numpy as np
+from numpy.typing import ArrayLike, NDArray
 
 from siteassess.constants import BOLTZMANN_J_PER_K, REFERENCE_TEMPERATURE_K
 from siteassess.decibels import mean_db, to_db
@@ -21,10 +22,13 @@ if TYPE_CHECKING:
 
 __all__ = ["HALF_BAND_DEG", "Step", "Waterfall", "waterfall", "waterfall_svg"]
 
+FloatArray = NDArray[np.float64]
+
 WANTED_ELEVATION_DEG = 30.0
 HALF_BAND_DEG = 2.5  # of elevation, within which obstacles are averaged
-SIZE_IN = (7.1, 4.1)
-GAIN, LOSS, TOTAL = "#5f8f7c", "#b4745c", "#4b5a66"
+WIDTH_IN, ROW_IN = 7.1, 0.21
+BARS_IN, VALUES_IN = (2.75, 6.3), 6.95  # from the left
+GAIN, LOSS, TOTAL, FAINT = "#5f8f7c", "#b4745c", "#4b5a66", "#d5dadd"
 LABEL_LETTERS = 44
 MOST_PARTS = 9
 
@@ -137,62 +141,67 @@ def _chain_steps(budget: SignalBudget) -> list[Step]:
 def _figure(fall: Waterfall) -> Figure:
     from matplotlib.figure import Figure
 
-    figure = Figure(figsize=SIZE_IN)
     rows = len(fall.path) + len(fall.site) + 2
-    left, width, bottom, height = 0.36, 0.55, 0.09, 0.88
-    share = (len(fall.path) + 1) / (rows + 1.6)
-    upper = figure.add_axes((left, bottom + height * (1.0 - share), width, height * share))
-    lower = figure.add_axes((left, bottom, width, height * (1.0 - share) - 0.09))
-    reached = sum(step.change_db for step in fall.path)
-    _draw(upper, fall.path, 0.0, "C/N0 with nothing in the way, dB-Hz")
-    _draw(lower, fall.site, reached, "C/N0 of the tracked component, dB-Hz")
+    height_in = ROW_IN * (rows + 3.2)
+    figure = Figure(figsize=(WIDTH_IN, height_in))
+    axes = figure.add_axes((0.0, 0.0, 1.0, 1.0))
+    axes.set(xlim=(0.0, WIDTH_IN), ylim=(height_in, 0.0))  # inches from the upper left corner
+    axes.axis("off")
+    reached_db = sum(step.change_db for step in fall.path)
+    _draw(axes, fall.path, 0.0, "C/N0 with nothing in the way, dB-Hz", 0.1)
+    below_in = 0.1 + ROW_IN * (len(fall.path) + 2.4)
+    _draw(axes, fall.site, reached_db, "C/N0 of the tracked component, dB-Hz", below_in)
     return figure
 
 
-def _draw(axes: Axes, steps: tuple[Step, ...], start_db: float, total: str) -> None:
+def _draw(axes: Axes, steps: tuple[Step, ...], start_db: float, total: str, top_in: float) -> None:
+    """One waterfall: a row a step, and its total; below it a scale."""
     changes = np.array([step.change_db for step in steps])
     ends = start_db + np.cumsum(changes)
-    starts = np.concatenate([[start_db], ends[:-1]])
-    low, high = min(start_db, float(ends.min())), max(start_db, float(ends.max()))
-    if start_db != 0.0:
-        margin = 0.12 * max(high - low, 1.0)
-        low, high = low - 3.0 * margin, high + margin
-    else:
-        low, high = low - 20.0, high + 20.0
-    base = max(low, 0.0) if start_db != 0.0 else 0.0
-    rows = np.arange(len(steps) + 1)
-    colours = [*(GAIN if change >= 0.0 else LOSS for change in changes), TOTAL]
-    axes.barh(
-        rows,
-        [*changes, float(ends[-1]) - base],
-        left=[*starts, base],
-        height=0.62,
-        color=colours,
-        linewidth=0,
-    )
-    # From each bar's end down to the next bar's start.
-    joints = np.array([[end, end, np.nan] for end in ends]).ravel()
-    levels = np.array([[row + 0.31, row + 0.69, np.nan] for row in rows[:-1]]).ravel()
-    axes.plot(joints, levels, color=QUIET, linewidth=0.6)
-    axes.set(xlim=(low, high), ylim=(len(steps) + 0.6, -0.6))
-    axes.set_yticks(rows, [*(shortened(plain(step.label), LABEL_LETTERS) for step in steps), total])
-    axes.tick_params(axis="y", length=0)
-    axes.tick_params(axis="x", labelsize=6, color=QUIET, pad=1.5)
-    for text in axes.get_yticklabels():
-        text.set_parse_math(False)
-    axes.spines[["top", "right", "left"]].set_visible(False)
-    axes.spines["bottom"].set_color(QUIET)
-    for row, value in zip(rows.tolist(), [*changes, float(ends[-1])], strict=True):
-        is_total = row == len(steps)
-        axes.text(
-            1.01,
-            row,
-            number(value, 1) if is_total else _signed(value),
-            transform=axes.get_yaxis_transform(),
-            va="center",
-            color=INK,
-            fontweight="bold" if is_total else "normal",
+    starts = np.append(start_db, ends[:-1])
+    ticks, low, high = _scale(starts, ends)
+    base = max(low, 0.0)
+
+    def along(level_db: ArrayLike) -> FloatArray:
+        return np.asarray(
+            BARS_IN[0] + (np.asarray(level_db) - low) / (high - low) * (BARS_IN[1] - BARS_IN[0])
         )
+
+    middle_in = top_in + ROW_IN * (np.arange(len(steps) + 1) + 0.5)
+    foot_in = float(middle_in[-1]) + 0.7 * ROW_IN
+    lines = np.array([[[at, at, np.nan], [top_in, foot_in, np.nan]] for at in along(ticks)])
+    axes.plot(*lines.transpose(1, 0, 2).reshape(2, -1), color=FAINT, linewidth=0.5, zorder=1)
+    axes.barh(
+        middle_in,
+        along([*ends, ends[-1]]) - along([*starts, base]),
+        left=along([*starts, base]),
+        height=0.62 * ROW_IN,
+        color=[*(GAIN if change >= 0.0 else LOSS for change in changes), TOTAL],
+        linewidth=0,
+        zorder=2,
+    )
+    joints = np.repeat(along(ends), 3)
+    joints[2::3] = np.nan
+    levels = np.column_stack([middle_in[:-1], middle_in[1:], middle_in[1:]]).ravel()
+    axes.plot(joints, levels, color=QUIET, linewidth=0.6, zorder=1.5)
+    labels = [*(shortened(plain(step.label), LABEL_LETTERS) for step in steps), total]
+    values = [*(_signed(step.change_db) for step in steps), number(float(ends[-1]))]
+    for at_in, label, value in zip(middle_in.tolist(), labels, values, strict=True):
+        weight = "bold" if label == total else "normal"
+        axes.text(
+            BARS_IN[0] - 0.12, at_in, label, ha="right", va="center", fontweight=weight, parse_math=False
+        )
+        axes.text(VALUES_IN, at_in, value, ha="right", va="center", fontweight=weight, color=INK)
+    for tick, at_in in zip(ticks.tolist(), along(ticks).tolist(), strict=True):
+        axes.text(at_in, foot_in + 0.02, number(tick, 0), ha="center", va="top", fontsize=6)
+
+
+def _scale(starts: FloatArray, ends: FloatArray) -> tuple[FloatArray, float, float]:
+    """Levels to mark, and the ends of the scale: all bars, and room to see where the total comes from."""
+    low, high = float(min(starts.min(), ends.min())), float(max(starts.max(), ends.max()))
+    step_db = next(step for step in (1.0, 2.0, 5.0, 10.0, 20.0, 50.0, 100.0) if (high - low) / step <= 6.0)
+    low, high = step_db * np.floor(low / step_db - 0.25), step_db * np.ceil(high / step_db)
+    return np.arange(low, high + step_db / 2.0, step_db), low, high
 
 
 def _signed(change_db: float) -> str:
