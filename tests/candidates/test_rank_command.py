@@ -151,3 +151,15 @@ def test_same_sites_give_the_same_bytes_in_any_order_and_number_of_processes(
     assert sorted(files(tmp_path / "here")) == sorted(RANKING_FILES)
     assert files(tmp_path / "here") == files(tmp_path / "there")
     assert not any(str(tmp_path).encode() in data for data in files(tmp_path / "here").values())
+
+
+def test_command_page_shows_a_mistake_as_it_is_printed(
+    write_site: WriteSite, tmp_path: Path, monkeypatch: pytest.MonkeyPatch
+) -> None:
+    page = Path("docs/cli.md").read_text(encoding="utf-8")
+    (tmp_path / "harbour").mkdir()
+    write_site(("mast_height_m = 1.5", "mast_height_m = -3.0"), folder="harbour/silo_yard")
+    monkeypatch.chdir(tmp_path)
+    result = run("harbour/silo_yard")
+    assert (result.exit_code, result.stdout) == (1, "")
+    assert f"```text\n{result.stderr}```" in page
