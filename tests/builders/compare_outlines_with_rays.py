@@ -102,6 +102,30 @@ def elevation_by_rays(buildings: Sequence[Building], antenna_m: float) -> tuple[
     return azimuth_deg, elevation_deg
 
 
+def crossed_by_rays(
+    buildings: Sequence[Building], antenna_m: float, azimuth_deg: FloatArray, elevation_deg: FloatArray
+) -> NDArray[np.bool_]:
+    """Whether lines of sight run through buildings between their undersides and their tops."""
+    toward = np.stack([np.sin(np.deg2rad(azimuth_deg)), np.cos(np.deg2rad(azimuth_deg))], axis=1)
+    rays = shapely.linestrings(np.stack([np.zeros_like(toward), REACH_M * toward], axis=1))
+    slope = np.tan(np.deg2rad(elevation_deg))
+    crossed = np.zeros(len(rays), dtype=np.bool_)
+    for building in buildings:
+        foot_m = building.base_m - antenna_m
+        for part in building.parts:
+            polygon = shapely.Polygon(part[0], part[1:])
+            near_m = polygon.distance(shapely.Point(0.0, 0.0))
+            drop_m = near_m**2 / (2.0 * EARTH_M)
+            for ray in np.flatnonzero(shapely.intersects(rays, polygon)):
+                for piece in shapely.get_parts(shapely.intersection(rays[ray], polygon)):
+                    ends_m = np.hypot(*np.array(piece.coords).T)
+                    low_m, high_m = slope[ray] * ends_m.min(), slope[ray] * ends_m.max()
+                    top_m = foot_m + building.height_m - drop_m
+                    bottom_m = foot_m + (building.underside_m or 0.0) - drop_m
+                    crossed[ray] |= low_m < top_m and high_m > bottom_m
+    return crossed
+
+
 def difference(buildings: Sequence[Building], antenna_m: float = ANTENNA_M) -> Difference:
     """Our outline against the rays."""
     skyline = skyline_of(buildings, antenna_m)

@@ -11,7 +11,9 @@ import numpy as np
 import pytest
 
 from siteassess.errors import InputError
+from siteassess.horizon import building_silhouettes, outline_obstacles
 from siteassess.horizon.building import Building
+from siteassess.horizon.hidden_walls import screen_tangent
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.outline_obstacles import obstacles_of
 from siteassess.horizon.shares import sky_shares
@@ -24,6 +26,7 @@ from siteassess.horizon.view import (
     outline_elevation_deg,
     underside_elevation_deg,
 )
+from siteassess.horizon.walls import Walls, walls_of
 
 RAYS = runpy.run_path(str(Path(__file__).parents[1] / "builders" / "compare_outlines_with_rays.py"))
 difference, random_neighbourhood, plan_of, skyline_of, standing = (
@@ -367,3 +370,54 @@ def test_spirals_and_stars_of_many_corners_agree_with_rays() -> None:
     found = difference([standing("spiral", 9.0, ((ring,),))])
     assert found.outline_deg < OUTLINE_DEG
     assert abs(found.blocked_share) < SHARE
+
+
+@pytest.mark.parametrize("seed", range(12))
+def test_what_hangs_free_hides_what_lines_of_sight_cross(seed: int) -> None:
+    # shapely 2: where rays of random directions run within the outline, in plan, and the heights there.
+    random = np.random.default_rng(400 + seed)
+    hanging = [
+        replace(one, base_m=30.0, height_m=6.0 + one.height_m / 4.0, underside_m=5.0)
+        for one in random_neighbourhood(random)
+    ]
+    if seed % 2:
+        hanging.append(building(square((0.0, 0.0), 20.0), 40.0, square((3.0, 2.0), 8.0), underside_m=20.0))
+    if seed % 3 == 0:
+        hanging.append(building(square((2.0, 5.0), 20.0), 70.0, underside_m=60.0))
+    skyline = skyline_of(hanging, 3.0)
+    azimuth_deg = random.uniform(0.0, 360.0, 1500)
+    elevation_deg = np.rad2deg(np.arcsin(random.uniform(0.0, 1.0, 1500)))
+    ours = hiding_obstacle(skyline, azimuth_deg, elevation_deg) >= 0
+    crossed = RAYS["crossed_by_rays"](hanging, 3.0, azimuth_deg, elevation_deg)
+    assert (ours == crossed).mean() > 0.999  # rays that graze an edge may differ by rounding
+
+
+def test_leaving_out_hidden_walls_early_changes_nothing(monkeypatch: pytest.MonkeyPatch) -> None:
+    random = np.random.default_rng(5)
+    buildings: list[Building] = []
+    while len(buildings) < 400:
+        buildings += random_neighbourhood(random)
+    quick = skyline_of(buildings)
+
+    def nothing(walls: Walls, *_: object) -> np.ndarray:
+        return np.zeros(len(walls), dtype=np.bool_)
+
+    for module in (building_silhouettes, outline_obstacles):
+        monkeypatch.setattr(module, "surely_hidden", nothing)
+    slow = skyline_of(buildings)
+    assert [one.name for one in quick.obstacles] == [one.name for one in slow.obstacles]
+    for name in ("start_deg", "start_elevation_deg", "end_elevation_deg"):
+        assert np.array_equal(getattr(quick.outline, name), getattr(slow.outline, name))
+
+
+@pytest.mark.parametrize("seed", range(4))
+def test_no_screen_stands_above_the_walls_that_make_it(seed: int) -> None:
+    buildings = random_neighbourhood(np.random.default_rng(500 + seed))
+    walls = walls_of(plan_of(buildings))
+    level_m = np.array([one.height_m for one in buildings])[walls.building] - 3.0
+    screen = screen_tangent(walls, level_m)
+    within_deg = (np.arange(len(screen))[:, None] + np.array([0.001, 0.3, 0.6, 0.999])) * 360.0 / len(screen)
+    outline_deg = outline_elevation_deg(skyline_of(buildings), within_deg)
+    drop_deg = 0.02  # which the levels here leave out
+    assert (np.rad2deg(np.arctan(screen))[:, None] <= outline_deg + drop_deg).all()
+    assert np.isfinite(screen).any()
