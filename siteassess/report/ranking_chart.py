@@ -26,7 +26,7 @@ Look = dict[str, Any]
 MOST_ROWS = 60
 WIDTH_IN, ABOVE_IN, BELOW_IN = 7.1, 0.42, 0.62
 ROOMY_ROW_IN, TIGHT_ROW_IN = 0.27, 0.135
-LEFT, RIGHT = 0.335, 0.695  # of the width: where the margins are drawn
+LEFT, RIGHT = 0.335, 0.675  # of the width: where the margins are drawn
 COLUMNS = ((0.77, "margin"), (0.835, "missed"), (0.907, "satellites"), (0.992, "beaten by"))
 NAME_LETTERS = 38
 MOST_RANKS = 2
@@ -148,6 +148,8 @@ def _draw_rooms(axes: Axes, row: int, site: RankedSite) -> None:
 
 def _draw_texts(axes: Axes, ranking: Ranking, sites: tuple[RankedSite, ...]) -> None:
     """Rank and name to the left, figures to the right."""
+    from matplotlib.patches import Rectangle
+
     figure = axes.get_figure()
     assert figure is not None
     size = 7.0 if len(sites) <= 30 else 6.0
@@ -156,6 +158,7 @@ def _draw_texts(axes: Axes, ranking: Ranking, sites: tuple[RankedSite, ...]) -> 
         axes.text(
             column, -0.62, heading, ha="right", va="bottom", fontsize=6, transform=beside, weight="bold"
         )
+    left = Rectangle((0.0, 0.0), LEFT - 0.01, 1.0, transform=figure.transFigure)
     names = site_names(ranking)
     for row, (site, name) in enumerate(zip(sites, names[: len(sites)], strict=True)):
         candidate = site.candidate
@@ -176,10 +179,11 @@ def _draw_texts(axes: Axes, ranking: Ranking, sites: tuple[RankedSite, ...]) -> 
             weight="bold",
             transform=beside,
         )
-        axes.text(
+        label = axes.text(
             0.04, row, shortened(name, NAME_LETTERS), ha="left", va="center", fontsize=size,
             transform=beside, parse_math=False,
         )  # fmt: skip
+        label.set_clip_path(left)  # wide letters end before the margins begin
         for (column, _), text in zip(COLUMNS, figures, strict=True):
             axes.text(column, row, text, ha="right", va="center", fontsize=size, transform=beside)
         if row and row % 5 == 0:

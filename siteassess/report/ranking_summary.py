@@ -15,7 +15,8 @@ if TYPE_CHECKING:
 __all__ = ["MOST_SITES", "ranking_lines"]
 
 MOST_SITES = 22
-NAME_LETTERS = 40
+NAME_LETTERS = 34
+MOST_RANKS = 2
 
 
 def ranking_lines(ranking: Ranking) -> list[str]:
@@ -23,7 +24,7 @@ def ranking_lines(ranking: Ranking) -> list[str]:
     sites = ranking.sites[:MOST_SITES]
     names = [shortened(name, NAME_LETTERS) for name in site_names(ranking)[: len(sites)]]
     width = max([4, *map(len, names)])
-    heading = f"{'verdict':<9}{'missed':>8}{'margin':>15}{'satellites':>12}  beaten by"
+    heading = f"{'verdict':<9}{'missed':>9}{'margin':>13}{'satellites':>12}  beaten by"
     lines = [f"{'no.':>4}  {'spot':<{width}}  {heading}"]
     lines += [_line(site, f"{name:<{width}}") for site, name in zip(sites, names, strict=True)]
     more = len(ranking.sites) - len(sites)
@@ -38,6 +39,6 @@ def _line(site: RankedSite, name: str) -> str:
     candidate = site.candidate
     missed = f"{candidate.missed} of {len(candidate.required)}"
     return (
-        f"{site.rank:>4}  {name}  {OUTCOMES[candidate.outcome]:<9}{missed:>8}"
-        f"{margin_text(candidate.margin):>15}{number(candidate.usable_satellites):>12}  {beaten_by(site, 4)}"
+        f"{site.rank:>4}  {name}  {OUTCOMES[candidate.outcome]:<9}{missed:>9}"
+        f"{margin_text(candidate.margin):>13}{number(candidate.usable_satellites):>12}  {beaten_by(site, MOST_RANKS)}"
     )
