@@ -12,6 +12,7 @@ from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.outlines import Outlines, read_outlines
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.survey import Survey, read_survey
+from siteassess.horizon.terrain import Terrain, read_terrain
 from siteassess.site_file.model import Site
 
 __all__ = ["read_skyline"]
@@ -47,16 +48,19 @@ def read_skyline(site: Site, *, years: float = 0.0) -> Skyline:
             np.concatenate([np.empty((0, 2)), *(survey.surveyed_deg for survey in surveys)])
         ),
         surveys=tuple(survey.facts for survey in surveys if isinstance(survey, Survey)),
-        remarks=tuple(remark for one in surveys if isinstance(one, Outlines) for remark in one.remarks),
+        remarks=tuple(remark for one in surveys if not isinstance(one, Survey) for remark in one.remarks),
     )
 
 
-def _source(site: Site, index: int, years: float) -> Survey | Outlines:
+def _source(site: Site, index: int, years: float) -> Survey | Outlines | Terrain:
     source = site.horizon[index]
+    if source.source == "terrain":
+        return read_terrain(site, source)
+    path = site.path.parent / source.files[0]
     if source.source == "outlines":
-        return read_outlines(site.path.parent / source.file, source, site.mount, site.position)
+        return read_outlines(path, source, site.mount, site.position)
     return read_survey(
-        site.path.parent / source.file,
+        path,
         source,
         site.mount,
         turn=north_turn(site, index),

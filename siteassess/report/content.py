@@ -202,7 +202,7 @@ def _source_row(source: HorizonSource) -> tuple[str, ...]:
 
     return (
         SOURCES[source.source],
-        plain(source.file.replace("\\", "/").rsplit("/", 1)[-1]),
+        plain(listed(file.replace("\\", "/").rsplit("/", 1)[-1] for file in source.files)),
         source.surveyed_on.isoformat() if source.surveyed_on else "not given",
         "a landmark" if source.landmark_reading_deg is not None else BEARINGS[source.bearings],
         error(source.azimuth_error_deg),
@@ -213,6 +213,8 @@ def _source_row(source: HorizonSource) -> tuple[str, ...]:
 
 
 def _seen_from(source: HorizonSource) -> str:
+    if source.source == "terrain":
+        return "the antenna"
     if source.source == "outlines":
         return f"the antenna, with the ground {number(source.ground_up_m, 2)} m above the mark"
     up = "at the antenna" if source.instrument_up_m is None else f"{number(source.instrument_up_m, 2)} m up"

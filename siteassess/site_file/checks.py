@@ -20,7 +20,9 @@ from siteassess.site_file.model import (
     SkyModel,
     purposes_dbhz,
 )
+from siteassess.site_file.outline_checks import outline_mistakes
 from siteassess.site_file.refusals import key_path
+from siteassess.site_file.terrain_checks import terrain_mistakes
 from siteassess.tables import packaged_rows
 from siteassess.wording import did_you_mean, listed, shown
 
@@ -73,7 +75,7 @@ def cross_mistakes(sections: Sections, file: str) -> list[Mistake]:
     mistakes += chain_mistakes(sections.chain, carriers_hz or {}, file)
     if not sections.has_own_parts:  # else whoever reads that table looks
         mistakes += kind_mistakes(sections.chain, packaged_kinds(), file)
-    mistakes += _horizon_mistakes(sections.horizon, file)
+    mistakes += _horizon_mistakes(sections.horizon, sections.place, file)
     if sections.require is not None and carriers_hz is not None:
         mistakes += _require_mistakes(sections.require, tuple(carriers_hz), file)
     return mistakes
@@ -156,17 +158,19 @@ def _antenna_mistakes(antenna: AntennaChoice, file: str) -> Iterator[Mistake]:
         yield _given(file, ("antenna", "pattern"), antenna.pattern, allowed)
 
 
-def _horizon_mistakes(horizon: tuple[HorizonSource | None, ...], file: str) -> Iterator[Mistake]:
+def _horizon_mistakes(
+    horizon: tuple[HorizonSource | None, ...], place: Place | None, file: str
+) -> Iterator[Mistake]:
     files: list[str] = []
     for index, source in enumerate(horizon):
         if source is None:
             continue
-        if source.file in files:
-            yield _given(file, ("horizon", index, "file"), source.file, "it stands there twice; keep one")
-        files.append(source.file)
-        if source.source != "survey":
-            allowed = f"this version supports {shown('survey')} only"
-            yield _given(file, ("horizon", index, "source"), source.source, allowed)
+        for name in source.files:
+            if name in files:
+                yield _given(file, ("horizon", index, "file"), name, "it stands there twice; keep one")
+            files.append(name)
+        yield from outline_mistakes(source, index, file)
+        yield from terrain_mistakes(source, index, place, file)
 
 
 def _require_mistakes(require: Requirements, signals: tuple[str, ...], file: str) -> Iterator[Mistake]:

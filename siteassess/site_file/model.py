@@ -39,6 +39,10 @@ def _shape_or_purpose(value: object) -> str:
     return "purpose" if isinstance(value, str) else _shape(value)
 
 
+def _text_or_list(value: object) -> str:
+    return "list" if isinstance(value, tuple) else "text"
+
+
 def _whole_number(value: object) -> object:
     if type(value) is not int:  # Python takes 1.0 and True for 1
         raise ValueError("it must be 1")
@@ -60,6 +64,10 @@ Voltage = Annotated[float, Field(ge=0, le=60)]
 # Control characters would break a report's line; a Windows path in a basic string of TOML brings them in.
 Text = Annotated[str, Field(min_length=1, max_length=200, pattern=r"^[^\u0000-\u001f\u007f]*$")]
 FilePath = Annotated[str, Field(min_length=1, max_length=4000, pattern=r"^[^\u0000-\u001f\u007f]*$")]
+FilePaths = Annotated[
+    Annotated[FilePath, Tag("text")] | Annotated[tuple[FilePath, ...], Tag("list")],
+    Discriminator(_text_or_list),
+]
 # Authority and code; a system of heights may be joined to one of places.
 SystemCode = Annotated[str, Field(pattern=r"^[A-Za-z]+:[0-9A-Za-z_.]+(\+([A-Za-z]+:)?[0-9A-Za-z_.]+)?$")]
 # One number, or a table from the carrier in MHz, as text, to the number at that carrier.
@@ -273,10 +281,11 @@ class Part(Record):
 class HorizonSource(Record):
     """One `[[horizon]]` block: where part of the skyline comes from."""
 
-    source: Literal["survey", "outlines", "terrain"] = Field(
-        description="How the horizon was found. This version reads survey; outlines and terrain are reserved."
+    source: Literal["survey", "outlines", "terrain"] = Field(description="How the horizon was found.")
+    file: FilePaths = Field(
+        description="The readings, a CSV file; building outlines, GeoJSON; or an elevation raster, such as "
+        "GeoTIFF, or a list of them. Relative to the site file."
     )
-    file: FilePath = Field(description="The readings, a CSV file, relative to the site file.")
     surveyed_on: date | None = Field(default=None, description="Day of the survey, such as 2026-10-04.")
     bearings: Literal["true-north", "magnetic-north", "grid-north"] = Field(
         default="true-north",
@@ -326,6 +335,37 @@ class HorizonSource(Record):
         default=None,
         description="Height of the instrument's eye above the survey mark [m]; absent: at the phase centre.",
     )
+    crs: SystemCode | None = Field(
+        default=None,
+        description="Reference system of building outlines, such as EPSG:27700; absent: that of the file, "
+        "which for GeoJSON is longitude and latitude, WGS 84.",
+    )
+    ground_up_m: Offset = Field(
+        default=0.0,
+        description="Height of the ground at the buildings above the survey mark [m]; negative when the mark "
+        "is on a roof.",
+    )
+    nearest_m: Annotated[float, Field(ge=10, le=100_000)] = Field(
+        default=100.0, description="Nearer ground is left out of terrain: it stays with the survey [m]."
+    )
+    reach_m: Annotated[float, Field(ge=100, le=200_000)] = Field(
+        default=30_000.0, description="Ground farther away is left out of terrain [m]."
+    )
+    heights: Literal["from-raster", "site"] = Field(
+        default="from-raster",
+        description="How the antenna is set over the terrain: the survey mark on the raster's ground, or at "
+        "site.height_m, which then must count from where the raster counts.",
+    )
+    mark_above_ground_m: Annotated[float, Field(ge=-100, le=1000)] = Field(
+        default=0.0,
+        description="Survey mark above the raster's ground [m]: the height of the building where the raster "
+        "holds bare ground.",
+    )
+
+    @property
+    def files(self) -> tuple[str, ...]:
+        """The files that it names."""
+        return (self.file,) if isinstance(self.file, str) else self.file
 
 
 class Foliage(Record):

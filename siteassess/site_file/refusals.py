@@ -13,7 +13,8 @@ from siteassess.wording import did_you_mean, listed, shown
 __all__ = ["key_path", "refusals"]
 
 PLAIN_KEY = re.compile(r"[A-Za-z0-9_-]{1,60}")
-SHAPES = ("number", "table", "purpose")  # the branches of a union, in their order
+# Tags of the branches of a union, and their order in it.
+SHAPES = {"number": 0, "table": 1, "purpose": 2, "text": 0, "list": 1}
 PATH_HINT = "write a Windows path with / or in single quotes"
 
 
@@ -87,7 +88,7 @@ def _follow(schema: Node, loc: tuple[str | int, ...]) -> tuple[list[str | int], 
     for step in loc:
         parent = node
         if "oneOf" in node and step in SHAPES:
-            node = node["oneOf"][SHAPES.index(str(step))]
+            node = node["oneOf"][SHAPES[str(step)]]
             continue
         steps.append(step)
         if isinstance(step, int):
@@ -104,6 +105,8 @@ def _resolved(node: Node, schema: Node) -> Node:
 
 
 def _must_be(node: Node, steps: list[str | int]) -> str:
+    if "oneOf" in node and node["oneOf"][0]["type"] == "string":
+        return "it must be a text in quotation marks, or a list of such texts"
     if "oneOf" in node:
         return f"it must be {_number(node['oneOf'][0])}, or a table of such numbers"
     if "const" in node:

@@ -309,7 +309,11 @@ def test_records_of_python_users_are_checked_too() -> None:
             'source = "surveyed"',
             'horizon[1].source is "surveyed"; it must be "survey", "outlines" or "terrain"',
         ),
-        ('file = "horizon.csv"', "", "horizon[1].file is missing; it must be a text in quotation marks"),
+        (
+            'file = "horizon.csv"',
+            "",
+            "horizon[1].file is missing; it must be a text in quotation marks, or a list of such texts",
+        ),
         (
             'file = "horizon.csv"',
             'file = "C:\\new\\table.csv"',
@@ -493,12 +497,6 @@ def test_records_of_python_users_are_checked_too() -> None:
             "min_cn0_dbhz = {}",
             "require.min_cn0_dbhz has no value for GPS L1 C/A and GLONASS L1OF;"
             " a table must hold one for every signal of the site",
-        ),
-        # Later versions
-        (
-            'source = "survey"',
-            'source = "terrain"',
-            'horizon[1].source is "terrain"; this version supports "survey" only',
         ),
     ],
 )

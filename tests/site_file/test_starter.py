@@ -34,7 +34,7 @@ def test_starter_is_a_site_in_a_new_or_an_empty_folder(tmp_path: Path, folder: s
 def test_every_line_that_is_off_can_be_switched_on(tmp_path: Path) -> None:
     write_starter(tmp_path / "new")
     path = tmp_path / "new" / "site.toml"
-    text = re.sub(r"(?m)^# (?=[a-z_]+ = )", "", path.read_text(encoding="utf-8"))
+    text = re.sub(r"(?m)^# (?=[a-z_]+ = |\[\[)", "", path.read_text(encoding="utf-8"))
     # The position may be given once only, and a geoid height belongs to an orthometric height.
     text = re.sub(r"(?m)^(latitude|longitude)_deg = ", r"# \g<0>", text)
     text = text.replace('height_system = "ellipsoidal"', 'height_system = "orthometric"')
