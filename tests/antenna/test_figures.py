@@ -104,3 +104,14 @@ def test_unknown_cross_polar_gain_has_no_axial_ratio() -> None:
     assert {gain.axial_ratio_db for gain in gains} == {None}
     known = antenna_figures(builtin_pattern("patch"), L1_HZ).gains
     assert all(gain.axial_ratio_db is not None and gain.axial_ratio_db > 0.0 for gain in known)
+
+
+def test_loss_takes_gain_and_leaves_directivity() -> None:
+    # Definition: directivity counts what is radiated, gain what is fed.
+    whole, lossy = hemisphere(), by_elevation(
+        "lossy", np.array([-90.0, 0.0, 0.0, 90.0]), np.array([FLOOR_DBIC, FLOOR_DBIC, 1.0103, 1.0103])
+    )  # fmt: skip
+    assert antenna_figures(lossy, L1_HZ).directivity_dbic == pytest.approx(
+        antenna_figures(whole, L1_HZ).directivity_dbic, abs=HUNDREDTH_DB
+    )
+    assert antenna_figures(lossy, L1_HZ).peak_gain_dbic == pytest.approx(1.0103)

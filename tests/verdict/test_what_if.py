@@ -3,6 +3,7 @@
 from collections.abc import Callable
 from pathlib import Path
 
+import numpy as np
 import pytest
 
 from siteassess import Assessment, assess, read_site
@@ -39,7 +40,7 @@ days = 1
 step_s = 600
 [require]
 elevation_mask_deg = 5
-min_cn0_dbhz = 44
+min_cn0_dbhz = {min_cn0_dbhz}
 """
 HORIZON = (
     "azimuth_deg,elevation_deg,obstacle,cover,depth_m\n0,4,,,\n0,30,trees,foliage,4\n80,35,trees,foliage,4\n"
@@ -50,7 +51,14 @@ HORIZON = (
 def assessed(tmp_path: Path) -> Callable[..., Assessment]:
     def of(**values: object) -> Assessment:
         text = SITE.format(
-            **{"antenna": "patch", "noise_figure_db": 2.5, "loss_db": 10.0, "mount": "", **values}
+            **{
+                "antenna": "patch",
+                "noise_figure_db": 2.5,
+                "loss_db": 10.0,
+                "mount": "",
+                "min_cn0_dbhz": 44,
+                **values,
+            }
         )
         (tmp_path / "site.toml").write_text(text, encoding="utf-8")
         (tmp_path / "horizon.csv").write_text(HORIZON, encoding="utf-8")
@@ -97,6 +105,17 @@ def test_some_change_matters_here(assessed: Callable[..., Assessment]) -> None:
 def test_some_change_matters_for_the_worse(assessed: Callable[..., Assessment]) -> None:
     found = change(assessed(antenna="choke-ring"), "antenna: patch")
     assert found.usable_share < found.usable_share_now
+
+
+@pytest.mark.parametrize("min_cn0_dbhz", [42.0, 44.0, 47.0, 50.0])
+def test_samples_that_cannot_be_lost_need_no_look(
+    assessed: Callable[..., Assessment], monkeypatch: pytest.MonkeyPatch, min_cn0_dbhz: float
+) -> None:
+    # A quiet chain, so that antennas differ in noise too.
+    values = {"antenna": "choke-ring", "noise_figure_db": 0.2, "loss_db": 0.0, "min_cn0_dbhz": min_cn0_dbhz}
+    some = assessed(**values).what_if
+    monkeypatch.setattr("siteassess.verdict.what_if._least_difference_db", lambda *arguments: -np.inf)
+    assert assessed(**values).what_if == some
 
 
 def test_own_antenna_is_no_change(assessed: Callable[..., Assessment]) -> None:
