@@ -40,5 +40,11 @@ def named_pattern(name: str) -> GainPattern:
         return builtin_pattern(name)
     allowed = did_you_mean(name, known, f"built in are {listed(known)}; a file ends in .csv")
     raise InputError(
-        Mistake(file=name, where="", problem="there is no such antenna pattern", allowed=allowed, value=name)
+        Mistake(
+            file=name or '""',
+            where="",
+            problem="there is no such antenna pattern",
+            allowed=allowed,
+            value=name,
+        )
     )
