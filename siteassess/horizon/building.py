@@ -21,12 +21,13 @@ LONGEST_NAME = 200
 COVERS = ("solid", "foliage")
 LEAVES = ("in-leaf", "leafless", "evergreen")
 SHAPES = "it must be a Polygon or a MultiPolygon"
-# Numbers that a building may carry: lowest, highest, and whether the lowest itself is allowed.
-RANGES_M = {
+# Numbers that a feature may carry: lowest, highest, and whether the lowest itself is allowed.
+RANGES = {
     "height_m": (0.0, 2000.0, False),
     "base_m": (-1000.0, 9000.0, True),
     "underside_m": (0.0, 2000.0, True),
     "depth_m": (0.0, 1000.0, False),
+    "growth_m_per_year": (0.0, 5.0, True),
 }
 
 
@@ -48,6 +49,8 @@ class Building:
         Open below this height above the foot; None when it stands on the ground.
     depth_m : float or None
         Path through leaves; None for what is solid, and where the outline gives it.
+    growth_m_per_year : float or None
+        Growth of the top of foliage [m/year]; None where the site's holds.
     parts : tuple of tuple of array
         Polygons, each an outer ring and its holes, in the coordinates of the file.
     """
@@ -59,6 +62,7 @@ class Building:
     height_m: float
     underside_m: float | None
     depth_m: float | None
+    growth_m_per_year: float | None = None
     parts: tuple[tuple[Ring, ...], ...]
 
 
@@ -124,6 +128,7 @@ def _building(feature: Any, number: int, file: str, mistakes: list[Mistake]) -> 
         return None, False
     cover: Literal["solid", "foliage"] = properties.get("cover") or "solid"
     underside_m, depth_m = properties.get("underside_m"), properties.get("depth_m")
+    growth = properties.get("growth_m_per_year")
     return Building(
         name=name or f"{'trees' if cover == 'foliage' else 'building'} {number}",
         cover=cover,
@@ -132,13 +137,14 @@ def _building(feature: Any, number: int, file: str, mistakes: list[Mistake]) -> 
         height_m=float(properties["height_m"]),
         underside_m=None if underside_m is None else float(underside_m),
         depth_m=None if depth_m is None else float(depth_m),
+        growth_m_per_year=None if growth is None else float(growth),
         parts=tuple(rings),
     ), closed
 
 
 def _property_mistakes(properties: Mapping[str, Any]) -> Iterator[tuple[str, str, str, object]]:
     wrong = False
-    for key, (low, high, inclusive) in RANGES_M.items():
+    for key, (low, high, inclusive) in RANGES.items():
         value = properties.get(key)
         if value is None:
             if key == "height_m":
@@ -167,7 +173,7 @@ def _property_mistakes(properties: Mapping[str, Any]) -> Iterator[tuple[str, str
             choice = " or ".join(", ".join(f'"{one}"' for one in known).rsplit(", ", 1))
             yield f", {key}", f"is {shown(value)}", f"it must be {choice}", value
     if properties.get("cover") != "foliage":
-        for key in ("leaf", "depth_m"):
+        for key in ("leaf", "depth_m", "growth_m_per_year"):
             if properties.get(key) is not None:
                 value = properties[key]
                 yield f", {key}", f"is {shown(value)}", 'it goes with cover "foliage" only', value

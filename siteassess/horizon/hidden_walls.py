@@ -28,12 +28,15 @@ def screen_tangent(walls: Walls, level_m: FloatArray) -> FloatArray:
     first = np.ceil(walls.start_deg / STEP_DEG).astype(np.int64)
     steps = np.floor(walls.end_deg / STEP_DEG).astype(np.int64) - first
     which = _largest(walls, level_m, steps > 0)
-    wall = np.repeat(which, steps[which])
-    number = np.arange(len(wall)) - np.repeat(np.cumsum(steps[which]) - steps[which], steps[which])
-    step = first[wall] + number
-    # A wall is nearer between two azimuths than at the farther of its two places.
-    farther_m = np.maximum(*(walls.distance_m(wall, at * STEP_DEG) for at in (step, step + 1)))
-    np.maximum.at(lower, step % STEPS, level_m[wall] / farther_m)
+    # Places between steps: one more than the steps that a wall hides as a whole.
+    places = steps[which] + 1
+    wall = np.repeat(which, places)
+    step = first[wall] + np.arange(len(wall)) - np.repeat(np.cumsum(places) - places, places)
+    tangent = level_m[wall] / walls.distance_m(wall, step * STEP_DEG)
+    one_wall = wall[1:] == wall[:-1]
+    # A wall is nearer between two places than at the farther of them.
+    lowest = np.minimum(tangent[1:], tangent[:-1])[one_wall]
+    np.maximum.at(lower, step[:-1][one_wall] % STEPS, lowest)
     return lower
 
 

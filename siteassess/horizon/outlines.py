@@ -1,11 +1,11 @@
 """One file of building outlines, from its coordinates to obstacles."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from pathlib import Path
 
 import numpy as np
 
-from siteassess.horizon.building import checked_buildings
+from siteassess.horizon.building import Building, checked_buildings
 from siteassess.horizon.curves import FloatArray
 from siteassess.horizon.geojson import read_geojson
 from siteassess.horizon.outline_obstacles import obstacles_of
@@ -38,7 +38,15 @@ class Outlines:
     remarks: tuple[str, ...]
 
 
-def read_outlines(path: Path, source: HorizonSource, mount: Mount, position: Position) -> Outlines:
+def read_outlines(
+    path: Path,
+    source: HorizonSource,
+    mount: Mount,
+    position: Position,
+    *,
+    years: float = 0.0,
+    growth_m_per_year: float = 0.0,
+) -> Outlines:
     """A file of building outlines, as seen from the antenna's phase centre.
 
     Parameters
@@ -51,6 +59,8 @@ def read_outlines(path: Path, source: HorizonSource, mount: Mount, position: Pos
         Height of the antenna above the survey mark.
     position : Position
         The survey mark.
+    years, growth_m_per_year : float
+        Age of the outlines for which they are read, and the growth of trees that do not say it themselves.
 
     Raises
     ------
@@ -59,6 +69,8 @@ def read_outlines(path: Path, source: HorizonSource, mount: Mount, position: Pos
     """
     features = (read_geojson if path.suffix.lower() in GEOJSON else read_vector_file)(path)
     buildings, unclosed = checked_buildings(features, path.name)
+    if years > 0.0:
+        buildings = tuple(_grown(building, years, growth_m_per_year) for building in buildings)
     parts, remarks = placed_parts(buildings, source.crs or features.crs, position, path.name)
     antenna_m = mount.phase_centre_height_m - source.ground_up_m
     if unclosed:
@@ -68,3 +80,10 @@ def read_outlines(path: Path, source: HorizonSource, mount: Mount, position: Pos
         surveyed_deg=np.array([[0.0, 360.0]]) if source.complete else np.empty((0, 2)),
         remarks=remarks,
     )
+
+
+def _grown(building: Building, years: float, growth_m_per_year: float) -> Building:
+    """Foliage with its top raised; what is solid stays."""
+    own = building.growth_m_per_year
+    rise_m = years * (growth_m_per_year if own is None else own)
+    return replace(building, height_m=building.height_m + rise_m) if building.cover == "foliage" else building

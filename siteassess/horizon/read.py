@@ -58,7 +58,14 @@ def _source(site: Site, index: int, years: float) -> Survey | Outlines | Terrain
         return read_terrain(site, source)
     path = site.path.parent / source.files[0]
     if source.source == "outlines":
-        return read_outlines(path, source, site.mount, site.position)
+        return read_outlines(
+            path,
+            source,
+            site.mount,
+            site.position,
+            years=years,
+            growth_m_per_year=site.foliage.growth_m_per_year,
+        )
     return read_survey(
         path,
         source,
