@@ -130,3 +130,11 @@ def test_numbers_in_words():
     assert told_apart(10.0, 10.0, "deg") == ("10.0°", "10.0°")
     assert azimuth_range(350.0, 372.0) == "350.0° to 12.0°"
     assert compass_point(359.0) == "north"
+
+
+def test_survey_tells_what_was_changed_in_outlines(markup_assessment):
+    remark = 'yard.geojson: the outline of "hall" was not closed and was closed.'
+    skyline = dataclasses.replace(markup_assessment.skyline, remarks=(remark,))
+    content = report_content(dataclasses.replace(markup_assessment, skyline=skyline))
+    (survey,) = (section for section in content.sections if section.key == "survey")
+    assert survey.sentences[-1] == remark
