@@ -4,23 +4,17 @@ from collections.abc import Iterator, Mapping
 from dataclasses import dataclass
 from typing import Any, Literal
 
-import numpy as np
-from numpy.typing import NDArray
-
 from siteassess.errors import InputError, Mistake
 from siteassess.horizon.geojson import Features
+from siteassess.horizon.rings import Ring, WrongShapeError, polygon_parts
 from siteassess.wording import did_you_mean, shown
 
 __all__ = ["Building", "checked_buildings"]
-
-FloatArray = NDArray[np.float64]
-Ring = FloatArray  # shape (position, 2), the first one repeated at the end
 
 MOST_MISTAKES = 50  # of one file; further ones say nothing new
 LONGEST_NAME = 200
 COVERS = ("solid", "foliage")
 LEAVES = ("in-leaf", "leafless", "evergreen")
-SHAPES = "it must be a Polygon or a MultiPolygon"
 # Numbers that a feature may carry: lowest, highest, and whether the lowest itself is allowed.
 RANGES = {
     "height_m": (0.0, 2000.0, False),
@@ -121,8 +115,8 @@ def _building(feature: Any, number: int, file: str, mistakes: list[Mistake]) -> 
     rings: list[tuple[Ring, ...]] = []
     closed = False
     try:
-        rings, closed = _parts(feature.get("geometry"))
-    except _WrongShapeError as error:
+        rings, closed = polygon_parts(feature.get("geometry"))
+    except WrongShapeError as error:
         refuse(*error.args)
     if mistakes:
         return None, False
@@ -177,60 +171,3 @@ def _property_mistakes(properties: Mapping[str, Any]) -> Iterator[tuple[str, str
             if properties.get(key) is not None:
                 value = properties[key]
                 yield f", {key}", f"is {shown(value)}", 'it goes with cover "foliage" only', value
-
-
-class _WrongShapeError(Exception):
-    """An outline that is none: place, problem, what is allowed."""
-
-
-def _parts(geometry: Any) -> tuple[list[tuple[Ring, ...]], bool]:
-    """Polygons of a geometry, and whether a ring of it had to be closed."""
-    if geometry is None:
-        raise _WrongShapeError("", "has no geometry", SHAPES)
-    kind = geometry.get("type") if isinstance(geometry, dict) else None
-    if kind not in ("Polygon", "MultiPolygon"):
-        raise _WrongShapeError(", geometry", f"is a {kind}" if isinstance(kind, str) else "is none", SHAPES)
-    coordinates = geometry.get("coordinates")
-    polygons = [coordinates] if kind == "Polygon" else coordinates
-    if not isinstance(polygons, list) or not polygons:
-        raise _WrongShapeError(", coordinates", "are no list of positions", SHAPES)
-    parts, closed = [], False
-    for polygon in polygons:
-        if not isinstance(polygon, list) or not polygon:
-            raise _WrongShapeError(", coordinates", "hold a polygon without rings", SHAPES)
-        rings = [_ring(ring) for ring in polygon]
-        parts.append(tuple(ring for ring, _ in rings))
-        closed |= any(was_closed for _, was_closed in rings)
-    return parts, closed
-
-
-def _ring(positions: Any) -> tuple[Ring, bool]:
-    try:
-        ring = np.array(positions)
-    except ValueError:  # positions with and without a height, or worse
-        ring = np.array(_without_heights(positions))
-    if ring.ndim == 0:
-        raise _WrongShapeError(", coordinates", "hold a ring that is no list", SHAPES)
-    if ring.size and (ring.ndim != 2 or ring.shape[1] < 2):
-        raise _WrongShapeError(", coordinates", "hold a position that is no pair of numbers", SHAPES)
-    if ring.size and ring.dtype.kind not in "if":
-        raise _WrongShapeError(", coordinates", "hold something that is no number", SHAPES)
-    ring = np.array(ring[:, :2], dtype=float) if ring.size else np.empty((0, 2))
-    if not np.isfinite(ring).all():
-        raise _WrongShapeError(", coordinates", "hold a number that is too large", SHAPES)
-    was_open = bool(len(ring)) and not np.array_equal(ring[0], ring[-1])
-    if was_open:
-        ring = np.concatenate([ring, ring[:1]])
-    if len(ring) < 4:
-        allowed = "a ring needs at least 4, the last one like the first"
-        raise _WrongShapeError(", coordinates", f"hold a ring of {len(ring) - was_open} positions", allowed)
-    return ring, was_open
-
-
-def _without_heights(positions: Any) -> list[Any]:
-    pairs = [position[:2] if isinstance(position, list) else position for position in positions]
-    if any(not isinstance(pair, list) or len(pair) != 2 for pair in pairs):
-        raise _WrongShapeError(", coordinates", "hold a position that is no pair of numbers", SHAPES)
-    if any(isinstance(value, list | dict) for pair in pairs for value in pair):
-        raise _WrongShapeError(", coordinates", "hold something that is no number", SHAPES)
-    return pairs
