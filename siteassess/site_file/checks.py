@@ -10,6 +10,7 @@ from pydantic import ValidationError
 from siteassess.errors import Mistake
 from siteassess.site_file.chain_checks import chain_mistakes
 from siteassess.site_file.kind_checks import kind_mistakes, packaged_kinds
+from siteassess.site_file.limit_checks import limit_mistakes
 from siteassess.site_file.model import (
     AntennaChoice,
     HorizonSource,
@@ -76,6 +77,9 @@ def cross_mistakes(sections: Sections, file: str) -> list[Mistake]:
     if not sections.has_own_parts:  # else whoever reads that table looks
         mistakes += kind_mistakes(sections.chain, packaged_kinds(), file)
     mistakes += _horizon_mistakes(sections.horizon, sections.place, file)
+    if sections.require is not None:
+        known = sections.sky if carriers_hz is not None else None
+        mistakes += limit_mistakes(sections.require, None if known is None else systems_of(known), file)
     if sections.require is not None and carriers_hz is not None:
         mistakes += _require_mistakes(sections.require, tuple(carriers_hz), file)
     return mistakes

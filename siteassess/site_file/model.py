@@ -8,7 +8,7 @@ from dataclasses import dataclass
 from datetime import date, datetime
 from functools import cache
 from pathlib import Path
-from typing import Annotated, Literal
+from typing import Annotated, Any, Literal
 
 from pydantic import BaseModel, BeforeValidator, ConfigDict, Discriminator, Field, PrivateAttr, Tag
 
@@ -61,6 +61,7 @@ Temperature = Annotated[float, Field(ge=0, le=1000)]
 Cn0 = Annotated[float, Field(ge=0, le=70)]
 Decibels = Annotated[float, Field(ge=0, le=100)]
 Voltage = Annotated[float, Field(ge=0, le=60)]
+SatelliteNumber = Annotated[int, Field(ge=1, le=1000)]
 # Control characters would break a report's line; a Windows path in a basic string of TOML brings them in.
 Text = Annotated[str, Field(min_length=1, max_length=200, pattern=r"^[^\u0000-\u001f\u007f]*$")]
 FilePath = Annotated[str, Field(min_length=1, max_length=4000, pattern=r"^[^\u0000-\u001f\u007f]*$")]
@@ -414,9 +415,23 @@ class SkyModel(Record):
     )
 
 
+def _mask_unless_in_a_set(schema: dict[str, Any]) -> None:
+    """The mask is mandatory where no set of criteria gives it."""
+    schema["required"] = [key for key in schema["required"] if key != "elevation_mask_deg"]
+    schema["if"] = {"not": {"required": ["criteria_set"]}}
+    schema["then"] = {"required": ["elevation_mask_deg"]}
+
+
 class Requirements(Record):
     """Table `[require]`: what the user asks of the spot. Limits that are absent are reported as advice."""
 
+    model_config = ConfigDict(json_schema_extra=_mask_unless_in_a_set)
+
+    criteria_set: Text | None = Field(
+        default=None,
+        description="Named set of published limits that are asked for: igs, ngs-mark or timing. Keys that "
+        "stand here win over those of the set.",
+    )
     elevation_mask_deg: Annotated[float, Field(ge=0, lt=90)] = Field(
         description="Satellites below this elevation are not counted [deg]."
     )
@@ -445,10 +460,39 @@ class Requirements(Record):
     max_horizon_deg: Annotated[float, Field(ge=0, le=90)] | None = Field(
         default=None, description="Highest elevation that the solid skyline may reach [deg]."
     )
+    max_reflector_deg: Annotated[float, Field(ge=0, le=90)] | None = Field(
+        default=None,
+        description="Highest elevation of solid obstacles nearer than reflector_distance_m [deg].",
+    )
+    reflector_distance_m: Annotated[float, Field(ge=0, le=1000)] | None = Field(
+        default=None, description="Horizontal distance from which obstacles no longer count as near [m]."
+    )
     min_height_above_roof_m: Height | None = Field(
         default=None, description="Smallest height of the antenna above the roof [m]."
     )
-
+    min_metal_roof_offset_m: Annotated[float, Field(ge=0, le=0.1)] | None = Field(
+        default=None,
+        description="How far the height above a roof of metal must be off any multiple of 19 or 24 cm [m].",
+    )
+    min_satellites: SatelliteNumber | None = Field(
+        default=None, description="How many satellites, of all systems together, must be usable at once."
+    )
+    min_satellites_share: Share | None = Field(
+        default=None, description="Share of time for which that many must be usable [share]."
+    )
+    min_satellites_by_system: dict[str, SatelliteNumber] | None = Field(
+        default=None,
+        description="How many satellites of single systems must be usable at once, for the same share.",
+    )
+    max_gap_s: Annotated[float, Field(ge=0)] | None = Field(
+        default=None, description="Longest time with fewer than min_satellites usable [s]."
+    )
+    max_pdop: Annotated[float, Field(gt=0)] | None = Field(
+        default=None, description="Largest dilution of precision of the position, of the usable satellites."
+    )
+    min_pdop_share: Share | None = Field(
+        default=None, description="Share of time for which the PDOP must be within its limit [share]."
+    )
     min_net_gain_db: Decibels | None = Field(
         default=None, description="Smallest gain between the antenna port and the receiver [dB]."
     )
@@ -471,6 +515,14 @@ class Requirements(Record):
     min_saturation_margin_db: Decibels | None = Field(
         default=None, description="Smallest distance of the level at any part from its saturation [dB]."
     )
+
+    _asked_by: dict[str, str] = PrivateAttr(default_factory=dict)
+
+    def asked_by(self, key: str) -> str | None:
+        """Who asks for a limit: the site file, or the set that it names; None where nobody does."""
+        if getattr(self, key) is None:
+            return None
+        return self._asked_by.get(key, "site file")
 
     def min_cn0_for(self, signal: str) -> float:
         """Smallest C/N0 [dB-Hz] that the user asks of one signal."""

@@ -12,6 +12,7 @@ from pydantic import ValidationError
 from siteassess.errors import InputError, Mistake
 from siteassess.site_file.bearing_checks import bearing_mistakes
 from siteassess.site_file.checks import Sections, cross_mistakes, signals_of, systems_of
+from siteassess.site_file.criteria_sets import with_criteria_set
 from siteassess.site_file.legible import legible_site
 from siteassess.site_file.model import Place, Position, Site, SkyModel
 from siteassess.site_file.position import survey_mark
@@ -62,7 +63,7 @@ def read_site(path: str | os.PathLike[str]) -> Site:
     if path.is_dir():
         path = path / "site.toml"
     file = path.name
-    raw = _parsed(read_user_text(path), file)
+    raw, asked_by = with_criteria_set(_parsed(read_user_text(path), file))
     sections = Sections.of(raw)
     position, mistakes = _surveyed(sections.place, file)
     mistakes += cross_mistakes(sections, file)
@@ -75,7 +76,7 @@ def read_site(path: str | os.PathLike[str]) -> Site:
     if mistakes or position is None:
         raise RefusedSiteError(*mistakes, legible=legible_site(raw, path))
     site = site.model_copy(update={"sky": _completed(site.sky)})
-    site._path, site._position = path, position
+    site._path, site._position, site.require._asked_by = path, position, asked_by
     return site
 
 

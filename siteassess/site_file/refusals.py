@@ -117,6 +117,8 @@ def _must_be(node: Node, steps: list[str | int]) -> str:
         return "it must be a date without quotation marks, such as 2026-10-04"
     if node.get("format") == "date-time":
         return "it must be a date and time without quotation marks, such as 2026-01-01T00:00:00"
+    if isinstance(node.get("additionalProperties"), dict):
+        return "it must be a table, such as { GPS = 5 }"
     block = next((step for step in steps if isinstance(step, str)), "")
     kinds = {
         "number": _number(node),
