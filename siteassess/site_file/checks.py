@@ -14,6 +14,7 @@ from siteassess.site_file.limit_checks import limit_mistakes
 from siteassess.site_file.model import (
     AntennaChoice,
     HorizonSource,
+    Mount,
     Part,
     Place,
     Record,
@@ -42,6 +43,7 @@ class Sections:
     """
 
     place: Place | None
+    mount: Mount | None
     antenna: AntennaChoice | None
     chain: tuple[Part | None, ...]
     has_own_parts: bool
@@ -54,6 +56,7 @@ class Sections:
         """Sections of a site file as TOML reads it, lists as tuples."""
         return cls(
             place=_valid(Place, raw.get("site")),
+            mount=_valid(Mount, raw.get("mount")),
             antenna=_valid(AntennaChoice, raw.get("antenna")),
             chain=_valid_blocks(Part, raw.get("chain")),
             has_own_parts="parts" in raw,
@@ -71,6 +74,8 @@ def cross_mistakes(sections: Sections, file: str) -> list[Mistake]:
         mistakes += _sky_mistakes(sections.sky, file)
         if not mistakes:
             carriers_hz = {name: _signal_table()[name][1] for name in signals_of(sections.sky)}
+    if sections.mount is not None:
+        mistakes += _mount_mistakes(sections.mount, file)
     if sections.antenna is not None:
         mistakes += _antenna_mistakes(sections.antenna, file)
     mistakes += chain_mistakes(sections.chain, carriers_hz or {}, file)
@@ -152,6 +157,13 @@ def _name_mistakes(file: str, key: str, names: tuple[str, ...], known: tuple[str
             yield _given(file, place, name, did_you_mean(name, known, f"the {key} are {listed(known)}"))
         elif name in names[:index]:
             yield _given(file, place, name, "it stands there twice; keep one")
+
+
+def _mount_mistakes(mount: Mount, file: str) -> Iterator[Mistake]:
+    tallest_m, present_m = mount.max_mast_height_m, mount.mast_height_m
+    if tallest_m is not None and tallest_m < present_m:
+        allowed = f"it must be at least mast_height_m, which is {present_m:g}"
+        yield _given(file, ("mount", "max_mast_height_m"), tallest_m, allowed)
 
 
 def _antenna_mistakes(antenna: AntennaChoice, file: str) -> Iterator[Mistake]:

@@ -149,6 +149,11 @@ class Mount(Record):
     """Table `[mount]`: how the antenna stands on the mark."""
 
     mast_height_m: Height = Field(description="Antenna reference point (ARP) above the survey mark [m].")
+    max_mast_height_m: Height | None = Field(
+        default=None,
+        description="Tallest mast that may stand here [m]: up to it the report tells what more height "
+        "brings. Absent: 5 m above mast_height_m.",
+    )
     phase_centre_above_arp_m: Annotated[float, Field(ge=-10, le=10)] = Field(
         default=0.0,
         description="Phase centre above the antenna reference point [m]; directions and powers refer to it.",
