@@ -223,7 +223,7 @@ def _require_mistakes(require: Requirements, signals: tuple[str, ...], file: str
         )
 
 
-def _given(file: str, steps: tuple[str | int, ...], value: str, allowed: str) -> Mistake:
+def _given(file: str, steps: tuple[str | int, ...], value: object, allowed: str) -> Mistake:
     return Mistake(
         file=file, where=key_path(*steps), problem=f"is {shown(value)}", allowed=allowed, value=value
     )
