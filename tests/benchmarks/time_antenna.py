@@ -87,7 +87,7 @@ def main() -> None:
         (
             "gain, one degree, tilted",
             lambda: mounted_gain_dbic(full, TILTED, azimuth_deg, elevation_deg, L1_HZ),
-            4.0,
+            5.0,
         ),
         ("antenna temperature", lambda: antenna_noise(full, UPRIGHT, around, L1_HZ), 1.0),
         ("antenna temperature, tilted", lambda: antenna_noise(full, TILTED, around, L1_HZ), 1.0),
