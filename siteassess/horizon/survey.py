@@ -10,6 +10,7 @@ from siteassess.horizon.bearings import NorthTurn
 from siteassess.horizon.carry import Points, carried, turned_short_way
 from siteassess.horizon.curves import FloatArray, IndexArray
 from siteassess.horizon.growth import grown
+from siteassess.horizon.looked_at import without
 from siteassess.horizon.parallax import NEAREST_OBSTACLE_M, parallax_bound_deg
 from siteassess.horizon.ring import closed_ring, opened_ring
 from siteassess.horizon.silhouette import is_ascending, silhouette
@@ -108,32 +109,40 @@ def read_survey(
         rows = grown(rows, years, growth_m_per_year)
     obstacles: list[Obstacle] = []
     surveyed_deg = np.array([[0.0, 360.0]]) if source.complete else np.empty((0, 2))
+    unsurveyed_deg = np.empty((0, 2))
     for label in labels:
         try:
             if label is None:
                 general, looked_at_deg = _general(rows, members[None], instrument, complete=source.complete)
                 surveyed_deg = np.concatenate([surveyed_deg, looked_at_deg])
                 obstacles += general
+            elif cover_of(rows, members[label]) == "unsurveyed":
+                stretch_deg = _azimuths(rows, members[label], instrument)[[0, -1]]
+                unsurveyed_deg = np.concatenate([unsurveyed_deg, stretch_deg[None, :]])
             else:
                 obstacles.append(_named(rows, members[label], instrument))
         except InputError as error:
             mistakes += error.mistakes
     if mistakes:
         raise InputError(*listed_mistakes(mistakes, rows.file))
-    return Survey(obstacles=tuple(obstacles), surveyed_deg=surveyed_deg, facts=facts)
+    looked_at_deg = without(surveyed_deg, unsurveyed_deg)
+    return Survey(obstacles=tuple(obstacles), surveyed_deg=looked_at_deg, facts=facts)
 
 
 def _facts(
     rows: Rows, source: HorizonSource, offset_m: tuple[float, float, float], turn: NorthTurn
 ) -> SurveyFacts:
-    without_distance = int(np.isnan(rows.slant_m).sum())
+    is_edge = np.ones(len(rows.line), dtype=np.bool_)
+    for which in rows.by_label().values():
+        is_edge[which] = cover_of(rows, which) != "unsurveyed"
+    without_distance = int((np.isnan(rows.slant_m) & is_edge).sum())
     away_m, bound_deg = float(np.linalg.norm(offset_m)), parallax_bound_deg(offset_m)
     remarks = list(turn.remarks)
     if away_m > 0.0 and without_distance:
         largest = f"by at most {bound_deg:.2f}°" if bound_deg is not None else "by any angle"
         remarks.append(
             f"The instrument stood {away_m:.2f} m from the antenna's phase centre. {without_distance} of "
-            f"{len(rows.line)} rows carry no distance and keep their angles: for obstacles at least "
+            f"{int(is_edge.sum())} rows carry no distance and keep their angles: for obstacles at least "
             f"{NEAREST_OBSTACLE_M:g} m away they are off {largest}."
         )
     return SurveyFacts(
@@ -142,7 +151,7 @@ def _facts(
         correction_deg=turn.correction_deg,
         uncertainty_deg=turn.uncertainty_deg,
         offset_m=away_m,
-        rows=len(rows.line),
+        rows=int(is_edge.sum()),
         rows_without_distance=without_distance,
         parallax_bound_deg=bound_deg if without_distance else 0.0,
         parallax_distance_m=NEAREST_OBSTACLE_M,
@@ -150,13 +159,18 @@ def _facts(
     )
 
 
-def _points(rows: Rows, which: IndexArray, instrument: _Instrument) -> Points:
-    """The rows as points, seen from the antenna."""
+def _azimuths(rows: Rows, which: IndexArray, instrument: _Instrument) -> FloatArray:
+    """Azimuths of rows from true north, unwrapped."""
     given_deg = rows.numbers["azimuth_deg"][which]
     turns = np.append(0, np.cumsum(given_deg[1:] < given_deg[:-1]))
+    return np.asarray(given_deg + 360.0 * turns + instrument.turn_deg)
+
+
+def _points(rows: Rows, which: IndexArray, instrument: _Instrument) -> Points:
+    """The rows as points, seen from the antenna."""
     points = carried(
         Points(
-            azimuth_deg=given_deg + 360.0 * turns + instrument.turn_deg,
+            azimuth_deg=_azimuths(rows, which, instrument),
             elevation_deg=rows.numbers["elevation_deg"][which],
             underside_deg=rows.numbers["underside_deg"][which],
             distance_m=rows.slant_m[which],

@@ -37,6 +37,9 @@ def obstacle_mistakes(rows: Rows, which: IndexArray) -> Iterator[Mistake]:
     """What is wrong with one named obstacle."""
     yield from _one_word_mistakes(rows, which, "cover", COVERS)
     yield from _foliage_mistakes(rows, which)
+    if cover_of(rows, which) == "unsurveyed":
+        yield from _unsurveyed_mistakes(rows, which)
+        return
     yield from _completeness_mistakes(rows, which)
     if len(which) == 1:
         yield from _single_row_mistakes(rows, int(which[0]))
@@ -88,6 +91,22 @@ def _foliage_mistakes(rows: Rows, which: IndexArray) -> Iterator[Mistake]:
             value = rows.texts["leaf"][row] if column == "leaf" else rows.numbers[column][row]
             if value is not None and value == value:
                 yield cell_mistake(rows, row, column, "it may stand only where cover is foliage")
+
+
+def _unsurveyed_mistakes(rows: Rows, which: IndexArray) -> Iterator[Mistake]:
+    """A stretch that nobody looked at has azimuths only."""
+    for column in ("distance_m", "slant_distance_m", "underside_deg", "width_m"):
+        for row in which[~np.isnan(rows.numbers[column][which])].tolist():
+            yield cell_mistake(rows, row, column, "it may not stand where cover is unsurveyed")
+    if len(which) == 1:
+        yield Mistake(
+            file=rows.file,
+            where=f"line {rows.line[which[0]]}",
+            problem=f"is the only row of {_name(rows, which)}",
+            allowed="a stretch that nobody looked at needs a second azimuth",
+        )
+    else:
+        yield from _order_mistakes(rows, which)
 
 
 def _completeness_mistakes(rows: Rows, which: IndexArray) -> Iterator[Mistake]:

@@ -15,9 +15,9 @@ from siteassess.wording import did_you_mean, listed, shown
 
 __all__ = ["COVERS", "LEAVES", "Cover", "Leaf", "Rows", "cell_mistake", "read_rows"]
 
-Cover = Literal["solid", "foliage"]
+Cover = Literal["solid", "foliage", "unsurveyed"]
 Leaf = Literal["in-leaf", "leafless", "evergreen"]
-COVERS: tuple[Cover, ...] = ("solid", "foliage")
+COVERS: tuple[Cover, ...] = ("solid", "foliage", "unsurveyed")
 LEAVES: tuple[Leaf, ...] = ("in-leaf", "leafless", "evergreen")
 NUMBERS = (
     "azimuth_deg",
@@ -175,7 +175,7 @@ def _needless_cells(rows: Rows) -> Iterator[Mistake]:
         for row in np.flatnonzero(given).tolist():
             yield cell_mistake(rows, row, column, "a row that gives it must name its obstacle")
     for row in np.flatnonzero(~rows.labelled).tolist():
-        if rows.texts["cover"][row] == "foliage":
+        if rows.texts["cover"][row] in ("foliage", "unsurveyed"):
             yield cell_mistake(rows, row, "cover", "a row that gives it must name its obstacle")
         elif rows.texts["leaf"][row] in LEAVES:
             yield cell_mistake(rows, row, "leaf", "a row that gives it must name its obstacle")

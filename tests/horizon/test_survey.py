@@ -3,6 +3,7 @@ from collections.abc import Callable
 import numpy as np
 import pytest
 
+from siteassess.horizon.bearings import NorthTurn
 from siteassess.horizon.survey import Survey
 from siteassess.horizon.view import edge_elevation_deg
 
@@ -111,3 +112,20 @@ def test_semicolons_and_decimal_commas_are_read(survey: Read) -> None:
     (general,) = survey("azimuth_deg;elevation_deg\n0,5;10,25\n180;10,25\n", complete=True).obstacles
     assert general.azimuth_deg.tolist() == [0.5, 180.0, 360.5]
     assert general.elevation_deg.tolist() == [10.25, 10.25, 10.25]
+
+
+def test_a_stretch_that_nobody_looked_at_is_no_obstacle(survey: Read) -> None:
+    # By hand: all of the circle but 350..20; the second stretch lies in a gap of the first kind already.
+    text = (
+        "azimuth_deg,elevation_deg,obstacle,cover\n0,5,,\n350,0,locked yard,unsurveyed\n20,0,locked yard,\n"
+    )
+    read = survey(text, complete=True)
+    assert [one.name for one in read.obstacles] == ["general skyline"]
+    np.testing.assert_allclose(read.surveyed_deg, [[20.0, 350.0]])
+    assert (read.facts.rows, read.facts.rows_without_distance) == (1, 1)
+
+
+def test_a_stretch_that_nobody_looked_at_turns_with_the_survey(survey: Read) -> None:
+    text = "azimuth_deg,elevation_deg,obstacle,cover\n0,5,,\n100,0,yard,unsurveyed\n120,0,yard,\n"
+    read = survey(text, complete=True, turn=NorthTurn(correction_deg=-10.0))
+    np.testing.assert_allclose(read.surveyed_deg, [[0.0, 90.0], [110.0, 360.0]])

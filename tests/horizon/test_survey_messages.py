@@ -82,7 +82,7 @@ CASES = {
     "unknown words": (
         ["0,5,,,a,wood,bare,3", "10,5,,,a,solit"],
         [
-            'line 2, cover is "wood"; it must be solid or foliage',
+            'line 2, cover is "wood"; it must be solid, foliage or unsurveyed',
             'line 2, leaf is "bare"; it must be in-leaf, leafless or evergreen',
             'line 3, cover is "solit"; did you mean solid?',
         ],
@@ -97,6 +97,33 @@ CASES = {
             'line 2, leaf is "in-leaf"; it may stand only where cover is foliage',
             "line 2, depth_m is 3; it may stand only where cover is foliage",
         ],
+    ),
+    "an edge where nobody looked": (
+        ["0,0,,,yard,unsurveyed,in-leaf", "10,0,,,yard,,,3", "20,0,,,yard,,,,,2"],
+        [
+            'line 2, leaf is "in-leaf"; it may stand only where cover is foliage',
+            "line 3, depth_m is 3; it may stand only where cover is foliage",
+            "line 4, width_m is 2; it may not stand where cover is unsurveyed",
+        ],
+    ),
+    "a distance where nobody looked": (
+        ["0,0,9,,yard,unsurveyed", "10,0,,9,yard"],
+        [
+            "line 2, distance_m is 9; it may not stand where cover is unsurveyed",
+            "line 3, slant_distance_m is 9; it may not stand where cover is unsurveyed",
+        ],
+    ),
+    "an underside where nobody looked": (
+        ["0,0,,,yard,unsurveyed,,,-5", "10,0,,,yard"],
+        ["line 2, underside_deg is -5; it may not stand where cover is unsurveyed"],
+    ),
+    "one row where nobody looked": (
+        ["0,0,,,yard,unsurveyed"],
+        ['line 2 is the only row of obstacle "yard"; a stretch that nobody looked at needs a second azimuth'],
+    ),
+    "unlabelled rows where nobody looked": (
+        ["0,0,,,,unsurveyed", "10,0"],
+        ['line 2, cover is "unsurveyed"; a row that gives it must name its obstacle'],
     ),
     "two covers": (
         ["0,5,,,a,foliage,,3", "10,5,,,a,solid,,3"],
