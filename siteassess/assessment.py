@@ -1,6 +1,6 @@
 """The whole flow, from a site to its verdict: the map of the package."""
 
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 from os import PathLike
 
 from siteassess.antenna.pattern import GainPattern
@@ -15,11 +15,13 @@ from siteassess.orbits.constellations import nominal_orbits
 from siteassess.site_file.model import Part, Site
 from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
+from siteassess.verdict.explanation import Explanation, explanation
+from siteassess.verdict.heights import at_height
 from siteassess.verdict.judge import judge
 from siteassess.verdict.verdict import Verdict
 from siteassess.verdict.what_if import Change, what_if
 
-__all__ = ["Assessment", "assess", "assess_file"]
+__all__ = ["Assessment", "assess", "assess_file", "explained"]
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
@@ -42,6 +44,8 @@ class Assessment:
         Whether it is good enough.
     what_if : tuple of Change
         What another cable, preamplifier or antenna would change.
+    explanation : Explanation or None
+        Causes and cures, from :func:`explained`.
     """
 
     site: Site
@@ -51,6 +55,7 @@ class Assessment:
     budget: LinkBudget
     verdict: Verdict
     what_if: tuple[Change, ...]
+    explanation: Explanation | None = None
 
 
 def assess(site: Site) -> Assessment:
@@ -76,18 +81,49 @@ def assess(site: Site) -> Assessment:
     orbits = nominal_orbits(site.sky.systems, site.sky.start)
     tracks = sky_tracks(orbits, site.position, days=site.sky.days, step_s=site.sky.step_s)
     budget = link_budget(site, skyline, pattern, tracks)
-    later, years = None, site.require.good_for_years
-    if years is not None:
-        later = link_budget(site, read_skyline(site, years=years), pattern, tracks)
     return Assessment(
         site=site,
         skyline=skyline,
         pattern=pattern,
         tracks=tracks,
         budget=budget,
-        verdict=judge(site, skyline, tracks, budget, later),
+        verdict=_judged(site, skyline, pattern, tracks, budget),
         what_if=what_if(site, skyline, pattern, tracks, budget),
     )
+
+
+def explained(assessment: Assessment) -> Assessment:
+    """The same assessment with causes and cures.
+
+    What each obstacle returns by going stands in `verdict.obstacles`, all else in `explanation`. Where a taller
+    mast turns a fail into a pass, finding its height takes some more whole assessments.
+
+    Parameters
+    ----------
+    assessment : Assessment
+        What :func:`assess` returned.
+    """
+    site, pattern, tracks = assessment.site, assessment.pattern, assessment.tracks
+
+    def assessed_at(mast_height_m: float) -> Verdict:
+        taller = at_height(site, mast_height_m)
+        skyline = read_skyline(taller)
+        budget = link_budget(taller, skyline, pattern, tracks)
+        return _judged(taller, skyline, pattern, tracks, budget)
+
+    verdict, found = explanation(
+        site, assessment.skyline, pattern, tracks, assessment.budget, assessment.verdict, assessed_at
+    )
+    return replace(assessment, verdict=verdict, explanation=found)
+
+
+def _judged(
+    site: Site, skyline: Skyline, pattern: GainPattern, tracks: SkyTracks, budget: LinkBudget
+) -> Verdict:
+    later, years = None, site.require.good_for_years
+    if years is not None:
+        later = link_budget(site, read_skyline(site, years=years), pattern, tracks)
+    return judge(site, skyline, tracks, budget, later)
 
 
 def assess_file(path: str | PathLike[str]) -> Assessment:

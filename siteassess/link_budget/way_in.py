@@ -22,7 +22,7 @@ from siteassess.link_budget.diffraction import (
 from siteassess.link_budget.edges import highest_within_reach_deg, lower_edges, smallest_detour_m, upper_edges
 from siteassess.link_budget.foliage import leaves_loss_db
 
-__all__ = ["is_narrow", "skyline_loss_db"]
+__all__ = ["is_narrow", "is_standing_wall", "obstacle_loss_db", "skyline_loss_db"]
 
 FloatArray = NDArray[np.float64]
 IndexArray = NDArray[np.int64]
@@ -66,9 +66,8 @@ def skyline_loss_db(
     largest_db = np.zeros(azimuth_deg.shape)
     costly_obstacle = np.full(azimuth_deg.shape, -1, dtype=np.int64)
     for index, obstacle in enumerate(skyline.obstacles):
-        one = _foliage_loss_db if obstacle.cover == "foliage" else _solid_loss_db
-        near, near_loss_db = one(obstacle, azimuth_deg, apparent_elevation_deg, carrier_hz)
-        if _is_standing_wall(obstacle, carrier_hz):
+        near, near_loss_db = obstacle_loss_db(obstacle, azimuth_deg, apparent_elevation_deg, carrier_hz)
+        if is_standing_wall(obstacle, carrier_hz):
             outline_db[near] = np.maximum(outline_db[near], near_loss_db)
         else:
             added_db[near] += near_loss_db
@@ -76,6 +75,31 @@ def skyline_loss_db(
         largest_db[near[costs_most]] = near_loss_db[costs_most]
         costly_obstacle[near[costs_most]] = index
     return added_db + outline_db, costly_obstacle
+
+
+def obstacle_loss_db(
+    obstacle: Obstacle, azimuth_deg: FloatArray, apparent_elevation_deg: FloatArray, carrier_hz: float
+) -> tuple[IndexArray, FloatArray]:
+    """Loss at one obstacle alone.
+
+    Parameters
+    ----------
+    obstacle : Obstacle
+        Solid or leaves.
+    azimuth_deg, apparent_elevation_deg : array, shape (n,)
+        Directions of satellites, as seen through the air [deg].
+    carrier_hz : float
+        Carrier [Hz].
+
+    Returns
+    -------
+    near : integer array, shape (m,)
+        Which of the directions it may cost anything; none other.
+    loss_db : array, shape (m,)
+        The loss there, at least 0.
+    """
+    one = _foliage_loss_db if obstacle.cover == "foliage" else _solid_loss_db
+    return one(obstacle, azimuth_deg, apparent_elevation_deg, carrier_hz)
 
 
 def is_narrow(obstacle: Obstacle, wavelength_m: float) -> bool:
@@ -98,8 +122,8 @@ def is_narrow(obstacle: Obstacle, wavelength_m: float) -> bool:
     )  # [P.526] eq. 2, both radii
 
 
-def _is_standing_wall(obstacle: Obstacle, carrier_hz: float) -> bool:
-    """Whether an obstacle is solid, wide and has no open sky below it."""
+def is_standing_wall(obstacle: Obstacle, carrier_hz: float) -> bool:
+    """Whether an obstacle is solid, wide and has no open sky below it; such losses do not add."""
     is_wall = obstacle.cover == "solid" and not obstacle.hangs_free
     return is_wall and not is_narrow(obstacle, SPEED_OF_LIGHT_M_PER_S / carrier_hz)
 

@@ -6,6 +6,7 @@ from typing import TYPE_CHECKING
 
 from siteassess.report.phrases import azimuth_range, compass_point, number, percent, plain, told_apart
 from siteassess.report.pieces import Answer
+from siteassess.verdict.causes import cost_rank
 from siteassess.verdict.criteria import read_criteria
 
 if TYPE_CHECKING:
@@ -119,19 +120,15 @@ def worst_direction(verdict: Verdict) -> str:
     return text
 
 
-def _cost(obstacle: ObstacleCost) -> tuple[float, float]:
-    return max(obstacle.lost_satellite_time_share.values(), default=0.0), obstacle.blocked_share_above_mask
-
-
 def ranked_obstacles(verdict: Verdict) -> list[tuple[int, ObstacleCost]]:
     """Obstacles with their index in the skyline, the dearest first: numbered so in the report."""
-    return sorted(enumerate(verdict.obstacles), key=lambda entry: _cost(entry[1]), reverse=True)
+    return sorted(enumerate(verdict.obstacles), key=lambda entry: cost_rank(entry[1]), reverse=True)
 
 
 def worst_obstacle(verdict: Verdict) -> str:
     """The obstacle that takes the most satellite-time from one signal, in a sentence."""
     ranked = ranked_obstacles(verdict)
-    if not ranked or _cost(ranked[0][1]) <= (0.0, 0.0):
+    if not ranked or cost_rank(ranked[0][1]) <= (0.0, 0.0, 0.0):
         return "None; no obstacle takes anything above the mask."
     obstacle = ranked[0][1]
     signal, lost_share = max(

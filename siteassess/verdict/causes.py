@@ -11,7 +11,7 @@ from siteassess.link_budget.thin import grazes, is_thin, loss_behind_db
 from siteassess.verdict.states import SampleStates
 from siteassess.verdict.verdict import ObstacleCost, SectorShare
 
-__all__ = ["SECTOR_NAMES", "obstacle_costs", "sector_shares"]
+__all__ = ["SECTOR_NAMES", "cost_rank", "obstacle_costs", "sector_shares"]
 
 FloatArray = NDArray[np.float64]
 
@@ -53,6 +53,15 @@ def obstacle_costs(
             grazing_hours_per_day=_grazing_hours_per_day(obstacle, samples, weight),
         )
         for index, obstacle in enumerate(skyline.obstacles)
+    )
+
+
+def cost_rank(obstacle: ObstacleCost) -> tuple[float, float, float]:
+    """What obstacles are ordered by: what one returns by going, then what it takes, then the sky it hides."""
+    return (
+        max((obstacle.returned_satellite_time_share or {}).values(), default=0.0),
+        max(obstacle.lost_satellite_time_share.values(), default=0.0),
+        obstacle.blocked_share_above_mask,
     )
 
 

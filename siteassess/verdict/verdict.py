@@ -96,6 +96,8 @@ class ObstacleCost:
     `azimuth_from_deg` to `azimuth_to_deg` runs clockwise (and may pass 360); `peak_elevation_deg` stands at
     `peak_azimuth_deg`. `lost_satellite_time_share` maps each signal to the share of its open-sky
     satellite-time that is usable without obstacles and is not usable because of this one.
+    `returned_satellite_time_share` maps it to what becomes usable when this one alone goes; None where that
+    was not asked for.
 
     For leaves, `foliage_loss_db` maps each model to the loss on L1 at the highest point; else it is None. For
     thin things, `behind_loss_db` is the loss on L1 straight behind, and `grazing_hours_per_day` counts
@@ -114,6 +116,7 @@ class ObstacleCost:
     foliage_loss_db: Mapping[str, float] | None = None
     behind_loss_db: float | None = None
     grazing_hours_per_day: float | None = None
+    returned_satellite_time_share: Mapping[str, float] | None = None
 
 
 @dataclass(frozen=True, slots=True, kw_only=True)

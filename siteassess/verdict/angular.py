@@ -1,0 +1,327 @@
+"""The angular form: shares of satellite-time as sums over a few thousand directions.
+
+Whatever changes only the skyline or a limit costs one look at these directions in place of one at every
+satellite position. Edges and limits that run through a direction's cell take the part of it that lies on
+their far side.
+"""
+
+from collections.abc import Iterator
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from siteassess.antenna.energy import efficiency
+from siteassess.antenna.mount import mounted_gain_dbic
+from siteassess.antenna.pattern import GainPattern
+from siteassess.constants import REFERENCE_TEMPERATURE_K
+from siteassess.decibels import to_db
+from siteassess.horizon.skyline import Skyline
+from siteassess.horizon.view import covers, outline_elevation_deg
+from siteassess.link_budget.antenna_noise import ring_gain, seen_temperature_k
+from siteassess.link_budget.brightness import sky_brightness_k
+from siteassess.link_budget.budget import LinkBudget, SignalBudget
+from siteassess.link_budget.power import received_power
+from siteassess.link_budget.receive_chain import ChainNoise
+from siteassess.link_budget.seen_sky import RING_DEG, seen_sky
+from siteassess.link_budget.signals import Signal
+from siteassess.link_budget.way_in import skyline_loss_db
+from siteassess.site_file.model import Site
+from siteassess.sky_tracks.refraction import apparent_elevation_deg
+from siteassess.sky_tracks.thinned import ThinnedSky, thinned_sky
+from siteassess.sky_tracks.tracks import SkyTracks
+from siteassess.verdict.states import WEAKENED_FROM_DB
+
+__all__ = [
+    "AngularForm",
+    "AngularSignal",
+    "NoiseForm",
+    "angular_form",
+    "noise_gain_db",
+    "shares_above",
+    "usable_shares",
+]
+
+FloatArray = NDArray[np.float64]
+IndexArray = NDArray[np.int64]
+
+# Flat cells: most edges run along the horizon, so height decides how much of a cell they cut.
+RING_HEIGHT_DEG = 0.5
+SECTOR_WIDTH_DEG = 1.0
+THINNEST_DEG, THINNEST_DB = 1e-9, 1e-9
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class NoiseForm:
+    """What it takes to find the noise at one carrier for another skyline.
+
+    Attributes
+    ----------
+    taken_in : array, shape (ring, sector)
+        What each piece of sky adds to the antenna's gain over the sphere.
+    sky_k : array, shape (ring,)
+        Brightness of the open sky.
+    chain_k, system_k : float
+        Noise of the chain, and of antenna and chain at the present skyline.
+    """
+
+    taken_in: FloatArray
+    sky_k: FloatArray
+    chain_k: float
+    system_k: float
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class AngularSignal:
+    """One signal in the angular form; arrays have shape (n,).
+
+    Attributes
+    ----------
+    signal : Signal
+        Row of the signal table.
+    min_cn0_dbhz : float
+        What is asked of it.
+    direction : integer array
+        Which directions send it, ascending.
+    cn0_open_sky_dbhz : array
+        C/N0 under an open sky with the noise of the present skyline.
+    half_range_db : array
+        How far C/N0 within the cell lies above and below that.
+    """
+
+    signal: Signal
+    min_cn0_dbhz: float
+    direction: IndexArray
+    cn0_open_sky_dbhz: FloatArray
+    half_range_db: FloatArray
+
+
+@dataclass(frozen=True, slots=True, kw_only=True, eq=False)
+class AngularForm:
+    """A site's satellite-time, direction by direction; arrays have shape (direction,).
+
+    Attributes
+    ----------
+    azimuth_deg, elevation_deg, apparent_elevation_deg : array
+        Directions, from the horizon up.
+    half_height_deg : array
+        How far the satellite positions of a direction lie above and below it.
+    weight : array
+        Satellite-time.
+    mask_deg : float
+        The site's elevation mask.
+    count_weakened : bool
+        As in the site file.
+    signals : tuple of AngularSignal
+        In the order of the site file.
+    noise : dict of float to NoiseForm
+        By carrier.
+    """
+
+    azimuth_deg: FloatArray
+    elevation_deg: FloatArray
+    apparent_elevation_deg: FloatArray
+    half_height_deg: FloatArray
+    weight: FloatArray
+    mask_deg: float
+    count_weakened: bool
+    signals: tuple[AngularSignal, ...]
+    noise: dict[float, NoiseForm]
+
+
+def angular_form(
+    site: Site,
+    pattern: GainPattern,
+    tracks: SkyTracks,
+    budget: LinkBudget,
+    *,
+    ring_deg: float = RING_HEIGHT_DEG,
+    sector_deg: float = SECTOR_WIDTH_DEG,
+) -> AngularForm:
+    """The angular form of an assessment.
+
+    Parameters
+    ----------
+    site, pattern, tracks, budget : Site, GainPattern, SkyTracks, LinkBudget
+        The assessment as it stands.
+    ring_deg, sector_deg : float
+        Height of the cells, and about how wide they are on the sky.
+    """
+    mask_deg = site.require.elevation_mask_deg
+    edges_deg = np.append(np.arange(0.0, 90.0, ring_deg), 90.0 + 1e-6)
+    edges_deg = np.unique(np.append(edges_deg, mask_deg))
+    around = 360.0 * np.cos(np.deg2rad(0.5 * (edges_deg[1:] + edges_deg[:-1])))
+    sky = thinned_sky(tracks, edges_deg, 360.0 / np.maximum(np.rint(around / sector_deg), 1.0))
+    height_m = site.position.height_m + site.mount.phase_centre_height_m
+    carriers = {signal.noise.carrier_hz: signal.noise for signal in budget.signals}
+    return AngularForm(
+        azimuth_deg=sky.azimuth_deg,
+        elevation_deg=sky.elevation_deg,
+        apparent_elevation_deg=apparent_elevation_deg(sky.elevation_deg, height_m),
+        half_height_deg=np.maximum(np.sqrt(3.0) * sky.spread_deg, THINNEST_DEG),  # as if spread evenly
+        weight=sky.weight,
+        mask_deg=mask_deg,
+        count_weakened=site.require.count_weakened,
+        signals=tuple(_angular_signal(signal, site, pattern, sky) for signal in budget.signals),
+        noise={carrier_hz: _noise_form(noise, site, pattern) for carrier_hz, noise in carriers.items()},
+    )
+
+
+def noise_gain_db(form: AngularForm, skyline: Skyline) -> dict[float, float]:
+    """How much less noise [dB] there is with another skyline, by carrier."""
+    gain_db = {}
+    for carrier_hz, noise in form.noise.items():
+        antenna_k = seen_temperature_k(
+            noise.taken_in, seen_sky(skyline, carrier_hz), noise.sky_k, REFERENCE_TEMPERATURE_K
+        )
+        gain_db[carrier_hz] = float(to_db(noise.system_k / (antenna_k + noise.chain_k)))
+    return gain_db
+
+
+def usable_shares(
+    form: AngularForm, skyline: Skyline, gain_db: dict[float, float] | None = None
+) -> dict[str, float]:
+    """Usable share of every signal with another skyline.
+
+    Parameters
+    ----------
+    form : AngularForm
+        The site.
+    skyline : Skyline
+        What stands round it now.
+    gain_db : dict of float to float, or None
+        From :func:`noise_gain_db`; None leaves the noise as it was.
+    """
+    shares = {}
+    for one, (at, usable) in zip(
+        form.signals, _usable_parts(form, skyline, form.mask_deg, gain_db or {}), strict=True
+    ):
+        total = form.weight[at].sum()
+        shares[one.signal.name] = float((form.weight[at] * usable).sum() / total) if total > 0.0 else 0.0
+    return shares
+
+
+def shares_above(form: AngularForm, skyline: Skyline, mask_deg: FloatArray) -> dict[str, FloatArray]:
+    """Usable share of every signal above each of several masks, shape (mask,); 0 above all satellites.
+
+    Parameters
+    ----------
+    form, skyline : AngularForm, Skyline
+        The site.
+    mask_deg : array, shape (mask,)
+        Ascending; each an edge between cells, which whole degrees are.
+    """
+    shares = {}
+    for one, (at, usable) in zip(form.signals, _usable_parts(form, skyline, mask_deg[0], {}), strict=True):
+        step = np.searchsorted(mask_deg, form.elevation_deg[at], side="right") - 1
+
+        def above(weight: FloatArray, step: IndexArray = step) -> FloatArray:
+            summed = np.bincount(step, weights=weight, minlength=len(mask_deg))
+            return np.asarray(np.cumsum(summed[::-1])[::-1])
+
+        total = above(form.weight[at])
+        shares[one.signal.name] = above(form.weight[at] * usable) / np.maximum(total, np.finfo(float).tiny)
+    return shares
+
+
+def _usable_parts(
+    form: AngularForm, skyline: Skyline, mask_deg: float, gain_db: dict[float, float]
+) -> Iterator[tuple[IndexArray, FloatArray]]:
+    """Of every signal: its directions above a mask, and the usable part of each."""
+    counts = form.elevation_deg >= mask_deg
+    open_share = np.zeros(len(form.weight))
+    open_share[counts] = _open_share(form, skyline, np.flatnonzero(counts))
+    loss_db = _loss_db(form, skyline, open_share, counts)
+    for one in form.signals:
+        own = counts[one.direction]
+        at, carrier_hz = one.direction[own], one.signal.carrier_hz
+        own_loss_db = loss_db[carrier_hz][at]
+        spare_db = one.cn0_open_sky_dbhz[own] - own_loss_db - one.min_cn0_dbhz
+        spare_db += gain_db.get(carrier_hz, 0.0)
+        # Open and strong are both the upper part of a cell.
+        usable = np.minimum(open_share[at], _upper_part(spare_db, one.half_range_db[own]))
+        if not form.count_weakened:
+            usable[own_loss_db >= WEAKENED_FROM_DB] = 0.0
+        yield at, usable
+
+
+def _loss_db(
+    form: AngularForm, skyline: Skyline, open_share: FloatArray, counts: NDArray[np.bool_]
+) -> dict[float, FloatArray]:
+    """Loss at every direction, by carrier; 0 where no signal of that carrier comes from or all is hidden.
+
+    It is taken half-way between the top of the cell and what hides its foot.
+    """
+    middle_deg = form.apparent_elevation_deg + form.half_height_deg * (1.0 - open_share)
+    loss_db = {}
+    for carrier_hz in form.noise:
+        wanted = np.zeros(len(form.weight), dtype=np.bool_)
+        for one in form.signals:
+            if one.signal.carrier_hz == carrier_hz:
+                wanted[one.direction] = True
+        at = np.flatnonzero(wanted & counts & (open_share > 0.0))
+        loss_db[carrier_hz] = np.zeros(len(form.weight))
+        loss_db[carrier_hz][at], _ = skyline_loss_db(
+            skyline, form.azimuth_deg[at], middle_deg[at], carrier_hz
+        )
+    return loss_db
+
+
+def _open_share(form: AngularForm, skyline: Skyline, at: IndexArray) -> FloatArray:
+    """Part of some directions that nothing solid hides."""
+    azimuth_deg, elevation_deg = form.azimuth_deg[at], form.apparent_elevation_deg[at]
+    above_deg = elevation_deg - outline_elevation_deg(skyline, azimuth_deg)
+    open_share = _upper_part(above_deg, form.half_height_deg[at])
+    for obstacle in skyline.obstacles:
+        if obstacle.cover == "solid" and obstacle.hangs_free:
+            open_share[covers(obstacle, azimuth_deg, elevation_deg)] = 0.0
+    return open_share
+
+
+def _upper_part(above: FloatArray, half: FloatArray) -> FloatArray:
+    """Part of what spreads evenly from `above` - `half` to `above` + `half` that is at least 0."""
+    return np.asarray(np.clip(0.5 + 0.5 * above / half, 0.0, 1.0))
+
+
+def _angular_signal(budget: SignalBudget, site: Site, pattern: GainPattern, sky: ThinnedSky) -> AngularSignal:
+    signal, noise = budget.signal, budget.noise
+    lines = {line.orbit_class: line for line in budget.lines}
+    sends = np.array(
+        [
+            system == signal.system and orbit_class in lines
+            for system, orbit_class in zip(sky.system, sky.orbit_class, strict=True)
+        ],
+        dtype=np.bool_,
+    )
+    direction = np.flatnonzero(sends[sky.group])
+    group, elevation_deg = sky.group[direction], sky.elevation_deg[direction]
+    received_dbw, slope_db_per_deg = np.empty((2, len(direction)))
+    for index in np.flatnonzero(sends):
+        own, line = group == index, lines[sky.orbit_class[index]]
+        terms = received_power(
+            signal, line.orbit_class, elevation_deg[own], sky.radius_m[index], power=site.sky.power
+        )
+        received_dbw[own] = terms.received_power_dbw
+        slope = np.abs(np.gradient(line.cn0_open_sky_dbhz, line.elevation_deg))
+        slope_db_per_deg[own] = np.interp(elevation_deg[own], line.elevation_deg, slope)
+    gain_dbic = mounted_gain_dbic(
+        pattern, site.mount, sky.azimuth_deg[direction], elevation_deg, signal.carrier_hz
+    )
+    receiver_db = signal.tracked_share_db - noise.noise_density_dbw_per_hz - noise.implementation_loss_db
+    return AngularSignal(
+        signal=signal,
+        min_cn0_dbhz=budget.min_cn0_dbhz,
+        direction=direction,
+        cn0_open_sky_dbhz=received_dbw + gain_dbic + receiver_db,
+        half_range_db=np.maximum(np.sqrt(3.0) * slope_db_per_deg * sky.spread_deg[direction], THINNEST_DB),
+    )
+
+
+def _noise_form(noise: ChainNoise, site: Site, pattern: GainPattern) -> NoiseForm:
+    carrier_hz = noise.carrier_hz
+    return NoiseForm(
+        taken_in=ring_gain(pattern, site.mount, carrier_hz) / max(1.0, efficiency(pattern, carrier_hz)),
+        sky_k=sky_brightness_k(carrier_hz, RING_DEG),
+        chain_k=noise.chain_temperature_k,
+        system_k=noise.system_temperature_k,
+    )

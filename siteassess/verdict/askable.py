@@ -1,0 +1,97 @@
+"""What could be asked of a spot as it is: the highest minimum of C/N0, the lowest mask."""
+
+from dataclasses import dataclass
+
+import numpy as np
+from numpy.typing import NDArray
+
+from siteassess.horizon.skyline import Skyline
+from siteassess.link_budget.budget import SignalBudget
+from siteassess.verdict.angular import AngularForm, shares_above
+from siteassess.verdict.states import WEAKENED_FROM_DB, SampleStates
+
+__all__ = ["Askable", "askable"]
+
+FloatArray = NDArray[np.float64]
+
+HIGHEST_MASK_DEG = 60
+# The angular form keeps within this of the whole assessment; a mask below the present one must pass by it.
+ANGULAR_TOLERANCE = 0.002
+
+
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Askable:
+    """What could be asked of one signal at this spot, with the usable share asked for as it is.
+
+    Attributes
+    ----------
+    signal : str
+        Its name.
+    min_cn0_dbhz : float
+        What is asked now.
+    highest_min_cn0_dbhz : float or None
+        Highest minimum of C/N0 that passes at the present mask; None where none does.
+    lowest_mask_deg : float or None
+        Lowest mask, in whole degrees, that passes at the present minimum of C/N0; None where none up to 60
+        degrees does.
+    """
+
+    signal: str
+    min_cn0_dbhz: float
+    highest_min_cn0_dbhz: float | None
+    lowest_mask_deg: float | None
+
+
+def askable(
+    form: AngularForm,
+    skyline: Skyline,
+    budgets: tuple[SignalBudget, ...],
+    states: dict[str, SampleStates],
+    min_usable_share: float,
+) -> tuple[Askable, ...]:
+    """What could be asked of each signal.
+
+    C/N0 is read off the samples of the assessment; masks off the angular form.
+
+    Parameters
+    ----------
+    form, skyline : AngularForm, Skyline
+        The site.
+    budgets, states : tuple of SignalBudget, dict of str to SampleStates
+        The signals as they were judged.
+    min_usable_share : float
+        What is asked of the usable share.
+    """
+    masks_deg = np.arange(0.0, HIGHEST_MASK_DEG + 1.0)
+    above = shares_above(form, skyline, masks_deg)
+    return tuple(
+        Askable(
+            signal=budget.signal.name,
+            min_cn0_dbhz=budget.min_cn0_dbhz,
+            highest_min_cn0_dbhz=_highest_min_cn0_dbhz(
+                budget, states[budget.signal.name], min_usable_share, count_weakened=form.count_weakened
+            ),
+            lowest_mask_deg=_lowest_mask_deg(masks_deg, above[budget.signal.name], min_usable_share),
+        )
+        for budget in budgets
+    )
+
+
+def _highest_min_cn0_dbhz(
+    budget: SignalBudget, states: SampleStates, min_usable_share: float, *, count_weakened: bool
+) -> float | None:
+    total = states.weight.sum()
+    counts = ~states.hidden & (states.weight > 0.0)
+    if not count_weakened:
+        counts &= budget.obstacle_loss_db < WEAKENED_FROM_DB
+    if total <= 0.0 or states.weight[counts].sum() < min_usable_share * total:
+        return None
+    cn0_dbhz, weight = budget.cn0_dbhz[counts], states.weight[counts]
+    order = np.argsort(cn0_dbhz)[::-1]
+    reached = np.cumsum(weight[order]) >= min_usable_share * total * (1.0 - 1e-12)
+    return float(cn0_dbhz[order][np.argmax(reached)])
+
+
+def _lowest_mask_deg(masks_deg: FloatArray, usable: FloatArray, min_usable_share: float) -> float | None:
+    passes = np.flatnonzero(usable >= min(1.0, min_usable_share + ANGULAR_TOLERANCE))
+    return float(masks_deg[passes[0]]) if len(passes) else None
