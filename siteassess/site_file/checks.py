@@ -185,8 +185,16 @@ def _horizon_mistakes(
             if name in files:
                 yield _given(file, ("horizon", index, "file"), name, "it stands there twice; keep one")
             files.append(name)
+        yield from _instrument_mistakes(source, index, file)
         yield from outline_mistakes(source, index, file)
         yield from terrain_mistakes(source, index, place, file)
+
+
+def _instrument_mistakes(source: HorizonSource, index: int, file: str) -> Iterator[Mistake]:
+    known = [row["instrument"] for row in packaged_rows("verdict/instrument_classes.csv")]
+    if source.source == "survey" and source.instrument is not None and source.instrument not in known:
+        allowed = did_you_mean(source.instrument, known, f"it must be {listed(known, 'or')}")
+        yield _given(file, ("horizon", index, "instrument"), source.instrument, allowed)
 
 
 def _require_mistakes(require: Requirements, signals: tuple[str, ...], file: str) -> Iterator[Mistake]:

@@ -187,6 +187,9 @@ class AntennaChoice(Record):
         description="Name of a built-in gain pattern, or a CSV file relative to the site file; the value "
         "then ends in .csv."
     )
+    gain_error_db: Annotated[float, Field(ge=0, le=10)] = Field(
+        default=1.0, description="Uncertainty of the gain pattern, one standard deviation [dB]."
+    )
     unwanted_level_dbm: Annotated[float, Field(ge=-200, le=50)] | None = Field(
         default=None,
         description="Level at the antenna port of all transmitters outside the navigation bands [dBm].",
@@ -331,6 +334,13 @@ class HorizonSource(Record):
     elevation_error_deg: AngleError | None = Field(
         default=None, description="Uncertainty of the elevations, one standard deviation [deg]."
     )
+    distance_error_m: Annotated[float, Field(ge=0, le=100)] | None = Field(
+        default=None, description="Uncertainty of the distances, one standard deviation [m]."
+    )
+    instrument: Text | None = Field(
+        default=None,
+        description="Class of the instrument, such as total station; it gives every error that is absent.",
+    )
     instrument_east_m: Offset = Field(
         default=0.0, description="Where the instrument stood, east of the survey mark [m]."
     )
@@ -402,6 +412,12 @@ class SkyModel(Record):
     power: Literal["guaranteed", "typical"] = Field(
         default="guaranteed",
         description="Power of the satellites: the interface documents' minimum, or with a stated excess.",
+    )
+    power_error_db: Annotated[float, Field(ge=0, le=10)] = Field(
+        default=1.0, description="Uncertainty of the power of the signals, one standard deviation [dB]."
+    )
+    seed: Annotated[int, Field(ge=0, le=4_294_967_295)] = Field(
+        default=1, description="Seed of the random draws that say how sure the verdict is."
     )
     tracked: Literal["pilot", "whole-signal"] = Field(
         default="pilot",

@@ -13,6 +13,8 @@ OF_OUTLINES = ("crs", "ground_up_m")
 OF_SURVEYS = (
     "azimuth_error_deg",
     "elevation_error_deg",
+    "distance_error_m",
+    "instrument",
     "instrument_east_m",
     "instrument_north_m",
     "instrument_up_m",

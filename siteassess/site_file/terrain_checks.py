@@ -13,6 +13,8 @@ OF_TERRAIN = ("nearest_m", "reach_m", "heights", "mark_above_ground_m")
 OF_OTHERS = {
     "azimuth_error_deg": "survey",
     "elevation_error_deg": "survey",
+    "distance_error_m": "survey",
+    "instrument": "survey",
     "instrument_east_m": "survey",
     "instrument_north_m": "survey",
     "instrument_up_m": "survey",
