@@ -64,6 +64,8 @@ def _passes(verdict: Verdict) -> str:
         return f"Yes. It meets {'the one requirement' if len(required) == 1 else f'all {asked}'}."
     if verdict.outcome == "fail":
         return f"No. It misses {missed} of {asked}."
+    if verdict.sky.unsurveyed_share == 0:
+        return "Not proven. No requirement is missed, but the survey does not answer all of them."
     return (
         "Not proven. No requirement is missed, but "
         f"{percent(verdict.sky.unsurveyed_share)} of the sky above the mask was not surveyed."

@@ -10,13 +10,13 @@ from siteassess.report.changes import changes_section
 from siteassess.report.levels import antenna_section, budget_section
 from siteassess.report.noise import noise_section
 from siteassess.report.outcomes import (
-    counts_section,
     findings_section,
     obstacles_section,
     satellites_section,
     sectors_section,
     signals_section,
 )
+from siteassess.report.over_time import over_time_section
 from siteassess.report.phrases import azimuth_range, number, plain
 from siteassess.report.pieces import Content, Section, Table
 from siteassess.report.setting import CAUTIONS, LIMITS, assumptions
@@ -61,7 +61,7 @@ def report_content(assessment: Assessment) -> Content:
             signals_section(assessment),
             obstacles_section(assessment),
             sectors_section(verdict),
-            counts_section(assessment),
+            over_time_section(assessment),
             budget_section(assessment),
             noise_section(assessment),
             chain_section(assessment),

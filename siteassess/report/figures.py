@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 from siteassess.report.noise_map import noise_map_svg
 from siteassess.report.panorama import panorama_svg
 from siteassess.report.skyplot import skyplot_svg
+from siteassess.report.time_chart import time_chart_svg
 from siteassess.report.waterfall import waterfall_svg
 
 if TYPE_CHECKING:
@@ -21,5 +22,6 @@ def report_figures(assessment: Assessment) -> dict[str, str]:
         "skyplot": skyplot_svg(assessment),
         "panorama": panorama_svg(assessment),
         "waterfall": waterfall_svg(assessment),
+        "over-time": time_chart_svg(assessment),
         "noise-map": noise_map_svg(assessment),
     }

@@ -15,7 +15,6 @@ if TYPE_CHECKING:
     from siteassess.verdict.verdict import Finding, Verdict
 
 __all__ = [
-    "counts_section",
     "findings_section",
     "obstacles_section",
     "satellites_section",
@@ -166,31 +165,6 @@ def sectors_section(verdict: Verdict) -> Section:
         align="llrrr",
     )
     return Section(key="sectors", heading="Direction by direction", tables=(table,))
-
-
-def counts_section(assessment: Assessment) -> Section:
-    """How many satellites are usable at once."""
-    counts = assessment.verdict.counts
-    table = Table(
-        caption=(
-            f"Counted over {assessment.site.sky.days:g} days. A satellite counts when at least one of the "
-            "site's signals from it is usable. “95 % of the time”: at least so many are."
-        ),
-        header=("System", "Above the mask, mean", "Usable, mean", "95 % of the time", "Fewest"),
-        rows=tuple(
-            (
-                count.system,
-                number(count.above_mask_mean),
-                number(count.usable_mean),
-                str(count.usable_p05),
-                str(count.usable_min),
-            )
-            for count in counts
-        ),
-        align="lrrrr",
-        tones=tuple("total" if count.system == counts[-1].system else "" for count in counts),
-    )
-    return Section(key="counts", heading="Satellites usable at once", tables=(table,))
 
 
 def satellites_section(verdict: Verdict) -> Section:

@@ -25,7 +25,8 @@ COMPASS_POINTS = (
     "west",
     "north-west",
 )
-UNITS = {"deg": "°", "m": " m", "count": ""}
+UNITS = {"deg": "°", "m": " m", "count": "", "": ""}
+WHOLE = ("s", "satellites")
 
 
 def plain(text: str) -> str:
@@ -79,11 +80,12 @@ def in_unit(value: float, unit: str, decimals: int = 1) -> str:
 
     Examples
     --------
-    >>> in_unit(12.34, "deg"), in_unit(0.5, "m", 2)
-    ('12.3°', '0.50\\xa0m')
+    >>> in_unit(12.34, "deg"), in_unit(0.5, "m", 2), in_unit(6.0, "satellites")
+    ('12.3°', '0.50\\xa0m', '6\\xa0satellites')
     """
     if unit == "share":
         return percent(value, decimals)
+    decimals = 0 if unit in WHOLE else decimals
     return number(value, decimals) + UNITS.get(unit, f" {unit}").replace(" ", "\N{NO-BREAK SPACE}")
 
 

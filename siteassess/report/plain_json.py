@@ -10,6 +10,7 @@ __all__ = ["as_json", "rounded"]
 # Beyond ASCII, where JSON escapes nothing: they steer terminals, end lines or turn the reading direction.
 STEERING_SIGNS = re.compile("[\x7f-\x9f\u2028\u2029\u200e\u200f\u202a-\u202e\u2066-\u2069]")
 DECIMALS = {"share": 6, "db": 3, "deg": 4, "m": 3, "k": 3, "hz": 0, "count": 3, "v": 3, "db/m": 4}
+DECIMALS |= {"s": 1, "satellites": 0, "": 3}
 
 
 def as_json(record: dict[str, Any]) -> str:

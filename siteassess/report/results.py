@@ -9,6 +9,7 @@ from siteassess.link_budget.supply import preamplifier_voltage_v
 from siteassess.report.plain_json import as_json
 from siteassess.report.plain_json import rounded as _rounded
 from siteassess.report.setting import CAUTIONS, assumptions
+from siteassess.report.time_results import time_record
 from siteassess.verdict.what_if import WHAT_IF_ELEVATIONS_DEG, Change
 
 if TYPE_CHECKING:
@@ -113,6 +114,7 @@ def assessment_record(assessment: Assessment) -> dict[str, Any]:
             }
             for count in verdict.counts
         ],
+        "time": time_record(verdict.timeline),
         "signals": [
             _signal(shares, budget)
             for shares, budget in zip(verdict.signals, assessment.budget.signals, strict=True)

@@ -1,11 +1,12 @@
 """Dilution of precision: what the geometry of the satellites makes of errors of range."""
 
+import math
 from dataclasses import dataclass
 
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-__all__ = ["Dilution", "dilution_of_precision", "unit_vectors"]
+__all__ = ["Dilution", "dilution_of_precision", "not_exceeded", "unit_vectors"]
 
 FloatArray = NDArray[np.float64]
 
@@ -178,3 +179,23 @@ def _clock_variance(
     )
     variance: FloatArray = np.where(count > 0, 1.0 / np.maximum(count, 1.0) + from_position, 0.0).sum(axis=0)
     return np.where(np.isnan(ee), np.nan, variance)
+
+
+def not_exceeded(dilution: FloatArray, share: float) -> float:
+    """The smallest figure that is not exceeded for a share of the epochs; infinite if that is undetermined.
+
+    Parameters
+    ----------
+    dilution : array, shape (epoch,)
+        One of the figures of :class:`Dilution`.
+    share : float
+        Above 0, at most 1.
+
+    Examples
+    --------
+    >>> dops = np.array([1.2, np.nan, 0.9, 1.5])
+    >>> [not_exceeded(dops, share) for share in (0.5, 0.75, 1.0)]
+    [1.2, 1.5, inf]
+    """
+    ascending = np.sort(np.where(np.isnan(dilution), np.inf, dilution))
+    return float(ascending[math.ceil(share * len(ascending) - 1e-9) - 1])

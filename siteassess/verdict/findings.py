@@ -4,10 +4,10 @@ from typing import Literal
 
 from siteassess.horizon.shares import SkyShares
 from siteassess.site_file.model import Mount, Requirements
-from siteassess.verdict.criteria import Criterion, read_criteria
+from siteassess.verdict.criteria import Criterion, limit_or_advice, read_criteria
 from siteassess.verdict.verdict import Finding, ObstacleCost, SignalShares
 
-__all__ = ["BY_SITE_FILE", "outcome_of", "site_findings", "told_apart", "worst_first"]
+__all__ = ["BY_SITE_FILE", "outcome_of", "site_findings", "sky_finding", "told_apart", "worst_first"]
 
 # Shares are printed with one decimal of a percent; a smaller part of it is not worth naming.
 WORTH_NAMING_SHARE = 0.0005
@@ -51,7 +51,7 @@ def site_findings(
     return tuple(
         _signal_finding(criteria["min_usable_share"], require, signal, sky, obstacles) for signal in signals
     ) + tuple(
-        _sky_finding(criteria[key], getattr(require, key), value, sky, reasons[key])
+        sky_finding(key, require, value, sky, reasons[key])
         for key, value in values.items()
         if value is not None
     )
@@ -104,7 +104,7 @@ def _signal_finding(
         unit=criterion.unit,
         required=True,
         outcome=outcome,
-        source=BY_SITE_FILE,
+        source=require.asked_by(criterion.key) or BY_SITE_FILE,
         reason=_signal_reason(signal, require, obstacles, sky, outcome),
     )
 
@@ -162,21 +162,47 @@ def _block_reason(sky: SkyShares) -> str:
     return f"It runs clockwise from azimuth {start:.0f} to {end % 360.0:.0f} degrees."
 
 
-def _sky_finding(
-    criterion: Criterion, asked: float | None, value: float, sky: SkyShares, reason: str
+def sky_finding(
+    key: str,
+    require: Requirements,
+    value: float,
+    sky: SkyShares,
+    reason: str,
+    *,
+    limit: float | None = None,
+    asked_with: str = "",
 ) -> Finding:
-    required = asked is not None
-    limit = asked if asked is not None else criterion.advice_limit
-    assert limit is not None  # the table gives an advice for every limit that a site file may leave out
+    """A finding against the limit of the site file or its set, or against the published advice.
+
+    Parameters
+    ----------
+    key : str
+        The criterion.
+    require : Requirements
+        Limits.
+    value : float
+        What the site reaches.
+    sky : SkyShares
+        Whether all of it was looked at.
+    reason : str
+        One sentence or more for the reader.
+    limit : float, optional
+        Where the key holds more than one number.
+    asked_with : str, optional
+        Another key that takes part in the finding: who asks for that, asks for this.
+    """
+    criterion = read_criteria()[key]
+    source = require.asked_by(key) or (require.asked_by(asked_with) if asked_with else None)
+    limit = limit_or_advice(require, key) if limit is None else limit
     depends_on_sky = criterion.unit != "m"
     return Finding(
-        criterion=criterion.key,
+        criterion=key,
         signal=None,
         value=value,
         limit=limit,
         unit=criterion.unit,
-        required=required,
+        required=source is not None,
         outcome=outcome_of(criterion.shortfall(value, limit) > 0, depends_on_sky, sky),
-        source=BY_SITE_FILE if required else criterion.source,
+        source=source or criterion.source,
         reason=reason,
     )

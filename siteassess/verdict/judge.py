@@ -12,11 +12,14 @@ from siteassess.site_file.model import Requirements, Site
 from siteassess.sky_tracks.tracks import SkyTracks
 from siteassess.verdict.causes import obstacle_costs, sector_shares
 from siteassess.verdict.chain_findings import chain_findings
-from siteassess.verdict.counts import usable_counts
+from siteassess.verdict.counts import joint_samples, usable_counts
 from siteassess.verdict.findings import site_findings, worst_first
 from siteassess.verdict.growth_findings import growth_findings
+from siteassess.verdict.near_findings import near_findings
+from siteassess.verdict.over_time import over_time
 from siteassess.verdict.shares import satellite_shares, signal_shares
 from siteassess.verdict.states import SampleStates, sample_states, sample_weights, share
+from siteassess.verdict.time_findings import time_findings
 from siteassess.verdict.verdict import Finding, SignalShares, Verdict
 
 __all__ = ["judge"]
@@ -57,9 +60,13 @@ def judge(
         growth = growth_findings(site.require, signals, signals_later, sky)
     obstacles = obstacle_costs(skyline, sky, budget.samples, weight, states)
     noises = tuple({signal.noise.carrier_hz: signal.noise for signal in budget.signals}.values())
+    joint = joint_samples(budget, tracks, states)
+    timeline = over_time(joint, budget.samples, site.require, site.sky.step_s)
     findings = worst_first(
         (
             *site_findings(site.require, site.mount, sky, signals, obstacles),
+            *near_findings(site.require, site.mount, skyline, sky),
+            *time_findings(site.require, timeline, sky),
             *growth,
             *chain_findings(site.require, site.chain, noises, site.antenna.unwanted_level_dbm),
         )
@@ -77,7 +84,8 @@ def judge(
         ),
         obstacles=obstacles,
         sectors=sector_shares(sky, budget, states),
-        counts=usable_counts(budget, tracks, states),
+        counts=usable_counts(joint.systems, timeline.in_view, timeline.usable),
+        timeline=timeline,
     )
 
 
@@ -95,7 +103,8 @@ def _signals(budget: LinkBudget, states: dict[str, SampleStates]) -> tuple[Signa
 
 
 def _outcome(findings: tuple[Finding, ...], sky: SkyShares) -> Literal["pass", "fail", "unproven"]:
-    """Fail when a required criterion is missed; pass only when the whole sky above the mask was looked at."""
-    if any(finding.required and finding.outcome == "missed" for finding in findings):
+    """Fail when a required criterion is missed; pass only when all was looked at that they depend on."""
+    required = [finding.outcome for finding in findings if finding.required]
+    if "missed" in required:
         return "fail"
-    return "unproven" if sky.unsurveyed_share > 0 else "pass"
+    return "unproven" if sky.unsurveyed_share > 0 or "unproven" in required else "pass"

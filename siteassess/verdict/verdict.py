@@ -1,10 +1,11 @@
 """What the assessment says: findings, shares and the one word at the top of the report."""
 
 from collections.abc import Mapping
-from dataclasses import dataclass
+from dataclasses import dataclass, field
 from typing import Literal
 
 from siteassess.horizon.shares import SkyShares
+from siteassess.verdict.timeline import Timeline
 
 __all__ = [
     "Finding",
@@ -28,7 +29,8 @@ class Finding:
     signal : str or None
         The signal it is about, where it is about one.
     value, limit : float
-        What the site reaches and what is asked, in `unit` ("share", "deg", "m", "dB", "dB/m", "V").
+        What the site reaches and what is asked, in `unit` ("share", "deg", "m", "s", "satellites", "dB",
+        "dB/m", "V").
     required : bool
         False: advice, which never fails a site.
     outcome : str
@@ -140,7 +142,8 @@ class SectorShare:
 class UsableCount:
     """Satellites of one system, or of all, usable at once over the window of the joint counts.
 
-    A satellite counts when at least one of the site's signals from it is usable.
+    Those are counted that send at least one of the site's signals; one is usable when at least one of these
+    signals is.
     """
 
     system: str
@@ -167,6 +170,8 @@ class Verdict:
         Hidden part of the open-sky satellite-time above the mask, all satellites of the site's systems.
     signals, satellites, obstacles, sectors, counts : tuple
         Details, in the order of the site file; obstacles as in `Skyline.obstacles`.
+    timeline : Timeline
+        The window of the joint counts, epoch by epoch.
     """
 
     outcome: Literal["pass", "fail", "unproven"]
@@ -178,3 +183,4 @@ class Verdict:
     obstacles: tuple[ObstacleCost, ...]
     sectors: tuple[SectorShare, ...]
     counts: tuple[UsableCount, ...]
+    timeline: Timeline = field(compare=False)
