@@ -101,11 +101,20 @@ def new(folder: Path) -> None:
 @click.option(
     "--json", "as_json", is_flag=True, help="Print the assessment as JSON; write files only with --out."
 )
+@click.option(
+    "--explain", is_flag=True, help="Find causes and cures for --json too; a written report has them anyway."
+)
 @click.option("--quiet", is_flag=True, help="No summary, notes or progress.")
 @click.option("--require-pass", is_flag=True, help="Exit with 3 unless the verdict is pass.")
 @click.pass_context
 def assess(
-    ctx: click.Context, site: Path, out: Path | None, as_json: bool, quiet: bool, require_pass: bool
+    ctx: click.Context,
+    site: Path,
+    out: Path | None,
+    as_json: bool,
+    explain: bool,
+    quiet: bool,
+    require_pass: bool,
 ) -> None:
     """Assess SITE, a site file or a folder that holds site.toml, and write its report.
 
@@ -115,12 +124,15 @@ def assess(
     Example:
       siteassess assess roof.toml --out reports/roof
     """
-    from siteassess.assessment import assess_file
+    from siteassess.assessment import assess_file, explained
 
     with _progress(shown=not quiet) as step:
         step("reading and assessing")
         assessment = assess_file(site)
         folder = out if out is not None or as_json else _report_folder(assessment)
+        if explain or folder is not None:
+            step("finding causes and cures")
+            assessment = explained(assessment)
         if folder is not None:
             import logging
 

@@ -5,8 +5,10 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from siteassess.report.answers import VERDICTS, answers
+from siteassess.report.causes import causes_section
 from siteassess.report.chain import chain_section
 from siteassess.report.changes import changes_section
+from siteassess.report.cures import cures_section
 from siteassess.report.levels import antenna_section, budget_section
 from siteassess.report.noise import noise_section
 from siteassess.report.outcomes import (
@@ -60,6 +62,7 @@ def report_content(assessment: Assessment) -> Content:
             findings_section(verdict),
             signals_section(assessment),
             obstacles_section(assessment),
+            *(section for section in (causes_section(assessment), cures_section(assessment)) if section),
             sectors_section(verdict),
             over_time_section(assessment),
             budget_section(assessment),

@@ -6,6 +6,7 @@ import math
 from typing import TYPE_CHECKING, Any
 
 from siteassess.link_budget.supply import preamplifier_voltage_v
+from siteassess.report.explanation_results import causes_record, cures_record
 from siteassess.report.plain_json import as_json
 from siteassess.report.plain_json import rounded as _rounded
 from siteassess.report.setting import CAUTIONS, assumptions
@@ -122,6 +123,8 @@ def assessment_record(assessment: Assessment) -> dict[str, Any]:
         "satellites": [_satellite(share) for share in verdict.satellites],
         "noise": _noise(assessment),
         "what_if": [_change(change) for change in assessment.what_if],
+        "causes": causes_record(assessment),
+        "cures": cures_record(assessment),
         "assumptions": list(assumptions(assessment)),
         "cautions": list(CAUTIONS),
     }

@@ -48,6 +48,8 @@ IndexArray = NDArray[np.int64]
 # Flat cells: most edges run along the horizon, so height decides how much of a cell they cut.
 RING_HEIGHT_DEG = 0.5
 SECTOR_WIDTH_DEG = 1.0
+# An edge reaches as far as the root of the wavelength: within a band by 1 % of some 2 degrees at most.
+ONE_BAND = 1.03
 THINNEST_DEG, THINNEST_DB = 1e-9, 1e-9
 
 
@@ -253,18 +255,29 @@ def _loss_db(
     It is taken half-way between the top of the cell and what hides its foot.
     """
     middle_deg = form.apparent_elevation_deg + form.half_height_deg * (1.0 - open_share)
-    loss_db = {}
-    for carrier_hz in form.noise:
+    loss_db: dict[float, FloatArray] = {}
+    for band_hz in _bands_hz(sorted(form.noise)):
         wanted = np.zeros(len(form.weight), dtype=np.bool_)
         for one in form.signals:
-            if one.signal.carrier_hz == carrier_hz:
+            if one.signal.carrier_hz in band_hz:
                 wanted[one.direction] = True
         at = np.flatnonzero(wanted & counts & (open_share > 0.0))
-        loss_db[carrier_hz] = np.zeros(len(form.weight))
-        loss_db[carrier_hz][at], _ = skyline_loss_db(
-            skyline, form.azimuth_deg[at], middle_deg[at], carrier_hz
-        )
+        band_loss_db = np.zeros(len(form.weight))
+        middle_hz = float(np.mean(band_hz))
+        band_loss_db[at], _ = skyline_loss_db(skyline, form.azimuth_deg[at], middle_deg[at], middle_hz)
+        loss_db |= dict.fromkeys(band_hz, band_loss_db)
     return loss_db
+
+
+def _bands_hz(carriers_hz: list[float]) -> list[list[float]]:
+    """Ascending carriers in bands so narrow that obstacles cost about the same in all of a band."""
+    bands_hz: list[list[float]] = []
+    for carrier_hz in carriers_hz:
+        if bands_hz and carrier_hz <= ONE_BAND * bands_hz[-1][0]:
+            bands_hz[-1].append(carrier_hz)
+        else:
+            bands_hz.append([carrier_hz])
+    return bands_hz
 
 
 def _open_share(form: AngularForm, skyline: Skyline, at: IndexArray) -> FloatArray:

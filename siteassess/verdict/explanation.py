@@ -129,7 +129,8 @@ def explanation(
         order=order,
         returned_in_order={signal: tuple(returned_in_order(one, order)) for signal, one in lost.items()},
         held_by_several_share={
-            signal: returned_share(lost[signal], ~returned.any(axis=0)) for signal, returned in alone.items()
+            signal: returned_share(lost[signal], np.logical_not(np.any(returned, axis=0)))
+            for signal, returned in alone.items()
         },
         tree_cuts=_tree_cuts(site, skyline, order, lost, alone),
         heights=heights(site, skyline, form, verdict, assessed_at),

@@ -176,7 +176,7 @@ def _stand(standing: _Standing, hold: _Hold) -> None:
 
 def _is_usable(lost: LostSky, standing: _Standing, which: IndexArray | slice) -> BoolArray:
     loss_db = standing.added_db + standing.wall_db
-    usable = (standing.hiders == 0) & (loss_db <= lost.spare_db[which])
+    usable: BoolArray = (standing.hiders == 0) & (loss_db <= lost.spare_db[which])
     if not lost.count_weakened:
         usable &= loss_db < WEAKENED_FROM_DB
     return usable
