@@ -1,4 +1,4 @@
-"""Writes the tables of docs/site_file.md that repeat packaged ones: kinds of parts, and purposes.
+"""Writes the tables of docs/site_file.md that repeat packaged ones: kinds of parts, instruments, and purposes.
 
 Run it from the project folder after a change of those tables:
 
@@ -49,9 +49,22 @@ def purposes_table() -> str:
     return "\n".join(["| purpose | minimum | why | rests on |", "| --- | --- | --- | --- |", *rows])
 
 
+def instruments_table() -> str:
+    """Classes of instruments, each with its errors and where they come from."""
+    rows = [
+        f"| `{row['instrument']}` | {row['azimuth_error_deg']} deg | {row['elevation_error_deg']} deg "
+        f"| {row['distance_error_m']} m | {row['source']} ({row['status']}) |"
+        for row in packaged_rows("verdict/instrument_classes.csv")
+    ]
+    return "\n".join(
+        ["| instrument | azimuth | elevation | distance | rests on |", "| --- | --- | --- | --- | --- |", *rows]
+    )
+
+
 def with_tables(page: str) -> str:
     """The page with its tables brought up to date."""
-    for name, table in (("kinds", kinds_table()), ("purposes", purposes_table())):
+    tables = {"kinds": kinds_table(), "instruments": instruments_table(), "purposes": purposes_table()}
+    for name, table in tables.items():
         start, end = f"<!-- table: {name} -->\n", "<!-- end of table -->"
         before, _, rest = page.partition(start)
         assert rest, f"the page has no marker {start}"
