@@ -29,7 +29,7 @@ def cures_section(assessment: Assessment) -> Section | None:
     found = assessment.explanation
     if found is None:
         return None
-    sentences = [_asked_now(assessment)]
+    sentences = [_asked_now(found.lowest_mask_for_all_deg)]
     tables = []
     if found.heights is None:
         sentences.append(_no_heights(assessment))
@@ -45,14 +45,10 @@ def cures_section(assessment: Assessment) -> Section | None:
     )
 
 
-def _asked_now(assessment: Assessment) -> str:
-    masks_deg = (
-        [one.lowest_mask_deg for one in assessment.explanation.askable] if assessment.explanation else []
-    )
-    known_deg = [mask_deg for mask_deg in masks_deg if mask_deg is not None]
-    if not known_deg or len(known_deg) < len(masks_deg):
+def _asked_now(mask_deg: float | None) -> str:
+    if mask_deg is None:
         return "No elevation mask up to 60° would let every signal pass."
-    return f"With the C/N0 asked for now every signal passes above a mask of {number(max(known_deg), 0)}°."
+    return f"With the C/N0 asked for now every signal passes above a mask of {mask_deg:g}°."
 
 
 def _no_heights(assessment: Assessment) -> str:
@@ -100,7 +96,7 @@ def _height_sentences(assessment: Assessment, heights: Heights) -> list[str]:
         eye_m = number(assessment.site.mount.phase_centre_height_m, 3)
         sentences.append(
             "The survey counts as taken at the present phase centre. When mast_height_m is changed in the "
-            f"site file, instrument_up_m = {eye_m} keeps it there."
+            f"site file, instrument_up_m = {eye_m} keeps it there; height_above_roof_m, where given, grows with the mast."
         )
     if heights.lowest_passing_m != heights.present_m:
         sentences.append(STABILITY)
@@ -139,12 +135,13 @@ def _askable_table(assessment: Assessment, askable: tuple[Askable, ...]) -> Tabl
         # Down to the tenth: rounded up it would not pass.
         return "none" if value_dbhz is None else number(int(value_dbhz * 10.0) / 10.0)
 
+    mask_deg = assessment.site.require.elevation_mask_deg
     return Table(
         caption=(
             "What could be asked of this spot as it is, with a usable share of "
             f"{percent(assessment.site.require.min_usable_share)}: the highest minimum of C/N0 that passes "
-            f"above the {assessment.site.require.elevation_mask_deg:g}° mask, in dB-Hz, and the lowest mask, in "
-            "whole degrees, that passes with the C/N0 asked for now."
+            f"above the {mask_deg:g}° mask, in dB-Hz, and the lowest mask, in whole degrees, that "
+            "passes with the C/N0 asked for now."
         ),
         header=("Signal", "C/N0 asked now", "Highest that passes", "Lowest mask"),
         rows=tuple(

@@ -60,6 +60,7 @@ def cures_record(assessment: Assessment) -> dict[str, Any] | None:
             }
             for one in found.askable
         ],
+        "lowest_mask_for_all_deg": rounded(found.lowest_mask_for_all_deg, "deg"),
     }
 
 

@@ -10,10 +10,11 @@ from siteassess.link_budget.budget import SignalBudget
 from siteassess.verdict.angular import AngularForm, shares_above
 from siteassess.verdict.states import WEAKENED_FROM_DB, SampleStates
 
-__all__ = ["Askable", "askable"]
+__all__ = ["ALL_SIGNALS", "Askable", "askable", "lowest_masks_deg"]
 
 FloatArray = NDArray[np.float64]
 
+ALL_SIGNALS = "all signals"
 HIGHEST_MASK_DEG = 60
 # The angular form keeps within this of the whole assessment; a mask below the present one must pass by it.
 ANGULAR_TOLERANCE = 0.002
@@ -43,38 +44,45 @@ class Askable:
 
 
 def askable(
-    form: AngularForm,
-    skyline: Skyline,
+    masks_deg: dict[str, float | None],
     budgets: tuple[SignalBudget, ...],
     states: dict[str, SampleStates],
     min_usable_share: float,
+    *,
+    count_weakened: bool,
 ) -> tuple[Askable, ...]:
     """What could be asked of each signal.
 
-    C/N0 is read off the samples of the assessment; masks off the angular form.
-
     Parameters
     ----------
-    form, skyline : AngularForm, Skyline
-        The site.
+    masks_deg : dict of str to float or None
+        From :func:`lowest_masks_deg`.
     budgets, states : tuple of SignalBudget, dict of str to SampleStates
         The signals as they were judged.
     min_usable_share : float
         What is asked of the usable share.
+    count_weakened : bool
+        As in the site file.
     """
-    masks_deg = np.arange(0.0, HIGHEST_MASK_DEG + 1.0)
-    above = shares_above(form, skyline, masks_deg)
     return tuple(
         Askable(
             signal=budget.signal.name,
             min_cn0_dbhz=budget.min_cn0_dbhz,
             highest_min_cn0_dbhz=_highest_min_cn0_dbhz(
-                budget, states[budget.signal.name], min_usable_share, count_weakened=form.count_weakened
+                budget, states[budget.signal.name], min_usable_share, count_weakened=count_weakened
             ),
-            lowest_mask_deg=_lowest_mask_deg(masks_deg, above[budget.signal.name], min_usable_share),
+            lowest_mask_deg=masks_deg[budget.signal.name],
         )
         for budget in budgets
     )
+
+
+def lowest_masks_deg(form: AngularForm, skyline: Skyline, min_usable_share: float) -> dict[str, float | None]:
+    """Lowest mask, in whole degrees, at which each signal passes, and under `ALL_SIGNALS` all of them."""
+    masks_deg = np.arange(0.0, HIGHEST_MASK_DEG + 1.0)
+    above = shares_above(form, skyline, masks_deg)
+    above[ALL_SIGNALS] = np.min(list(above.values()), axis=0)
+    return {name: _lowest_mask_deg(masks_deg, usable, min_usable_share) for name, usable in above.items()}
 
 
 def _highest_min_cn0_dbhz(

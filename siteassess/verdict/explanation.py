@@ -13,7 +13,7 @@ from siteassess.link_budget.budget import LinkBudget
 from siteassess.site_file.model import Site
 from siteassess.sky_tracks.tracks import SkyTracks
 from siteassess.verdict.angular import angular_form
-from siteassess.verdict.askable import Askable, askable
+from siteassess.verdict.askable import ALL_SIGNALS, Askable, askable, lowest_masks_deg
 from siteassess.verdict.causes import cost_rank
 from siteassess.verdict.heights import Heights, heights
 from siteassess.verdict.returns import (
@@ -72,6 +72,8 @@ class Explanation:
         What a taller mast brings; None where nothing would change.
     askable : tuple of Askable
         What could be asked of the spot as it is, signal by signal.
+    lowest_mask_for_all_deg : float or None
+        Lowest mask, in whole degrees, above which all signals pass with the C/N0 asked for now.
     """
 
     order: tuple[int, ...]
@@ -80,6 +82,7 @@ class Explanation:
     tree_cuts: tuple[TreeCut, ...]
     heights: Heights | None
     askable: tuple[Askable, ...]
+    lowest_mask_for_all_deg: float | None
 
 
 def explanation(
@@ -124,6 +127,7 @@ def explanation(
     )
     order = tuple(sorted(range(len(obstacles)), key=lambda index: cost_rank(obstacles[index]), reverse=True))
     form = angular_form(site, pattern, tracks, budget)
+    masks_deg = lowest_masks_deg(form, skyline, site.require.min_usable_share)
     explained = replace(verdict, obstacles=obstacles)
     return explained, Explanation(
         order=order,
@@ -134,7 +138,10 @@ def explanation(
         },
         tree_cuts=_tree_cuts(site, skyline, order, lost, alone),
         heights=heights(site, skyline, form, verdict, assessed_at),
-        askable=askable(form, skyline, budget.signals, states, site.require.min_usable_share),
+        askable=askable(
+            masks_deg, budget.signals, states, site.require.min_usable_share, count_weakened=weakened
+        ),
+        lowest_mask_for_all_deg=masks_deg[ALL_SIGNALS],
     )
 
 
