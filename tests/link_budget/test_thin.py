@@ -55,7 +55,7 @@ def test_a_thin_rod_costs_a_fraction_of_a_decibel_and_a_mast_some() -> None:
 
 
 def test_loss_behind_what_hangs_free_against_scipy() -> None:
-    """Authority: Kirchhoff's integral over a rectangle, by SciPy: a jib 2 m high at 60 m, 160 degrees long."""
+    """Authority: Kirchhoff's integral over a rectangle by SciPy; a jib 2 m high, 160 degrees long."""
     half_deg = np.rad2deg(np.arctan(1.0 / 60.0))
     jib = Obstacle(
         name="jib",

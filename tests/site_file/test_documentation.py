@@ -21,6 +21,7 @@ TABLES = {
     "[parts]": "PartsChoice",
     "[[chain]]": "Part",
     "[[horizon]]": "HorizonSource",
+    "[foliage]": "Foliage",
     "[sky]": "SkyModel",
     "[require]": "Requirements",
 }

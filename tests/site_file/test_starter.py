@@ -35,8 +35,8 @@ def test_every_line_that_is_off_can_be_switched_on(tmp_path: Path) -> None:
     write_starter(tmp_path / "new")
     path = tmp_path / "new" / "site.toml"
     text = re.sub(r"(?m)^# (?=[a-z_]+ = |\[\[)", "", path.read_text(encoding="utf-8"))
-    # The position may be given once only, and a geoid height belongs to an orthometric height.
-    text = re.sub(r"(?m)^(latitude|longitude)_deg = ", r"# \g<0>", text)
+    # Positions may be given once only, and a geoid height belongs to an orthometric height.
+    text = re.sub(r"(?m)^(landmark_)?(latitude|longitude|bearing)_deg = ", r"# \g<0>", text)
     text = text.replace('height_system = "ellipsoidal"', 'height_system = "orthometric"')
     path.write_text(text, encoding="utf-8")
     site = read_site(path)
