@@ -6,7 +6,7 @@ from siteassess.horizon.curves import FloatArray
 
 __all__ = ["gaps_between", "without"]
 
-NARROWEST_GAP_DEG = 1e-9  # narrower ones are rounding
+NARROWEST_DEG = 1e-9  # narrower ones are rounding
 
 
 def gaps_between(stretches_deg: FloatArray) -> FloatArray:
@@ -27,6 +27,7 @@ def gaps_between(stretches_deg: FloatArray) -> FloatArray:
     >>> gaps_between(np.array([[340.0, 380.0], [10.0, 60.0]])).tolist()
     [[60.0, 340.0]]
     """
+    stretches_deg = stretches_deg[stretches_deg[:, 1] - stretches_deg[:, 0] > NARROWEST_DEG]
     from_deg = stretches_deg[:, 0] - 360.0 * np.floor(stretches_deg[:, 0] / 360.0)
     to_deg = from_deg + (stretches_deg[:, 1] - stretches_deg[:, 0])
     from_deg, to_deg = np.append(from_deg, from_deg - 360.0), np.append(to_deg, to_deg - 360.0)
@@ -34,7 +35,7 @@ def gaps_between(stretches_deg: FloatArray) -> FloatArray:
     reached_deg = np.maximum.accumulate(np.append(0.0, to_deg[order]))
     start_deg = np.clip(reached_deg, 0.0, 360.0)
     end_deg = np.clip(np.append(from_deg[order], 360.0), 0.0, 360.0)
-    is_gap = end_deg > start_deg + NARROWEST_GAP_DEG
+    is_gap = end_deg > start_deg + NARROWEST_DEG
     return np.stack([start_deg[is_gap], end_deg[is_gap]], axis=1)
 
 

@@ -2,20 +2,26 @@
 
 from dataclasses import replace
 from functools import partial
+from math import hypot
+from os import PathLike
+from pathlib import Path
 
 import numpy as np
 
-from siteassess.errors import gather
+from siteassess.errors import InputError, gather
 from siteassess.horizon.bearings import north_turn
+from siteassess.horizon.disagreement import SURVEY_ERRORS_DEG, Source, disagreements
 from siteassess.horizon.looked_at import gaps_between
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.outlines import Outlines, read_outlines
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.survey import Survey, read_survey
 from siteassess.horizon.terrain import Terrain, read_terrain
-from siteassess.site_file.model import Site
+from siteassess.site_file.model import HorizonSource, Site
+from siteassess.site_file.read import RefusedSiteError, read_site
+from siteassess.wording import listed
 
-__all__ = ["read_skyline"]
+__all__ = ["read_site_skyline", "read_skyline"]
 
 
 def read_skyline(site: Site, *, years: float = 0.0) -> Skyline:
@@ -47,6 +53,47 @@ def read_skyline(site: Site, *, years: float = 0.0) -> Skyline:
         ),
         surveys=tuple(survey.facts for survey in surveys if isinstance(survey, Survey)),
         remarks=tuple(remark for one in surveys if not isinstance(one, Survey) for remark in one.remarks),
+        disagreements=disagreements(list(map(_held_against_others, site.horizon, surveys))),
+    )
+
+
+def read_site_skyline(path: str | PathLike[str]) -> tuple[Site, Skyline]:
+    """A site file and its skyline; the mistakes of all the files are told together.
+
+    Parameters
+    ----------
+    path : str or path
+        The site file, or a folder that holds `site.toml`.
+
+    Raises
+    ------
+    InputError
+        With the mistakes of the site file and of its horizon files.
+    """
+    try:
+        site = read_site(path)
+    except RefusedSiteError as refused:
+        try:
+            read_skyline(refused.legible)
+        except InputError as others:
+            raise InputError(*refused.mistakes, *others.mistakes) from refused
+        raise
+    return site, read_skyline(site)
+
+
+def _held_against_others(block: HorizonSource, found: Survey | Outlines | Terrain) -> Source:
+    azimuth_error_deg = block.azimuth_error_deg
+    if isinstance(found, Survey) and found.facts.uncertainty_deg:
+        stated_deg = SURVEY_ERRORS_DEG[0] if azimuth_error_deg is None else azimuth_error_deg
+        azimuth_error_deg = hypot(stated_deg, found.facts.uncertainty_deg)
+    return Source(
+        kind=block.source,
+        file=listed(Path(file.replace("\\", "/")).name for file in block.files),
+        obstacles=found.obstacles,
+        surveyed_deg=found.surveyed_deg,
+        complete=block.complete,
+        azimuth_error_deg=azimuth_error_deg,
+        elevation_error_deg=block.elevation_error_deg,
     )
 
 

@@ -6,7 +6,7 @@ from typing import Literal
 import numpy as np
 from numpy.typing import NDArray
 
-__all__ = ["GENERAL_SKYLINE", "Obstacle", "Outline", "Skyline", "SurveyFacts"]
+__all__ = ["GENERAL_SKYLINE", "Disagreement", "Obstacle", "Outline", "Skyline", "SurveyFacts"]
 
 FloatArray = NDArray[np.float64]
 
@@ -142,6 +142,43 @@ class SurveyFacts:
     remarks: tuple[str, ...]
 
 
+@dataclass(frozen=True, slots=True, kw_only=True)
+class Disagreement:
+    """A stretch in which a survey and a model differ by more than their errors explain.
+
+    Attributes
+    ----------
+    survey, model : str
+        Names of their files.
+    start_deg, end_deg : float
+        Azimuths from and to, clockwise; the second may pass 360.
+    azimuth_deg : float
+        Where they differ most.
+    survey_elevation_deg, model_elevation_deg : float
+        Their highest edges there; 0 where nothing rises above the horizon.
+    tolerance_deg : float
+        What the errors of elevation explain there.
+    survey_obstacle, model_obstacle : str
+        What they show there; empty where nothing rises above the horizon.
+    """
+
+    survey: str
+    model: str
+    start_deg: float
+    end_deg: float
+    azimuth_deg: float
+    survey_elevation_deg: float
+    model_elevation_deg: float
+    tolerance_deg: float
+    survey_obstacle: str
+    model_obstacle: str
+
+    @property
+    def difference_deg(self) -> float:
+        """Survey less model, where they differ most."""
+        return self.survey_elevation_deg - self.model_elevation_deg
+
+
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
 class Skyline(_ReadOnlyArrays):
     """Everything that stands between the antenna's phase centre and the sky.
@@ -158,6 +195,8 @@ class Skyline(_ReadOnlyArrays):
         How each survey was used, in the order of the site file.
     remarks : tuple of str
         What was changed in building outlines, one sentence each.
+    disagreements : tuple of Disagreement
+        Where a survey and a model of the same obstacle do not fit together.
     """
 
     obstacles: tuple[Obstacle, ...]
@@ -165,3 +204,4 @@ class Skyline(_ReadOnlyArrays):
     unsurveyed_deg: FloatArray
     surveys: tuple[SurveyFacts, ...] = ()
     remarks: tuple[str, ...] = ()
+    disagreements: tuple[Disagreement, ...] = ()
