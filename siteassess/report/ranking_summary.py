@@ -38,7 +38,8 @@ def ranking_lines(ranking: Ranking) -> list[str]:
 def _line(site: RankedSite, name: str) -> str:
     candidate = site.candidate
     missed = f"{candidate.missed} of {len(candidate.required)}"
+    satellites, ranks = number(candidate.usable_satellites), beaten_by(site, MOST_RANKS)
     return (
         f"{site.rank:>4}  {name}  {OUTCOMES[candidate.outcome]:<9}{missed:>9}"
-        f"{margin_text(candidate.margin):>13}{number(candidate.usable_satellites):>12}  {beaten_by(site, MOST_RANKS)}"
+        f"{margin_text(candidate.margin):>13}{satellites:>12}  {ranks}"
     )
