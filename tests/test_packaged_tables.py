@@ -23,7 +23,7 @@ UNIT_SUFFIXES = (
     *("_per_day", "_utc", "_per_100m", "_v", "_ma"),
 )
 # Numbers that have no unit, or that carry it in the column beside them.
-WITHOUT_UNIT = {"slot", "advice_limit", "order", "f", "g"}
+WITHOUT_UNIT = {"slot", "advice_limit", "value", "order", "f", "g"}
 
 # A blank cell means something in these columns; everywhere else it is a gap.
 MAY_BE_BLANK = {
@@ -38,7 +38,7 @@ MAY_BE_BLANK = {
         *("node_deg", "argument_of_latitude_deg", "crossing_longitude_deg"),
         *("nodal_period_s", "held_revolutions_per_day"),
     },
-    "verdict/criteria.csv": {"advice_limit"},
+    "verdict/criteria.csv": {"unit", "advice_limit", "part_of"},
 }
 PATTERNS = [name for name in TABLES if "gain_dbic" in packaged_rows(name)[0]]
 
@@ -101,7 +101,7 @@ def test_table_has_no_gaps_where_none_is_allowed(name: str) -> None:
 @pytest.mark.parametrize("name", TABLES)
 def test_rows_are_told_apart_by_their_key(name: str) -> None:
     rows = packaged_rows(name)
-    key = [next(iter(rows[0])), *(["arrangement"] if "arrangement" in rows[0] else [])]
+    key = [next(iter(rows[0])), *(column for column in ("arrangement", "key") if column in rows[0])]
     keys = [tuple(row[column] for column in key) for row in rows]
     assert len(set(keys)) == len(keys)
 
@@ -145,5 +145,28 @@ def test_every_signal_has_satellites_in_the_constellation_tables() -> None:
 
 def test_criteria_say_how_they_are_met() -> None:
     for row in packaged_rows("verdict/criteria.csv"):
-        assert row["unit"] in {"share", "deg", "m", "dB", "dB/m", "V"}
+        assert row["unit"] in {"share", "deg", "m", "s", "satellites", "dB", "dB-Hz", "dB/m", "V", ""}
         assert row["sense"] in {"at least", "at most"}
+
+
+@pytest.mark.parametrize("name", ["verdict/criteria.csv", "verdict/criteria_sets.csv"])
+def test_every_criterion_has_a_source_and_a_status(name: str) -> None:
+    for row in packaged_rows(name):
+        assert row["source"], row["key"]
+        assert any(word in row["status"] for word in ("seen", "memory", "own default")), row["key"]
+
+
+def test_limits_that_take_part_in_a_finding_name_it() -> None:
+    rows = {row["key"]: row for row in packaged_rows("verdict/criteria.csv")}
+    for row in rows.values():
+        assert not row["part_of"] or not rows[row["part_of"]]["part_of"]
+
+
+def test_sets_hold_limits_of_the_criteria_table_and_a_mask_each() -> None:
+    keys: dict[str, set[str]] = {}
+    for row in packaged_rows("verdict/criteria_sets.csv"):
+        keys.setdefault(row["set"], set()).add(row["key"])
+    criteria = {row["key"] for row in packaged_rows("verdict/criteria.csv")}
+    assert list(keys) == ["igs", "ngs-mark", "timing"]
+    for of_set in keys.values():
+        assert of_set - criteria == {"elevation_mask_deg"}
