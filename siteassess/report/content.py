@@ -26,7 +26,7 @@ from siteassess.wording import listed
 
 if TYPE_CHECKING:
     from siteassess.assessment import Assessment
-    from siteassess.site_file.model import HorizonSource
+    from siteassess.site_file.model import HorizonSource, Mount
 
 __all__ = ["report_content"]
 
@@ -99,12 +99,21 @@ def _facts(assessment: Assessment) -> tuple[tuple[str, str], ...]:
         ("Elevation mask", f"{site.require.elevation_mask_deg:g}°"),
         ("Minimum C/N0", _minimum_cn0(assessment)),
     ]
+    if roof := _roof(site.mount):
+        facts.append(("Roof", roof))
     if site.place.surveyed_by:
         facts.append(("Surveyed by", plain(site.place.surveyed_by)))
     dates = sorted({source.surveyed_on for source in site.horizon if source.surveyed_on})
     if dates:
         facts.append(("Surveyed on", listed([date.isoformat() for date in dates])))
     return tuple(facts)
+
+
+def _roof(mount: Mount) -> str:
+    """How far below the antenna the roof is and what it is made of, as far as the site file says."""
+    height_m = mount.height_above_roof_m
+    height = "" if height_m is None else f"{number(height_m, 2)} m below the antenna"
+    return ", ".join(filter(None, (height, plain(mount.roof_surface or ""))))
 
 
 def _minimum_cn0(assessment: Assessment) -> str:

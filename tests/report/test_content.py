@@ -88,6 +88,22 @@ def test_reason_of_a_sky_limit_holds_both_figures(markup_assessment):
     assert why == f"Highest point of the solid skyline: 47.0°; at most 20.0° is asked. {peak.reason}"
 
 
+@pytest.mark.parametrize(
+    ("mount", "told"),
+    [
+        ({}, None),
+        ({"roof_surface": "gravel"}, "gravel"),
+        ({"height_above_roof_m": 2.0}, "2.00 m below the antenna"),
+        ({"height_above_roof_m": 2.0, "roof_surface": "gravel"}, "2.00 m below the antenna, gravel"),
+    ],
+)
+def test_roof_is_told_as_far_as_it_is_known(markup_assessment, mount, told):
+    place = markup_assessment.site.mount.model_copy(update=mount)
+    site = markup_assessment.site.model_copy(update={"mount": place})
+    facts = dict(report_content(dataclasses.replace(markup_assessment, site=site)).facts)
+    assert facts.get("Roof") == told
+
+
 def test_site_without_obstacles_has_no_worst_direction(markup_assessment):
     sky = dataclasses.replace(markup_assessment.verdict.sky, peak_elevation_deg=0.0)
     sectors = tuple(
