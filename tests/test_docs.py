@@ -232,6 +232,18 @@ def test_method_pages_answer_the_same_questions_and_show_an_example(path: Path) 
     assert ">>> " in example
 
 
+# Criteria
+
+
+def test_criteria_page_holds_the_tables_of_the_package() -> None:
+    with_tables: Callable[[str], str] = runpy.run_path(str(BUILDERS / "build_criteria_page.py"))[
+        "with_tables"
+    ]
+    assert page("criteria.md") == with_tables(page("criteria.md")), (
+        "run tests/builders/build_criteria_page.py"
+    )
+
+
 # Accuracy
 
 
