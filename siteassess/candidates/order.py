@@ -50,7 +50,7 @@ def _rooms_worst_first(findings: tuple[Finding, ...]) -> tuple[float, ...]:
     return tuple(-value for value in sorted(room(finding) for finding in findings))
 
 
-def dominators(ordered: tuple[Candidate, ...]) -> tuple[tuple[int, ...], ...]:
+def dominators(ordered: tuple[Candidate, ...], *, with_advice: bool) -> tuple[tuple[int, ...], ...]:
     """For each candidate, the indices of those that are nowhere worse and somewhere better.
 
     What is compared is the verdict, every finding (its outcome, then its room) and the mean number of usable
@@ -60,11 +60,14 @@ def dominators(ordered: tuple[Candidate, ...]) -> tuple[tuple[int, ...], ...]:
     ----------
     ordered : tuple of Candidate
         From :func:`in_order`, so that whoever dominates stands above.
+    with_advice : bool
+        Whether findings that are advice count, or only those that are required.
     """
     groups: dict[tuple[CriterionKey, ...], list[int]] = {}
     rows = []
     for index, candidate in enumerate(ordered):
-        by_key = {criterion_key(finding): finding for finding in candidate.findings}
+        counted = candidate.findings if with_advice else candidate.required
+        by_key = {criterion_key(finding): finding for finding in counted}
         keys = tuple(sorted(by_key, key=str))
         groups.setdefault(keys, []).append(index)
         rows.append(_goods(candidate, [by_key[key] for key in keys]))

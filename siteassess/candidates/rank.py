@@ -48,13 +48,15 @@ def rank_sites(
 def rank_candidates(candidates: Iterable[Candidate], refused: Iterable[RefusedCandidate] = ()) -> Ranking:
     """Put assessed sites in order, compare each with all, and price each against the first."""
     ordered = in_order(tuple(candidates))
-    above = dominators(ordered)
+    beaten = dominators(ordered, with_advice=False)
+    dominated = dominators(ordered, with_advice=True)
     return Ranking(
         sites=tuple(
             RankedSite(
                 rank=index + 1,
                 candidate=candidate,
-                dominated_by=tuple(other + 1 for other in above[index]),
+                beaten_by=tuple(other + 1 for other in beaten[index]),
+                dominated_by=tuple(other + 1 for other in dominated[index]),
                 differences=_differences(candidate, ordered[0]),
             )
             for index, candidate in enumerate(ordered)

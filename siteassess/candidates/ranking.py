@@ -49,14 +49,18 @@ class RankedSite:
         1 is the first choice.
     candidate : Candidate
         The site.
+    beaten_by : tuple of int
+        Ranks of the sites that are at least as good in everything that is required and in usable satellites,
+        and better in something of it.
     dominated_by : tuple of int
-        Ranks of the sites that are at least as good in everything and better in something.
+        The same with every advice.
     differences : tuple of Difference
         Against the first site, where they differ; required criteria first, then by size.
     """
 
     rank: int
     candidate: Candidate
+    beaten_by: tuple[int, ...]
     dominated_by: tuple[int, ...]
     differences: tuple[Difference, ...]
 

@@ -10,7 +10,7 @@ from numpy.typing import ArrayLike, NDArray
 from siteassess.candidates.candidate import room
 from siteassess.report.drawing import INK, QUIET, drawn_svg, shortened
 from siteassess.report.phrases import number
-from siteassess.report.ranking_words import beaten_by, margin_text, site_names
+from siteassess.report.ranking_words import margin_text, rank_list, site_names
 
 if TYPE_CHECKING:
     from matplotlib.axes import Axes
@@ -167,7 +167,7 @@ def _draw_texts(axes: Axes, ranking: Ranking, sites: tuple[RankedSite, ...]) -> 
             margin_text(candidate.margin),
             missed,
             number(candidate.usable_satellites),
-            beaten_by(site, MOST_RANKS),
+            rank_list(site.beaten_by, MOST_RANKS),
         )
         axes.text(
             0.028,

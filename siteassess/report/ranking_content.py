@@ -10,12 +10,12 @@ from siteassess.report.ranking_chart import MOST_ROWS
 from siteassess.report.ranking_criteria import criteria_tables
 from siteassess.report.ranking_words import (
     OUTCOMES,
-    beaten_by,
     criterion_name,
     gains,
     gives_up,
     margin_text,
     mistake_text,
+    rank_list,
     site_names,
 )
 from siteassess.report.setting import CAUTIONS
@@ -38,9 +38,9 @@ RULES = (
     "it is negative where the limit is missed. The margin of a site is the smallest room of its required "
     "criteria. Where two margins are equal, the next smallest room decides, and so on.",
     "Then by the mean number of satellites usable at once, then by the room of advice, then by name.",
-    "A spot is beaten when another one is at least as good in everything, and better in something: verdict, "
-    "every required criterion, every advice, usable satellites. Whoever beats a spot stands above it. Spots "
-    "that are held against different criteria do not beat each other.",
+    "A spot is beaten when another one is nowhere worse and somewhere better in verdict, required criteria "
+    "and usable satellites; it is beaten in all when that holds with every advice, too. Whoever beats a spot "
+    "stands above it. Spots that are held against different criteria do not beat each other.",
     "Margins are relative to each criterion's own limit, and the smallest decides. They weigh no costs of "
     "access, power, network or permission; those are for the reader to weigh.",
     "Values that differ by less than the survey's errors are no reason to prefer one spot to another.",
@@ -136,15 +136,17 @@ def _how_many(ranking: Ranking) -> str:
 
 
 def _left_out(ranking: Ranking, names: list[str]) -> str:
-    beaten = [(site.rank, name) for site, name in zip(ranking.sites, names, strict=True) if site.dominated_by]
+    beaten = [(site.rank, name) for site, name in zip(ranking.sites, names, strict=True) if site.beaten_by]
     if not beaten:
-        return "None: each is better than every other one in something."
+        return "None: each is better than every other one in something that is required."
     named = "; ".join(f"no. {rank}, {name}" for rank, name in beaten[:MOST_NAMED])
     more = len(beaten) - MOST_NAMED
-    return (
-        f"{_spots(len(beaten)).capitalize()}, beaten by another one in everything: "
+    text = (
+        f"{_spots(len(beaten)).capitalize()}, beaten by another one in everything that is required: "
         f"{named}{f'; and {more} more' if more > 0 else ''}."
     )
+    in_all = sum(bool(site.dominated_by) for site in ranking.sites)
+    return f"{text} In every advice, too: {in_all or 'none'}."
 
 
 def _facts(ranking: Ranking) -> tuple[tuple[str, str], ...]:
@@ -184,8 +186,9 @@ def _order_section(ranking: Ranking) -> Section:
         tables=(
             Table(
                 caption="The best first. Missed: required criteria; satellites: mean number usable at once; "
-                "hidden: sky above the mask behind solid obstacles; beaten by: spots that are better in "
-                "everything.",
+                "hidden: sky above the mask behind solid obstacles; beaten by: spots that are nowhere worse "
+                "and somewhere better in what is required and in satellites; in all: the same with every "
+                "advice.",
                 header=(
                     "No.",
                     "Spot",
@@ -196,9 +199,10 @@ def _order_section(ranking: Ranking) -> Section:
                     "Satellites",
                     "Hidden",
                     "Beaten by",
+                    "in all by",
                 ),
                 rows=tuple(_order_row(site, name) for site, name in zip(ranking.sites, names, strict=True)),
-                align="rlllrrrrl",
+                align="rlllrrrrll",
                 tones=tuple(TONES[site.candidate.outcome] for site in ranking.sites),
             ),
         ),
@@ -216,7 +220,8 @@ def _order_row(site: RankedSite, name: str) -> tuple[str, ...]:
         margin_text(candidate.margin),
         number(candidate.usable_satellites),
         percent(candidate.sky.blocked_share_above_mask),
-        beaten_by(site, MOST_RANKS),
+        rank_list(site.beaten_by, MOST_RANKS),
+        rank_list(site.dominated_by, MOST_RANKS),
     )
 
 

@@ -34,7 +34,7 @@ COLUMNS = (
     "margin",
     "usable_satellites",
 )
-TEXT_COLUMNS = ("name", "site", "verdict", "dominated_by")
+TEXT_COLUMNS = ("name", "site", "verdict", "beaten_by", "dominated_by")
 
 
 def ranking_json(ranking: Ranking) -> str:
@@ -77,6 +77,7 @@ def _site(site: RankedSite) -> dict[str, Any]:
         "required_missed": candidate.missed,
         "margin": rounded(candidate.margin, "share"),
         "usable_satellites": rounded(candidate.usable_satellites, "count"),
+        "beaten_by": list(site.beaten_by),
         "dominated_by": list(site.dominated_by),
         "sky": _sky(site),
         "findings": [_finding(finding) for finding in candidate.findings],
@@ -151,7 +152,7 @@ def ranking_frame(ranking: Ranking) -> pd.DataFrame:
         }
         rows.append(
             {key: record[key] for key in COLUMNS}
-            | {"dominated_by": " ".join(map(str, site.dominated_by))}
+            | {key: " ".join(map(str, record[key])) for key in ("beaten_by", "dominated_by")}
             | record["sky"]
             | {" ".join(filter(None, column)): values.get(column) for column in columns}
         )

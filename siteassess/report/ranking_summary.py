@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING
 
 from siteassess.report.drawing import shortened
 from siteassess.report.phrases import number
-from siteassess.report.ranking_words import OUTCOMES, beaten_by, margin_text, site_names
+from siteassess.report.ranking_words import OUTCOMES, margin_text, rank_list, site_names
 from siteassess.report.summary import PLAIN_SIGNS
 
 if TYPE_CHECKING:
@@ -38,7 +38,7 @@ def ranking_lines(ranking: Ranking) -> list[str]:
 def _line(site: RankedSite, name: str) -> str:
     candidate = site.candidate
     missed = f"{candidate.missed} of {len(candidate.required)}"
-    satellites, ranks = number(candidate.usable_satellites), beaten_by(site, MOST_RANKS)
+    satellites, ranks = number(candidate.usable_satellites), rank_list(site.beaten_by, MOST_RANKS)
     return (
         f"{site.rank:>4}  {name}  {OUTCOMES[candidate.outcome]:<9}{missed:>9}"
         f"{margin_text(candidate.margin):>13}{satellites:>12}  {ranks}"

@@ -11,12 +11,12 @@ from siteassess.verdict.criteria import read_criteria
 
 __all__ = [
     "OUTCOMES",
-    "beaten_by",
     "criterion_name",
     "gains",
     "gives_up",
     "margin_text",
     "mistake_text",
+    "rank_list",
     "site_names",
 ]
 
@@ -75,9 +75,14 @@ def mistake_text(mistake: Mistake) -> str:
     return plain(str(mistake))
 
 
-def beaten_by(site: RankedSite, most_ranks: int) -> str:
-    """Ranks of the sites that are better in everything, or how many they are; a dash where there is none."""
-    ranks = site.dominated_by
+def rank_list(ranks: Sequence[int], most_ranks: int) -> str:
+    """Ranks of other sites, or how many they are; a dash where there is none.
+
+    Examples
+    --------
+    >>> rank_list((1, 4), 2), rank_list((1, 4, 5), 2), rank_list((), 2)
+    ('no. 1, 4', '3 spots', '–')
+    """
     if len(ranks) > most_ranks:
         return f"{len(ranks)} spots"
     return "no. " + ", ".join(str(rank) for rank in ranks) if ranks else NOTHING

@@ -1,7 +1,7 @@
 """Time the ranking of many sites: two processes against one, a further site against one alone; memory.
 
-Run with ``python tests/benchmarks/time_rank.py [--quick]``. Nothing here fails on a time. What two processes can
-gain on the machine at that moment is measured with plain NumPy beside it.
+Run with ``python tests/benchmarks/time_rank.py [--quick]``. Nothing here fails on a time. What two processes
+can gain on the machine at that moment is measured with plain NumPy beside it.
 """
 
 import argparse

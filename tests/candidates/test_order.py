@@ -145,7 +145,7 @@ def test_beaten_by_is_what_the_definition_says(
     found: Found, made: Made, levels: list[tuple[int, int, int, int, bool]]
 ) -> None:
     ordered = in_order(tuple(from_levels(found, made, levels)))
-    assert dominators(ordered) == tuple(
+    assert dominators(ordered, with_advice=True) == tuple(
         tuple(index for index, one in enumerate(ordered) if better_in_everything(one, other))
         for other in ordered
     )
@@ -174,7 +174,7 @@ def test_sites_with_different_criteria_do_not_beat_each_other(found: Found, made
 
 def test_equal_sites_do_not_beat_each_other(found: Found, made: Made) -> None:
     same = found("min_usable_share", 0.97, 0.95, "S")
-    assert dominators(in_order((made("a", same), made("b", same)))) == ((), ())
+    assert dominators(in_order((made("a", same), made("b", same))), with_advice=True) == ((), ())
 
 
 def test_missed_by_less_than_a_millionth_is_still_missed(found: Found, made: Made) -> None:
@@ -182,4 +182,27 @@ def test_missed_by_less_than_a_millionth_is_still_missed(found: Found, made: Mad
     missed = made("a", found("min_usable_share", 0.95 - 1e-9, 0.95, "S"))
     assert met.margin == missed.margin == 0.0
     assert names(in_order((missed, met))) == ["met", "a"]
-    assert dominators(in_order((missed, met))) == ((), (0,))
+    assert dominators(in_order((missed, met)), with_advice=True) == ((), (0,))
+
+
+def test_advice_can_keep_a_site_from_being_dominated_but_not_from_being_beaten(
+    found: Found, made: Made
+) -> None:
+    low, high = (found("max_horizon_deg", value, 10.0, required=False) for value in (30.0, 5.0))
+    best = made("best", found("min_usable_share", 0.99, 0.95, "S"), low)
+    worse = made("worse", found("min_usable_share", 0.97, 0.95, "S"), high)
+    silent = made("silent", found("min_usable_share", 0.96, 0.95, "S"))
+    ranking = rank_candidates((silent, worse, best))
+    assert [site.candidate.name for site in ranking.sites] == ["best", "worse", "silent"]
+    assert [site.beaten_by for site in ranking.sites] == [(), (1,), (1, 2)]
+    assert [site.dominated_by for site in ranking.sites] == [(), (), ()]
+
+
+@given(levels=SITES)
+def test_who_dominates_beats_or_differs_in_advice_alone(
+    found: Found, made: Made, levels: list[tuple[int, int, int, int, bool]]
+) -> None:
+    for site in rank_candidates(from_levels(found, made, levels)).sites:
+        assert all(rank < site.rank for rank in site.beaten_by + site.dominated_by)
+        for rank in set(site.dominated_by) - set(site.beaten_by):
+            assert {difference.required for difference in site.differences if rank == 1} <= {False}

@@ -204,8 +204,8 @@ KEYS = {
     "": {"format", "tool_version", "ranking", "refused", "asked_differently", "same_criteria", "cautions"},
     "ranking": {
         "rank", "name", "site", "latitude_deg", "longitude_deg", "height_m", "verdict", "required",
-        "required_missed", "margin", "usable_satellites", "dominated_by", "sky", "findings", "signals",
-        "against_first",
+        "required_missed", "margin", "usable_satellites", "beaten_by", "dominated_by", "sky", "findings",
+        "signals", "against_first",
     },
     "findings": {"criterion", "signal", "value", "limit", "unit", "required", "outcome", "room"},
     "signals": {"signal", "usable_share", "lost_share", "hidden_share", "cn0_median_dbhz"},
