@@ -96,7 +96,8 @@ def _height_sentences(assessment: Assessment, heights: Heights) -> list[str]:
         eye_m = number(assessment.site.mount.phase_centre_height_m, 3)
         sentences.append(
             "The survey counts as taken at the present phase centre. When mast_height_m is changed in the "
-            f"site file, instrument_up_m = {eye_m} keeps it there; height_above_roof_m, where given, grows with the mast."
+            f"site file, instrument_up_m = {eye_m} keeps it there; height_above_roof_m, where given, "
+            "grows with the mast."
         )
     if heights.lowest_passing_m != heights.present_m:
         sentences.append(STABILITY)
@@ -141,7 +142,7 @@ def _askable_table(assessment: Assessment, askable: tuple[Askable, ...]) -> Tabl
             "What could be asked of this spot as it is, with a usable share of "
             f"{percent(assessment.site.require.min_usable_share)}: the highest minimum of C/N0 that passes "
             f"above the {mask_deg:g}° mask, in dB-Hz, and the lowest mask, in whole degrees, that "
-            "passes with the C/N0 asked for now."
+            "passes with the C/N0 asked for now and 0.2 % to spare."
         ),
         header=("Signal", "C/N0 asked now", "Highest that passes", "Lowest mask"),
         rows=tuple(

@@ -1,4 +1,4 @@
-"""A thinned sky: all the satellite-time of a place in a few thousand directions."""
+"""A thinned sky: all the satellite-time of a place in far fewer directions than positions."""
 
 from dataclasses import dataclass
 

@@ -1,0 +1,55 @@
+"""The angular form against whole link budgets, which it stands in for."""
+
+import runpy
+from pathlib import Path
+
+import numpy as np
+import pytest
+
+from siteassess import Assessment, assess, read_site
+from siteassess.verdict.angular import AngularForm, angular_form, noise_gain_db, shares_above, usable_shares
+
+BUILDERS = Path(__file__).parents[1] / "builders"
+HARBOUR = Path(__file__).parents[2] / "example_sites" / "harbour"
+TWO_TENTHS_OF_A_PERCENT = 0.002
+ROUNDING_DB = 1e-9
+
+
+@pytest.fixture(scope="module")
+def assessment() -> Assessment:
+    return assess(read_site(HARBOUR / "silo_yard"))
+
+
+@pytest.fixture(scope="module")
+def form(assessment: Assessment) -> AngularForm:
+    return angular_form(assessment.site, assessment.pattern, assessment.tracks, assessment.budget)
+
+
+def test_random_sites_agree_with_whole_budgets() -> None:
+    # Its builder looked at 50; these are others.
+    differences = runpy.run_path(str(BUILDERS / "compare_angular_form.py"))["differences"]
+    assert np.abs(differences(8, seed=20)).max() < TWO_TENTHS_OF_A_PERCENT
+
+
+def test_present_skyline_returns_the_assessment(assessment: Assessment, form: AngularForm) -> None:
+    quick = usable_shares(form, assessment.skyline)
+    for one in assessment.verdict.signals:
+        assert quick[one.signal] == pytest.approx(one.usable_share, abs=TWO_TENTHS_OF_A_PERCENT)
+
+
+def test_present_skyline_has_the_present_noise(assessment: Assessment, form: AngularForm) -> None:
+    for gain_db in noise_gain_db(form, assessment.skyline).values():
+        assert gain_db == pytest.approx(0.0, abs=ROUNDING_DB)
+
+
+@pytest.mark.parametrize("mask_deg", [5.0, 10.0, 25.0])
+def test_shares_above_masks_are_those_of_assessments(
+    assessment: Assessment, form: AngularForm, mask_deg: float
+) -> None:
+    require = assessment.site.require.model_copy(update={"elevation_mask_deg": mask_deg})
+    whole = assess(assessment.site.model_copy(update={"require": require}))
+    masks_deg = np.arange(0.0, 61.0)
+    quick = shares_above(form, assessment.skyline, masks_deg)
+    for one in whole.verdict.signals:
+        found = quick[one.signal][masks_deg == mask_deg][0]
+        assert found == pytest.approx(one.usable_share, abs=TWO_TENTHS_OF_A_PERCENT)
