@@ -146,7 +146,7 @@ def _left_out(ranking: Ranking, names: list[str]) -> str:
         f"{named}{f'; and {more} more' if more > 0 else ''}."
     )
     in_all = sum(bool(site.dominated_by) for site in ranking.sites)
-    return f"{text} In every advice, too: {in_all or 'none'}."
+    return f"{text} Counting every advice, too: {_spots(in_all) if in_all else 'none'}."
 
 
 def _facts(ranking: Ranking) -> tuple[tuple[str, str], ...]:

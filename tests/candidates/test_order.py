@@ -206,3 +206,10 @@ def test_who_dominates_beats_or_differs_in_advice_alone(
         assert all(rank < site.rank for rank in site.beaten_by + site.dominated_by)
         for rank in set(site.dominated_by) - set(site.beaten_by):
             assert {difference.required for difference in site.differences if rank == 1} <= {False}
+
+
+def test_criterion_met_by_a_hair_dominates_one_missed_by_a_hair(found: Found, made: Made) -> None:
+    failing = found("max_horizon_deg", 30.0, 10.0)
+    met = made("met", found("min_usable_share", 0.95, 0.95, "S"), failing)
+    missed = made("a", found("min_usable_share", 0.95 - 1e-9, 0.95, "S"), failing)
+    assert dominators(in_order((missed, met)), with_advice=False) == ((), (0,))
