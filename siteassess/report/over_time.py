@@ -6,7 +6,7 @@ from typing import TYPE_CHECKING
 
 from siteassess.report.phrases import NOTHING, number, percent
 from siteassess.report.pieces import Section, Table
-from siteassess.report.time_results import DILUTIONS
+from siteassess.report.time_results import DILUTION_SHARES, DILUTIONS
 from siteassess.sky_tracks.dilution import not_exceeded
 
 if TYPE_CHECKING:
@@ -130,7 +130,7 @@ def _sectors_table(timeline: Timeline) -> Table:
 def _dilution_table(timeline: Timeline) -> Table:
     """Figures that hold for half, 90 % and 95 % of the time."""
     both = timeline.dilution_in_view, timeline.dilution
-    shares = (0.5, 0.9, 0.95)
+    shares = tuple(DILUTION_SHARES.values())
     return Table(
         caption=(
             "Dilution of precision with one clock a system: not exceeded for half, 90 % and 95 % of the "
@@ -144,7 +144,7 @@ def _dilution_table(timeline: Timeline) -> Table:
         rows=tuple(
             (
                 name.upper(),
-                *(_figure(not_exceeded(getattr(one, field), share)) for one in both for share in shares),
+                *(_figure(value) for one in both for value in not_exceeded(getattr(one, field), shares)),
             )
             for name, field in DILUTIONS.items()
         ),

@@ -14,7 +14,7 @@ if TYPE_CHECKING:
     from siteassess.sky_tracks.dilution import Dilution
     from siteassess.verdict.timeline import Shortfall, Timeline
 
-__all__ = ["time_record"]
+__all__ = ["DILUTIONS", "DILUTION_SHARES", "time_record"]
 
 DILUTIONS = {
     "hdop": "horizontal",
@@ -23,6 +23,7 @@ DILUTIONS = {
     "tdop": "time",
     "gdop": "geometric",
 }
+DILUTION_SHARES = {"median": 0.5, "p90": 0.9, "p95": 0.95}
 
 
 def time_record(timeline: Timeline) -> dict[str, Any]:
@@ -68,8 +69,12 @@ def _dilution(dilution: Dilution) -> dict[str, Any]:
     """Figures that are not exceeded for a share of the time; None where they are undetermined then."""
     return {
         name: {
-            label: rounded(not_exceeded(getattr(dilution, field), share), "count")
-            for label, share in (("median", 0.5), ("p90", 0.9), ("p95", 0.95))
+            label: rounded(value, "count")
+            for label, value in zip(
+                DILUTION_SHARES,
+                not_exceeded(getattr(dilution, field), tuple(DILUTION_SHARES.values())),
+                strict=True,
+            )
         }
         for name, field in DILUTIONS.items()
     }

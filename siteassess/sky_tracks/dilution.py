@@ -181,21 +181,20 @@ def _clock_variance(
     return np.where(np.isnan(ee), np.nan, variance)
 
 
-def not_exceeded(dilution: FloatArray, share: float) -> float:
-    """The smallest figure that is not exceeded for a share of the epochs; infinite if that is undetermined.
+def not_exceeded(dilution: FloatArray, shares: tuple[float, ...]) -> list[float]:
+    """The smallest figures that are not exceeded for shares of the epochs; infinite if undetermined then.
 
     Parameters
     ----------
     dilution : array, shape (epoch,)
         One of the figures of :class:`Dilution`.
-    share : float
+    shares : tuple of float
         Above 0, at most 1.
 
     Examples
     --------
-    >>> dops = np.array([1.2, np.nan, 0.9, 1.5])
-    >>> [not_exceeded(dops, share) for share in (0.5, 0.75, 1.0)]
+    >>> not_exceeded(np.array([1.2, np.nan, 0.9, 1.5]), (0.5, 0.75, 1.0))
     [1.2, 1.5, inf]
     """
     ascending = np.sort(np.where(np.isnan(dilution), np.inf, dilution))
-    return float(ascending[math.ceil(share * len(ascending) - 1e-9) - 1])
+    return [float(ascending[math.ceil(share * len(ascending) - 1e-9) - 1]) for share in shares]

@@ -38,16 +38,16 @@ def over_time(joint: JointSamples, samples: SkySamples, require: Requirements, s
     in_view, usable = counts_at_once(joint)
     azimuth_deg = samples.azimuth_deg[joint.sample]
     toward = unit_vectors(azimuth_deg, samples.elevation_deg[joint.sample])
-    here = joint.usable
+    here, gone = np.flatnonzero(joint.usable), np.flatnonzero(~joint.usable)
     dilution = dilution_of_precision(
-        toward[:, here], joint.epoch[here], joint.system[here], epochs=joint.epochs
+        toward.take(here, axis=1), joint.epoch[here], joint.system[here], epochs=joint.epochs
     )
     sector = ((azimuth_deg + 22.5) / 45.0).astype(np.int64) % len(SECTOR_NAMES)
     missing = _Missing(
         systems=joint.systems,
-        epoch=joint.epoch[~here],
-        system=joint.system[~here],
-        sector=sector[~here],
+        epoch=joint.epoch[gone],
+        system=joint.system[gone],
+        sector=sector[gone],
         step_s=step_s,
     )
     max_pdop = limit_or_advice(require, "max_pdop")
@@ -77,7 +77,7 @@ def _asked_numbers(systems: tuple[str, ...], require: Requirements) -> Iterator[
         yield systems.index(system), system, number
 
 
-def _sectors(sector: IndexArray, usable: BoolArray, epochs: int) -> tuple[SectorCount, ...]:
+def _sectors(sector: IndexArray, usable: IndexArray, epochs: int) -> tuple[SectorCount, ...]:
     in_view = np.bincount(sector, minlength=len(SECTOR_NAMES)) / epochs
     at_once = np.bincount(sector[usable], minlength=len(SECTOR_NAMES)) / epochs
     return tuple(
