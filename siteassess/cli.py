@@ -16,7 +16,7 @@ import click
 from siteassess.errors import SiteAssessError
 
 if TYPE_CHECKING:
-    from siteassess.assessment import Assessment
+    from siteassess.site_file.model import Site
 
 __all__ = ["main"]
 
@@ -129,7 +129,7 @@ def assess(
     with _progress(shown=not quiet) as step:
         step("reading and assessing")
         assessment = assess_file(site)
-        folder = out if out is not None or as_json else _report_folder(assessment)
+        folder = out if out is not None or as_json else _beside(assessment.site, "report")
         if explain or folder is not None:
             step("finding causes and cures")
             assessment = explained(assessment)
@@ -155,6 +155,55 @@ def assess(
         _tell(f"Report written to {folder}")
     if require_pass and assessment.verdict.outcome != "pass":
         ctx.exit(3)
+
+
+@main.command()
+@click.argument("site", type=click.Path(path_type=Path))
+@click.option(
+    "--out", type=click.Path(path_type=Path), metavar="FOLDER",
+    help="Write the files here instead of SITE-horizon beside the site file.",
+)  # fmt: skip
+@click.option(
+    "--json", "as_json", is_flag=True, help="Print the horizon as JSON; write files only with --out."
+)
+@click.option("--quiet", is_flag=True, help="No table, notes or progress.")
+def horizon(site: Path, out: Path | None, as_json: bool, quiet: bool) -> None:
+    """Put the horizon of SITE together from all its sources.
+
+    Prints how much is hidden in each direction, which source shows what, and where sources disagree. Writes
+    horizon.csv, one survey file that gives the same horizon, and panorama.svg.
+
+    \b
+    Example:
+      siteassess horizon my_roof
+      siteassess horizon roof.toml --out assembled
+    """
+    from siteassess.horizon.read import read_site_skyline
+    from siteassess.horizon.shares import sky_shares
+
+    with _progress(shown=not quiet) as step:
+        step("reading the horizon")
+        read, skyline = read_site_skyline(site)
+        shares = sky_shares(skyline, read.require.elevation_mask_deg)
+        folder = out if out is not None or as_json else _beside(read, "horizon")
+        if folder is not None:
+            import logging
+
+            from siteassess.report.write_horizon import write_horizon
+
+            logging.getLogger("matplotlib").setLevel(logging.ERROR)
+            write_horizon(read, skyline, shares, folder, step)
+    if as_json:
+        from siteassess.report.horizon_table import horizon_json
+
+        click.echo(horizon_json(read, skyline, shares).encode(), nl=False)
+    elif not quiet:
+        from siteassess.report.horizon_table import horizon_lines
+
+        for line in horizon_lines(read, skyline, shares):
+            click.echo(line)
+    if folder is not None and not quiet:
+        _tell(f"Horizon written to {folder}")
 
 
 @main.command()
@@ -293,9 +342,8 @@ def _tell(text: str, indent: str = "") -> None:
     click.echo(indent + plain(text), err=True)
 
 
-def _report_folder(assessment: "Assessment") -> Path:
-    path = assessment.site.path
-    return path.parent / f"{path.stem}-report"
+def _beside(site: "Site", what: str) -> Path:
+    return site.path.parent / f"{site.path.stem}-{what}"
 
 
 @contextmanager

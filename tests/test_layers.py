@@ -26,7 +26,7 @@ MAY_IMPORT = {
     "assessment": BASICS | RECORDS,
     "candidates": BASICS | RECORDS | {"assessment"},
     "report": BASICS | RECORDS | {"tables", "assessment", "candidates"},
-    "cli": {"errors", "assessment", "antenna", "site_file", "candidates", "report"},
+    "cli": {"errors", "assessment", "antenna", "site_file", "horizon", "candidates", "report"},
     "__init__": {"errors", "assessment", "site_file"},
     "__main__": {"cli"},
 }

@@ -84,8 +84,8 @@ def disagreements(sources: Sequence[Source]) -> tuple[Disagreement, ...]:
     One edge stands above the other where it is higher than the other one is anywhere within the errors of
     azimuth, by more than the errors of elevation; all errors together, two standard deviations. A model that
     stands above a survey contradicts it wherever the survey looked. A survey that stands above a model may
-    show what the model lacks: it contradicts the model where both show the same obstacle, or where the model
-    is said to be complete.
+    show what the model lacks: it contradicts the model where both show the same obstacle, or where outlines
+    are said to be complete.
 
     Parameters
     ----------
@@ -158,7 +158,9 @@ def _between(survey: _Seen, model: _Seen) -> Iterator[Disagreement]:
     looked_at = survey.has_edge | ~_within(gaps_between(survey.source.surveyed_deg))
     model_above = looked_at & _stands_above(model, survey, azimuth_deg, tolerance_deg)
     survey_above = _stands_above(survey, model, azimuth_deg, tolerance_deg)
-    survey_above &= _is_same(survey, model) | model.source.complete
+    # Terrain lacks what is near, however complete it is.
+    holds_all = model.source.complete and model.source.kind == "outlines"
+    survey_above &= _is_same(survey, model) | holds_all
     for above in (model_above, survey_above):
         for run in _runs(above):
             apart_deg = np.where(above[run], np.abs(survey.elevation_deg - model.elevation_deg)[run], 0.0)

@@ -30,14 +30,27 @@ if TYPE_CHECKING:
 
     from siteassess.assessment import Assessment
     from siteassess.horizon.skyline import Skyline
-    from siteassess.verdict.verdict import ObstacleCost, Verdict
+    from siteassess.verdict.verdict import Verdict
 
-__all__ = ["panorama_svg"]
+__all__ = [
+    "HEIGHTS_IN",
+    "WIDTH_IN",
+    "Label",
+    "draw_frame",
+    "draw_labels",
+    "draw_mask",
+    "panorama_svg",
+    "placed_labels",
+]
 
 FloatArray = NDArray[np.float64]
 
 WIDTH_IN = 7.1
-SKY_IN, BELOW_IN, ROW_IN = 1.75, 0.36, 0.145  # heights: of the sky, of what is below it, of a row of labels
+HEIGHTS_IN = SKY_IN, BELOW_IN, ROW_IN = (
+    1.75,
+    0.36,
+    0.145,
+)  # of the sky, of what is below it, of a row of labels
 LOWEST_TOP_DEG = 30.0
 MOST_LABELS = 16
 LABEL_LETTERS = 24
@@ -47,12 +60,13 @@ LABEL_ROWS = 5
 
 @dataclass(frozen=True, slots=True, kw_only=True)
 class Label:
-    """Name of an obstacle and its place above the sky."""
+    """Name of an obstacle, its place above the sky, and the highest point of the obstacle."""
 
     text: str
     centre_deg: float
     row: int
-    obstacle: ObstacleCost
+    azimuth_deg: float
+    peak_deg: float
 
 
 def panorama_svg(assessment: Assessment) -> str:
@@ -71,14 +85,15 @@ def _figure(assessment: Assessment) -> Figure:
     peaks_deg = [obstacle.peak_elevation_deg for obstacle in assessment.verdict.obstacles]
     mask_deg = assessment.site.require.elevation_mask_deg
     top_deg = min(90.0, max(LOWEST_TOP_DEG, 1.15 * max(peaks_deg, default=0.0), 1.5 * mask_deg))
-    _draw_frame(axes, top_deg)
+    draw_frame(axes, top_deg)
     _draw_skyline(axes, assessment.skyline, top_deg)
-    _draw_mask(axes, mask_deg)
-    _draw_labels(axes, labels, top_deg)
+    draw_mask(axes, mask_deg)
+    draw_labels(axes, labels, top_deg)
     return figure
 
 
-def _draw_frame(axes: Axes, top_deg: float) -> None:
+def draw_frame(axes: Axes, top_deg: float) -> None:
+    """Scales of azimuth and elevation."""
     axes.set(xlim=(0.0, 360.0), ylim=(0.0, top_deg), ylabel="elevation")
     ticks_deg = np.arange(0, 361, 30)
     names = {0: "N", 90: "E", 180: "S", 270: "W", 360: "N"}
@@ -88,7 +103,8 @@ def _draw_frame(axes: Axes, top_deg: float) -> None:
     axes.spines[["top", "right"]].set_visible(False)
 
 
-def _draw_mask(axes: Axes, mask_deg: float) -> None:
+def draw_mask(axes: Axes, mask_deg: float) -> None:
+    """The elevation mask as a dashed line."""
     box = {"boxstyle": "square,pad=0.1", "facecolor": "white", "edgecolor": "none", "alpha": 0.85}
     axes.axhline(mask_deg, color=INK, linewidth=0.9, dashes=(5, 2), zorder=5)
     axes.text(358.5, mask_deg, f"mask {mask_deg:g}°", ha="right", va="center", fontsize=6, bbox=box, zorder=7)
@@ -118,32 +134,42 @@ def _draw_strip(
 def _labels(verdict: Verdict) -> list[Label]:
     """Names of the dearest obstacles; who costs more is served first, who finds no room stays without."""
     ranked = ranked_obstacles(verdict)[:MOST_LABELS]
-    texts = [
-        f"{rank} {shortened(plain(obstacle.name), LABEL_LETTERS)}"
-        for rank, (_, obstacle) in enumerate(ranked, start=1)
-    ]
+    return placed_labels(
+        [
+            (
+                f"{rank} {shortened(plain(obstacle.name), LABEL_LETTERS)}",
+                obstacle.peak_azimuth_deg,
+                obstacle.peak_elevation_deg,
+            )
+            for rank, (_, obstacle) in enumerate(ranked, start=1)
+        ]
+    )
+
+
+def placed_labels(named: list[tuple[str, float, float]]) -> list[Label]:
+    """Labels for texts with azimuth and elevation of what they name; who finds no room stays without."""
+    texts = [text for text, _, _ in named]
     widths_deg = [LETTER_DEG * len(text) + 4.0 for text in texts]
     centres_deg = [
-        min(max(obstacle.peak_azimuth_deg, width / 2), 360.0 - width / 2)
-        for (_, obstacle), width in zip(ranked, widths_deg, strict=True)
+        min(max(azimuth_deg, width / 2), 360.0 - width / 2)
+        for (_, azimuth_deg, _), width in zip(named, widths_deg, strict=True)
     ]
     rows = label_rows(centres_deg, widths_deg, LABEL_ROWS)
     return [
-        Label(text=text, centre_deg=centre_deg, row=row, obstacle=obstacle)
-        for text, centre_deg, row, (_, obstacle) in zip(texts, centres_deg, rows, ranked, strict=True)
+        Label(text=text, centre_deg=centre_deg, row=row, azimuth_deg=azimuth_deg, peak_deg=peak_deg)
+        for (text, azimuth_deg, peak_deg), centre_deg, row in zip(named, centres_deg, rows, strict=True)
         if row is not None
     ]
 
 
-def _draw_labels(axes: Axes, labels: list[Label], top_deg: float) -> None:
+def draw_labels(axes: Axes, labels: list[Label], top_deg: float) -> None:
     """Names above the sky, each with a line down to its highest point."""
     box = {"boxstyle": "square,pad=0.15", "facecolor": "white", "edgecolor": "none"}
     for label in labels:
         height_deg = top_deg * (1.0 + ROW_IN / SKY_IN * (label.row + 0.8))
-        azimuth_deg, peak_deg = label.obstacle.peak_azimuth_deg, max(label.obstacle.peak_elevation_deg, 0.0)
         axes.plot(
-            [azimuth_deg, azimuth_deg],
-            [peak_deg, height_deg],
+            [label.azimuth_deg, label.azimuth_deg],
+            [max(label.peak_deg, 0.0), height_deg],
             color=INK,
             linewidth=0.4,
             zorder=6,
