@@ -22,6 +22,7 @@ from siteassess.report.over_time import over_time_section
 from siteassess.report.phrases import azimuth_range, number, plain
 from siteassess.report.pieces import Content, Section, Table
 from siteassess.report.setting import CAUTIONS, LIMITS, assumptions
+from siteassess.report.sources import disagreement_tables
 from siteassess.wording import listed
 
 if TYPE_CHECKING:
@@ -204,7 +205,7 @@ def _survey_section(assessment: Assessment) -> Section:
         key="survey",
         heading="The survey",
         sentences=tuple(sentences),
-        tables=(table,) if site.horizon else (),
+        tables=((table,) if site.horizon else ()) + disagreement_tables(assessment.skyline),
     )
 
 

@@ -10,6 +10,7 @@ from siteassess.report.explanation_results import causes_record, cures_record
 from siteassess.report.plain_json import as_json
 from siteassess.report.plain_json import rounded as _rounded
 from siteassess.report.setting import CAUTIONS, assumptions
+from siteassess.report.sources import disagreement_records
 from siteassess.report.time_results import time_record
 from siteassess.verdict.what_if import WHAT_IF_ELEVATIONS_DEG, Change
 
@@ -96,6 +97,7 @@ def assessment_record(assessment: Assessment) -> dict[str, Any]:
             }
             for survey in assessment.skyline.surveys
         ],
+        "disagreements": disagreement_records(assessment.skyline),
         "sectors": [
             {
                 "sector": sector.name,
