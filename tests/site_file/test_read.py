@@ -248,6 +248,16 @@ def test_records_of_python_users_are_checked_too() -> None:
         ("mast_height_m = 1.5", "", "mount.mast_height_m is missing; it must be a number, at least 0"),
         (
             "mast_height_m = 1.5",
+            "mast_height_m = 1.5\nmax_mast_height_m = 1.0",
+            "mount.max_mast_height_m is 1.0; it must be at least mast_height_m, which is 1.5",
+        ),
+        (
+            "mast_height_m = 1.5",
+            "mast_height_m = 1.5\nmax_mast_height_m = -1.0",
+            "mount.max_mast_height_m is -1.0; it must be at least 0",
+        ),
+        (
+            "mast_height_m = 1.5",
             "mast_heigth_m = 1.5",
             "mount.mast_heigth_m is an unknown key; did you mean mast_height_m?",
         ),
