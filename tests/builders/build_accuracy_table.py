@@ -36,9 +36,10 @@ from siteassess.link_budget.power import received_power
 from siteassess.link_budget.receive_chain import QUANTISATION_LOSS_DB, cascade, value_at_carrier
 from siteassess.link_budget.signals import read_signals
 from siteassess.link_budget.supply import supply_voltages_v
-from siteassess.orbits.constellations import nominal_orbits
+from siteassess.orbits.constellations import baseline_gps_orbits, nominal_orbits
 from siteassess.orbits.secular import secular_rates
 from siteassess.site_file.model import Part, Position
+from siteassess.sky_tracks.dilution import dilution_of_precision, not_exceeded, unit_vectors
 from siteassess.sky_tracks.frames import look_angles
 from siteassess.sky_tracks.refraction import apparent_elevation_deg
 from siteassess.sky_tracks.tracks import sky_tracks
@@ -89,6 +90,7 @@ def accuracy_table() -> str:
     rows = (
         *_direction_rows(),
         *_orbit_rows(),
+        *_dilution_rows(),
         *_power_rows(),
         *_air_rows(),
         *_obstacle_rows(),
@@ -233,6 +235,51 @@ def _visible_share(radius_m: float, mask_deg: float) -> float:
     mask_rad = math.radians(mask_deg)
     central_rad = math.acos(6_371e3 * math.cos(mask_rad) / radius_m) - mask_rad
     return (1.0 - math.cos(central_rad)) / 2.0
+
+
+def _dilution_rows() -> Iterator[Row]:
+    source = "GPS SPS Performance Standard 2020, appendix B and its hand derivation"
+    toward = unit_vectors([0.0, 0.0, 120.0, 240.0], [90.0, 30.0, 30.0, 30.0])
+    together = np.zeros(4, dtype=np.int64)
+    dops = dilution_of_precision(toward, together, together, epochs=1)
+    case = "zenith and three at 30 deg"
+    for name, ours, authority in (("PDOP", dops.position, 8 / 3), ("GDOP", dops.geometric, 3.0732)):
+        yield Row(
+            quantity=f"{name}, {case}",
+            ours=float(ours[0]),
+            authority=authority,
+            unit="",
+            decimals=4,
+            source=source,
+        )
+    published = {"half": 0.94, "90 %": 1.16, "95 %": 1.25, "98 %": 1.37}
+    reached = not_exceeded(_baseline_hdop(), (0.5, 0.9, 0.95, 0.98))
+    for (share, authority), hdop in zip(published.items(), reached, strict=True):
+        yield Row(
+            quantity=f"HDOP of 24 GPS slots above 5 deg, not exceeded for {share} of globe and day",
+            ours=hdop,
+            authority=authority,
+            unit="",
+            decimals=2,
+            source=source,
+        )
+
+
+def _baseline_hdop(places: int = 240) -> FloatArray:
+    """HDOP of the baseline slots over a day at places that stand for equal areas."""
+    orbits, hdop = baseline_gps_orbits(START), []
+    for index in range(places):
+        position = Position(
+            latitude_deg=math.degrees(math.asin((2 * index + 1) / places - 1)),
+            longitude_deg=index * 180.0 * (3.0 - math.sqrt(5.0)) % 360.0,
+            height_m=0.0,
+        )
+        tracks = sky_tracks(orbits, position, days=1.0, step_s=300.0)
+        satellite, epoch = np.nonzero(tracks.elevation_deg >= 5.0)
+        toward = unit_vectors(tracks.azimuth_deg[satellite, epoch], tracks.elevation_deg[satellite, epoch])
+        epochs = len(tracks.time_s)
+        hdop.append(dilution_of_precision(toward, epoch, np.zeros_like(epoch), epochs=epochs).horizontal)
+    return np.concatenate(hdop)
 
 
 def _power_rows() -> Iterator[Row]:
