@@ -46,21 +46,15 @@ def main() -> None:
                 returned_alone(lost)
                 returned_in_order(lost, range(len(found.skyline.obstacles)))
 
-        form = angular_form(found.site, found.pattern, found.tracks, found.budget)
+        inputs = found.site, found.pattern, found.tracks, found.budget
+        form = angular_form(*inputs)
+
+        def by_height(found=found, form=form) -> None:
+            heights(found.site, found.skyline, form, found.verdict, lambda height_m: found.verdict)
+
         plain = best_seconds(lambda site=site: json_text(assess_file(site)), repeats)
-        parts = [
-            best_seconds(returns, repeats),
-            best_seconds(
-                lambda found=found: angular_form(found.site, found.pattern, found.tracks, found.budget),
-                repeats,
-            ),
-            best_seconds(
-                lambda found=found, form=form: heights(
-                    found.site, found.skyline, form, found.verdict, lambda height_m: found.verdict
-                ),
-                repeats,
-            ),
-        ]
+        works = (returns, lambda inputs=inputs: angular_form(*inputs), by_height)
+        parts = [best_seconds(work, repeats) for work in works]
         everything = best_seconds(lambda found=found: explained(found), repeats)
         figures = "".join(f"{seconds:>9.3f}" for seconds in (plain, *parts))
         print(f"{name:<13}{figures}{sum(parts) / plain:>8.2f}{AIM:>6.1f}{everything:>9.3f}")

@@ -64,7 +64,7 @@ def test_json_holds_the_same(told: Assessment) -> None:
         assert last[one.signal] == pytest.approx(one.lost_share, abs=1e-6)
     mast = record["cures"]["mast"]
     assert len(mast["steps"]) == 21
-    assert mast["keep_angles"] == [name for name in told.explanation.heights.keep_angles]
+    assert mast["keep_angles"] == list(told.explanation.heights.keep_angles)
     json.dumps(record, allow_nan=False)
 
 
@@ -81,23 +81,22 @@ def test_height_that_passes_is_named_with_its_price() -> None:
     assert "keep their angles at every height: general skyline." in sentences
 
 
+TALLEST = ("mast_height_m = 1.5", "mast_height_m = 1.5\nmax_mast_height_m = 1.5")
+
+
 @pytest.mark.parametrize(
-    ("replacement", "sentence"),
+    ("replacements", "horizon", "sentence"),
     [
-        (
-            ("mast_height_m = 1.5", "mast_height_m = 1.5\nmax_mast_height_m = 1.5"),
-            "The mast is as tall as the site file allows.",
-        ),
-        (("", ""), "What a taller mast brings is not known: no obstacle carries a distance."),
+        ([TALLEST], "20,15,30", "The mast is as tall as the site file allows."),
+        ([], "20,15,", "What a taller mast brings is not known: no obstacle carries a distance."),
     ],
 )
 def test_where_no_height_is_looked_at_the_reason_is_given(
-    write_site: Callable[..., Path], replacement: tuple[str, str], sentence: str
+    write_site: Callable[..., Path], replacements: list[tuple[str, str]], horizon: str, sentence: str
 ) -> None:
     extra = '\n[sky]\nsystems = ["GPS"]\ndays = 1\nstep_s = 600\n'
-    told = explained(
-        assess(read_site(write_site(replacement, extra=extra) if replacement[0] else write_site(extra=extra)))
-    )
+    rows = f"azimuth_deg,elevation_deg,distance_m\n{horizon}\n"
+    told = explained(assess(read_site(write_site(*replacements, horizon=rows, extra=extra))))
     assert sentence in " ".join(section(told, "cures").sentences)
 
 

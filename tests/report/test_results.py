@@ -13,7 +13,8 @@ from siteassess.report.setting import CAUTIONS
 KEYS = {
     "": {
         "format", "tool_version", "site", "verdict", "findings", "sky", "obstacles", "signals", "satellites",
-        "noise", "what_if", "assumptions", "cautions", "surveys", "sectors", "counts", "time",
+        "noise", "what_if", "assumptions", "cautions", "surveys", "sectors", "counts", "time", "causes",
+        "cures",
     },
     "site": {"name", "latitude_deg", "longitude_deg", "height_m"},
     "findings": {

@@ -77,7 +77,7 @@ def test_defaults(tmp_path: Path) -> None:
     assert site.position == Position(latitude_deg=57.14, longitude_deg=-2.09, height_m=0.0)
     assert site.place.height_system is None
     assert site.place.surveyed_by is None
-    assert (site.mount.phase_centre_above_arp_m, site.mount.heading_deg) == (0.0, 0.0)
+    assert (site.mount.max_mast_height_m, phase_centre_above_arp_m, site.mount.heading_deg) == (0.0, 0.0)
     assert (site.mount.tilt_deg, site.mount.tilt_azimuth_deg) == (0.0, 0.0)
     assert site.mount.height_above_roof_m is None
     assert site.mount.roof_surface is None
@@ -110,6 +110,7 @@ geoid_height_m = 49.5
 surveyed_by = "Crew 2"
 [mount]
 mast_height_m = 2
+max_mast_height_m = 4
 phase_centre_above_arp_m = 0.05
 heading_deg = 360
 tilt_deg = 1.5
@@ -161,6 +162,7 @@ min_height_above_roof_m = 0.5
     assert site.place.surveyed_by == "Crew 2"
     assert site.mount.model_dump() == {
         "mast_height_m": 2.0,
+        "max_mast_height_m": 4.0,
         "phase_centre_above_arp_m": 0.05,
         "heading_deg": 360.0,
         "tilt_deg": 1.5,
