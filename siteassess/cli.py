@@ -16,6 +16,7 @@ import click
 from siteassess.errors import SiteAssessError
 
 if TYPE_CHECKING:
+    from siteassess.report.sheet import Paper
     from siteassess.site_file.model import Site
 
 __all__ = ["main"]
@@ -204,6 +205,32 @@ def horizon(site: Path, out: Path | None, as_json: bool, quiet: bool) -> None:
             click.echo(line)
     if folder is not None and not quiet:
         _tell(f"Horizon written to {folder}")
+
+
+@main.command()
+@click.option(
+    "--out", type=click.Path(path_type=Path, dir_okay=False), metavar="FILE.pdf", default="survey-sheet.pdf",
+    show_default=True, help="Where the form goes.",
+)  # fmt: skip
+@click.option(
+    "--paper", type=click.Choice(["a4", "letter"]), default="a4", show_default=True, help="Size of the paper."
+)
+def sheet(out: Path, paper: "Paper") -> None:
+    """Write a form to survey a horizon with, for a clipboard.
+
+    It asks for what the site file and horizon.csv need, by their keys and columns, and reminds of the rules.
+
+    \b
+    Example:
+      siteassess sheet
+      siteassess sheet --paper letter --out forms/roof.pdf
+    """
+    if out.suffix.lower() != ".pdf":
+        raise click.BadParameter("the form is a PDF: its name must end in .pdf", param_hint="--out")
+    from siteassess.report.sheet import write_sheet
+
+    write_sheet(out, paper)
+    _tell(f"Form written to {out}")
 
 
 @main.command()
