@@ -19,7 +19,13 @@ from siteassess.link_budget.diffraction import (
     knife_edge_loss_db,
     strip_loss_db,
 )
-from siteassess.link_budget.edges import highest_within_reach_deg, lower_edges, smallest_detour_m, upper_edges
+from siteassess.link_budget.edges import (
+    Edges,
+    highest_within_reach_deg,
+    lower_edges,
+    smallest_detour_m,
+    upper_edges,
+)
 from siteassess.link_budget.foliage import leaves_loss_db
 
 __all__ = ["is_narrow", "is_standing_wall", "obstacle_loss_db", "skyline_loss_db"]
@@ -149,21 +155,24 @@ def _solid_loss_db(
     wavelength_m = SPEED_OF_LIGHT_M_PER_S / carrier_hz
     narrow = is_narrow(obstacle, wavelength_m)
     reach_nu = STRIP_REACH_NU if narrow else -LOSS_FREE_NU
-    loss_of = _strip_loss_db if narrow else _edge_loss_db
+    edges = upper_edges(obstacle)
     # nu = 2 sqrt(detour / wavelength), [P.526] 4.1
-    reach_deg = highest_within_reach_deg(upper_edges(obstacle), wavelength_m * (reach_nu / 2.0) ** 2)
+    reach_deg = highest_within_reach_deg(edges, wavelength_m * (reach_nu / 2.0) ** 2)
     low = np.flatnonzero(elevation_deg < np.max(reach_deg))
     degree = wrap_azimuth_deg(azimuth_deg[low]).astype(np.int64)
     near = low[elevation_deg[low] < reach_deg[degree]]
-    return near, loss_of(obstacle, azimuth_deg[near], elevation_deg[near], wavelength_m)
+    azimuth_deg, elevation_deg = azimuth_deg[near], elevation_deg[near]
+    if narrow:
+        return near, _strip_loss_db(obstacle, azimuth_deg, elevation_deg, wavelength_m)
+    return near, _edge_loss_db(obstacle, edges, azimuth_deg, elevation_deg, wavelength_m)
 
 
 def _edge_loss_db(
-    obstacle: Obstacle, azimuth_deg: FloatArray, elevation_deg: FloatArray, wavelength_m: float
+    obstacle: Obstacle, edges: Edges, azimuth_deg: FloatArray, elevation_deg: FloatArray, wavelength_m: float
 ) -> FloatArray:
     """Knife-edge loss over the nearest edge of an obstacle."""
     zone_m = wavelength_m / 2.0  # detour over the rim of the first Fresnel zone
-    detour_m = smallest_detour_m(upper_edges(obstacle), azimuth_deg, elevation_deg, zone_m)
+    detour_m = smallest_detour_m(edges, azimuth_deg, elevation_deg, zone_m)
     if obstacle.hangs_free:
         below_m = smallest_detour_m(lower_edges(obstacle), azimuth_deg, elevation_deg, zone_m)
         detour_m = np.minimum(detour_m, below_m)

@@ -77,7 +77,7 @@ def test_defaults(tmp_path: Path) -> None:
     assert site.position == Position(latitude_deg=57.14, longitude_deg=-2.09, height_m=0.0)
     assert site.place.height_system is None
     assert site.place.surveyed_by is None
-    assert (site.mount.max_mast_height_m, phase_centre_above_arp_m, site.mount.heading_deg) == (0.0, 0.0)
+    assert (site.mount.phase_centre_above_arp_m, site.mount.heading_deg) == (0.0, 0.0)
     assert (site.mount.tilt_deg, site.mount.tilt_azimuth_deg) == (0.0, 0.0)
     assert site.mount.height_above_roof_m is None
     assert site.mount.roof_surface is None
@@ -572,7 +572,7 @@ def test_mistakes_of_every_kind_are_gathered(tmp_path: Path) -> None:
     text = text.replace("gain_db = 30", "gain_db = nan").replace('part = "receiver"', 'part = "rack"')
     text = text.replace('"GPS", ', '"GSP", ')
     keys = (
-        "mast_height_m, phase_centre_above_arp_m, heading_deg, tilt_deg, tilt_azimuth_deg,"
+        "mast_height_m, max_mast_height_m, phase_centre_above_arp_m, heading_deg, tilt_deg, tilt_azimuth_deg,"
         " height_above_roof_m"
     )
     assert refusal(tmp_path, text) == (
