@@ -125,9 +125,9 @@ COLUMNS = (
 )
 
 RULES = (
-    "Far skyline: no obstacle name. Azimuths ascend from 0 to 360; a row wherever the slope changes, and no gap "
-    "wider than 30 degrees.",
-    "Near things: one name for each, a row for each corner of its upper edge, with the distance on all its rows.",
+    "Far skyline: no obstacle name. Azimuths ascend from 0 to 360; a row wherever the slope changes, and no "
+    "gap wider than 30 degrees.",
+    "Near things: one name for each, a row for each corner of its upper edge, a distance on all its rows.",
     "Two rows at one azimuth are a vertical edge.",
     "A pole or rod is one row, with distance and width.",
     "What hangs free (bridge, jib, canopy) has an underside on all its rows; the sky below it stays open.",

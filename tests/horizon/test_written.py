@@ -172,3 +172,100 @@ def test_any_skyline_is_read_as_it_was_written(
     assert_same(before, after)
     again = horizon_csv(after)
     assert_same(after, skyline_of(read(tmp_path / "horizon.csv", again, complete=True)))
+
+
+def roundtrip(before: Skyline, tmp_path: Path) -> Skyline:
+    return skyline_of(read(tmp_path / "horizon.csv", horizon_csv(before), complete=True))
+
+
+def test_outlines_and_terrain_survive_too(tmp_path: Path) -> None:
+    pytest.importorskip("rasterio")
+    from siteassess.horizon.read import read_site_skyline
+
+    _, before = read_site_skyline("example_sites/ridge_mast")
+    after = roundtrip(before, tmp_path)
+    assert_same(before, after)
+    assert [one.name for one in after.obstacles] == [
+        "general skyline",
+        "upper station",
+        "machine room",
+        "relay pole",
+        "upper station (2)",
+        "store",
+        "spruces",
+        "terrain",
+    ]
+
+
+def test_gaps_in_terrain_stay_open(tmp_path: Path, obstacle: MakeObstacle, skyline: MakeSkyline) -> None:
+    hills = obstacle(
+        [10, 40, 40, 90, 90, 200],
+        [3, 12, -90, -90, 8, 2],
+        name="terrain",
+        distance_m=[900.0, 5000.0, np.nan, np.nan, 700.0, 8000.0],
+    )
+    before = skyline(hills, gaps_deg=[(0, 10), (40, 90), (200, 360)])
+    assert_same_shares(before, roundtrip(before, tmp_path))
+    np.testing.assert_allclose(roundtrip(before, tmp_path).unsurveyed_deg, before.unsurveyed_deg, atol=1e-5)
+
+
+def test_a_canopy_over_the_antenna_keeps_its_sky(
+    tmp_path: Path, obstacle: MakeObstacle, skyline: MakeSkyline
+) -> None:
+    # By hand: 4 m above the antenna, square of 6 m; its edge toward east stands 3 m away.
+    edge_deg, corner_deg = np.rad2deg(np.arctan([4 / 3, 4 / (3 * np.sqrt(2))]))
+    canopy = obstacle(
+        [45, 135, 225, 315, 405],
+        [89.999999] * 5,
+        name="canopy",
+        underside_deg=[corner_deg] * 5,
+        distance_m=[np.hypot(3, 4)] * 5,
+        straight_in_space=True,
+    )
+    before = skyline(canopy)
+    after = roundtrip(before, tmp_path)
+    assert float(underside_elevation_deg(after.obstacles[0], 90.0)) == pytest.approx(
+        edge_deg, abs=OUTLINE_DEG
+    )
+    assert_same_shares(before, after)
+
+
+def test_an_open_sky_that_was_looked_at_is_a_file_too(tmp_path: Path, skyline: MakeSkyline) -> None:
+    after = roundtrip(skyline(), tmp_path)
+    assert len(after.unsurveyed_deg) == 0
+    assert sky_shares(after, 0.0).blocked_share_of_hemisphere == 0.0
+
+
+def test_a_sky_that_nobody_looked_at_stays_so(tmp_path: Path, skyline: MakeSkyline) -> None:
+    after = roundtrip(skyline(gaps_deg=[(0, 360)]), tmp_path)
+    assert after.unsurveyed_deg.tolist() == [[0.0, 360.0]]
+    assert after.obstacles == ()
+
+
+def test_names_are_told_apart_and_are_no_formulas(
+    tmp_path: Path, obstacle: MakeObstacle, skyline: MakeSkyline
+) -> None:
+    names = ["hall", "hall", "=SUM(A1)", "west\nwing, roof", "", "general skyline"]
+    things = [
+        obstacle([10 * n, 10 * n + 5], [5, 5], name=name, straight_in_space=True, distance_m=[30.0, 30.0])
+        for n, name in enumerate(names)
+    ]
+    after = roundtrip(skyline(*things), tmp_path)
+    assert [one.name for one in after.obstacles] == [
+        "hall",
+        "hall (2)",
+        "'=SUM(A1)",
+        "west wing, roof",
+        "obstacle",
+        "general skyline (2)",
+    ]
+
+
+def test_the_file_says_how_it_is_to_be_used() -> None:
+    empty = Skyline(obstacles=(), outline=upper_envelope(()), unsurveyed_deg=np.empty((0, 2)))
+    assert horizon_csv(empty) == (
+        "# The skyline as seen from the antenna's phase centre, azimuths from true north.\n"
+        '# Its block in a site file: source = "survey", complete = true, and no key of the instrument.\n'
+        "azimuth_deg,elevation_deg,slant_distance_m,obstacle,cover,leaf,depth_m,underside_deg,width_m\n"
+        "0,-5,,,,,,,\n"
+    )
