@@ -7,7 +7,7 @@ import numpy as np
 from siteassess.horizon.skyline import Obstacle, Skyline
 from siteassess.horizon.view import edge_distance_m, edge_elevation_deg
 
-__all__ = ["NearReflectors", "near_reflectors"]
+__all__ = ["NearReflectors", "along_edge_deg", "near_reflectors"]
 
 STEP_DEG = 1.0
 
@@ -52,7 +52,7 @@ def near_reflectors(skyline: Skyline, *, nearer_than_m: float, above_deg: float)
     for obstacle in skyline.obstacles:
         if obstacle.cover != "solid":
             continue
-        azimuth_deg = _along(obstacle)
+        azimuth_deg = along_edge_deg(obstacle)
         elevation_deg = edge_elevation_deg(obstacle, azimuth_deg)
         distance_m = edge_distance_m(obstacle, azimuth_deg) * np.cos(np.deg2rad(elevation_deg))
         if np.any(np.isnan(distance_m) & (elevation_deg > above_deg)):
@@ -63,6 +63,7 @@ def near_reflectors(skyline: Skyline, *, nearer_than_m: float, above_deg: float)
     return NearReflectors(highest_deg=highest_deg, name=name, unknown=tuple(unknown))
 
 
-def _along(obstacle: Obstacle) -> np.ndarray[tuple[int], np.dtype[np.float64]]:
+def along_edge_deg(obstacle: Obstacle) -> np.ndarray[tuple[int], np.dtype[np.float64]]:
+    """Azimuths at which an edge is looked up: its points, and every degree between."""
     first, last = obstacle.azimuth_deg[0], obstacle.azimuth_deg[-1]
     return np.concatenate([obstacle.azimuth_deg, np.arange(first, last, STEP_DEG)])

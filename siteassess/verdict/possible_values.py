@@ -1,0 +1,157 @@
+"""Shares and elevations when the survey and the levels are off: one row a draw."""
+
+from collections.abc import Sequence
+
+import numpy as np
+from numpy.typing import NDArray
+
+from siteassess.verdict.draws import Draws, some
+from siteassess.verdict.movers import Mover, at_columns_deg, carrier_key, moved_deg, moved_m
+from siteassess.verdict.peaks import Peaks
+from siteassess.verdict.readings import taken_places
+from siteassess.verdict.sky_density import RING_DEG, SkyDensity, below_share, strong_share
+from siteassess.verdict.taken_sky import COLUMN_DEG, COLUMNS, TakenSky
+
+__all__ = ["hidden_shares", "peak_deg", "pieces", "top_deg", "usable_share"]
+
+FloatArray = NDArray[np.float64]
+IndexArray = NDArray[np.int64]
+
+DRAWS_AT_ONCE = 128  # so that a table of draws by columns stays in the processor's cache
+OPEN_SHARE = 1e-9
+
+
+def top_deg(movers: Sequence[Mover], carrier_hz: float | None, floor_deg: float, draws: Draws) -> FloatArray:
+    """Elevation below which all is taken from a carrier, or hidden, shape (draw, column)."""
+    highest_deg = np.full((len(draws), COLUMNS), floor_deg)
+    for mover in movers:
+        own_deg = at_columns_deg(mover, _taken(mover, carrier_hz).top_deg, draws, floor_deg)
+        np.maximum(highest_deg, own_deg, out=highest_deg)
+    return highest_deg
+
+
+def _taken(mover: Mover, carrier_hz: float | None) -> TakenSky:
+    return mover.solid if carrier_hz is None else mover.taken[carrier_key(carrier_hz)]
+
+
+def usable_share(
+    movers: Sequence[Mover],
+    density: SkyDensity,
+    carrier_hz: float,
+    gain_db: FloatArray,
+    floor_deg: float,
+    draws: Draws,
+) -> FloatArray:
+    """Usable share of one signal's satellite-time in each draw.
+
+    Parameters
+    ----------
+    movers : sequence of Mover
+        The skyline, part by part.
+    density : SkyDensity
+        Where the signal's satellites stand.
+    carrier_hz : float
+        Its carrier [Hz].
+    gain_db : array, shape (draw,)
+        How much stronger it comes [dB].
+    floor_deg : float
+        Elevation below which an edge takes nothing in any draw [deg].
+    draws : Draws
+        What is off.
+    """
+    strong = strong_share(density, gain_db)
+    level, below = below_share(density, gain_db)
+    rings = below.shape[2]
+    flat = below.ravel()
+
+    def below_at(row: IndexArray, column: IndexArray, elevation_deg: FloatArray) -> FloatArray:
+        ring = np.clip((elevation_deg - density.first_deg) / RING_DEG, 0.0, rings - 1.001)
+        whole = ring.astype(np.int64)
+        place = (row * COLUMNS + column) * rings + whole
+        low = flat[place]
+        return np.asarray(low + (flat[place + 1] - low) * (ring - whole))
+
+    columns = np.arange(COLUMNS)
+    lost = np.empty(len(draws))
+    for rows in _chunks(len(draws)):
+        part, row = some(draws, rows), level[rows, None]
+        lost[rows] = below_at(row, columns, top_deg(movers, carrier_hz, floor_deg, part)).sum(axis=1)
+        for mover in movers:
+            for weight, column, low_deg, high_deg in pieces(mover, carrier_hz, part):
+                piece = below_at(row, column, high_deg) - below_at(row, column, low_deg)
+                lost[rows] += (weight * piece).sum(axis=1)
+    return np.asarray(strong - lost)
+
+
+def pieces(
+    mover: Mover, carrier_hz: float | None, draws: Draws
+) -> list[tuple[FloatArray, IndexArray, FloatArray, FloatArray]]:
+    """Pieces of sky taken over open sky, each shared between two columns: weight, column, low, high.
+
+    All have shape (draw, piece).
+    """
+    taken = _taken(mover, carrier_hz)
+    if not len(taken.column):
+        return []
+    shape = len(draws), len(taken.column)
+    if mover.survey is None:
+        column = np.broadcast_to(taken.column, shape)
+        low_deg, high_deg = np.broadcast_to(taken.low_deg, shape), np.broadcast_to(taken.high_deg, shape)
+        return [(np.ones(shape), column, low_deg, high_deg)]
+    up_deg = moved_deg(mover, draws, taken_places(mover.nodes, taken.column))
+    turn = draws.azimuth_deg[:, mover.survey, None] / COLUMN_DEG
+    whole = np.floor(turn)
+    part = np.broadcast_to(turn - whole, shape)
+    column = (taken.column + whole.astype(np.int64)) % COLUMNS
+    low_deg, high_deg = taken.low_deg + up_deg, taken.high_deg + up_deg
+    return [
+        (1.0 - part, column, low_deg, high_deg),
+        (part, (column + 1) % COLUMNS, low_deg, high_deg),
+    ]
+
+
+def hidden_shares(
+    movers: Sequence[Mover], mask_deg: float, floor_deg: float, draws: Draws
+) -> tuple[FloatArray, FloatArray]:
+    """Hidden sky above the mask, and the largest stretch of it, as shares of the hemisphere, in each draw."""
+    from_sine = np.sin(np.deg2rad(mask_deg))
+
+    def above_mask(elevation_deg: FloatArray) -> FloatArray:
+        return np.asarray(np.maximum(np.sin(np.deg2rad(elevation_deg)) - from_sine, 0.0) / COLUMNS)
+
+    blocked, block = np.empty((2, len(draws)))
+    for rows in _chunks(len(draws)):
+        part = some(draws, rows)
+        hidden = above_mask(top_deg(movers, None, floor_deg, part))
+        for mover in movers:
+            for weight, column, low_deg, high_deg in pieces(mover, None, part):
+                piece = weight * (above_mask(high_deg) - above_mask(low_deg))
+                place = column + COLUMNS * np.arange(len(part))[:, None]
+                added = np.bincount(place.ravel(), weights=piece.ravel(), minlength=hidden.size)
+                hidden = hidden + added.reshape(hidden.shape)
+        blocked[rows] = hidden.sum(axis=1)
+        block[rows] = _largest_run(hidden)
+    return blocked, block
+
+
+def _largest_run(hidden: FloatArray) -> FloatArray:
+    """Largest sum of neighbouring columns that no open one interrupts, round the circle, shape (draw,)."""
+    twice = np.concatenate([hidden, hidden], axis=1)
+    summed = np.cumsum(twice, axis=1)
+    before = np.maximum.accumulate(np.where(twice <= OPEN_SHARE, summed, 0.0), axis=1)
+    return np.asarray(np.minimum((summed - before).max(axis=1), hidden.sum(axis=1)))
+
+
+def peak_deg(points: Sequence[tuple[Mover, Peaks]], draws: Draws) -> FloatArray:
+    """Highest of some points that count in each draw; 0 where none of them is above the horizon."""
+    highest_deg = np.zeros(len(draws))
+    for mover, peaks in points:
+        if len(peaks.elevation_deg):
+            own_deg = peaks.elevation_deg + moved_deg(mover, draws, peaks.nodes)
+            counts = moved_m(mover, draws, peaks.nodes) < peaks.short_m
+            np.maximum(highest_deg, np.where(counts, own_deg, 0.0).max(axis=1), out=highest_deg)
+    return highest_deg
+
+
+def _chunks(count: int) -> list[slice]:
+    return [slice(start, start + DRAWS_AT_ONCE) for start in range(0, count, DRAWS_AT_ONCE)]
