@@ -2,6 +2,7 @@
 
 from dataclasses import dataclass, replace
 from os import PathLike
+from typing import TYPE_CHECKING
 
 from siteassess.antenna.pattern import GainPattern
 from siteassess.antenna.read import read_pattern
@@ -15,11 +16,13 @@ from siteassess.orbits.constellations import nominal_orbits
 from siteassess.site_file.model import Part, Site
 from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
-from siteassess.verdict.explanation import Explanation, explanation
-from siteassess.verdict.heights import at_height
 from siteassess.verdict.judge import judge
+from siteassess.verdict.uncertainty import Uncertainty, uncertainty
 from siteassess.verdict.verdict import Verdict
 from siteassess.verdict.what_if import Change, what_if
+
+if TYPE_CHECKING:
+    from siteassess.verdict.explanation import Explanation
 
 __all__ = ["Assessment", "assess", "assess_file", "explained"]
 
@@ -46,6 +49,8 @@ class Assessment:
         What another cable, preamplifier or antenna would change.
     explanation : Explanation or None
         Causes and cures, from :func:`explained`.
+    uncertainty : Uncertainty or None
+        How sure the verdict is, from :func:`explained`.
     """
 
     site: Site
@@ -55,7 +60,8 @@ class Assessment:
     budget: LinkBudget
     verdict: Verdict
     what_if: tuple[Change, ...]
-    explanation: Explanation | None = None
+    explanation: "Explanation | None" = None
+    uncertainty: Uncertainty | None = None
 
 
 def assess(site: Site) -> Assessment:
@@ -93,7 +99,7 @@ def assess(site: Site) -> Assessment:
 
 
 def explained(assessment: Assessment) -> Assessment:
-    """The same assessment with causes and cures.
+    """The same assessment with causes, cures, and how sure the verdict is.
 
     What each obstacle returns by going stands in `verdict.obstacles`, all else in `explanation`. Where a taller
     mast turns a fail into a pass, finding its height takes some more whole assessments.
@@ -103,6 +109,10 @@ def explained(assessment: Assessment) -> Assessment:
     assessment : Assessment
         What :func:`assess` returned.
     """
+    # Loaded here, because most runs ask for the verdict alone.
+    from siteassess.verdict.explanation import explanation
+    from siteassess.verdict.heights import at_height
+
     site, pattern, tracks = assessment.site, assessment.pattern, assessment.tracks
 
     def assessed_at(mast_height_m: float) -> Verdict:
@@ -114,7 +124,8 @@ def explained(assessment: Assessment) -> Assessment:
     verdict, found = explanation(
         site, assessment.skyline, pattern, tracks, assessment.budget, assessment.verdict, assessed_at
     )
-    return replace(assessment, verdict=verdict, explanation=found)
+    sure = uncertainty(site, assessment.skyline, tracks, assessment.budget, verdict)
+    return replace(assessment, verdict=verdict, explanation=found, uncertainty=sure)
 
 
 def _judged(

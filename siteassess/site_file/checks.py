@@ -19,6 +19,7 @@ from siteassess.site_file.model import (
     Place,
     Record,
     Requirements,
+    Site,
     SkyModel,
     purposes_dbhz,
 )
@@ -63,6 +64,20 @@ class Sections:
             horizon=_valid_blocks(HorizonSource, raw.get("horizon")),
             sky=_valid(SkyModel, raw.get("sky", {})),
             require=_valid(Requirements, raw.get("require")),
+        )
+
+    @classmethod
+    def of_site(cls, site: Site) -> "Sections":
+        """Sections of a site whose single keys are right."""
+        return cls(
+            place=site.place,
+            mount=site.mount,
+            antenna=site.antenna,
+            chain=site.chain,
+            has_own_parts=site.parts is not None,
+            horizon=site.horizon,
+            sky=site.sky,
+            require=site.require,
         )
 
 

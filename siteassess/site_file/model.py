@@ -95,6 +95,7 @@ class Record(BaseModel):
         extra="forbid",
         allow_inf_nan=False,
         str_strip_whitespace=True,
+        defer_build=True,  # a right site file needs the validator of `Site` alone
     )
 
 

@@ -3,6 +3,7 @@
 import os
 import re
 import tomllib
+from collections.abc import Mapping
 from datetime import UTC
 from pathlib import Path
 from typing import Any
@@ -64,20 +65,24 @@ def read_site(path: str | os.PathLike[str]) -> Site:
         path = path / "site.toml"
     file = path.name
     raw, asked_by = with_criteria_set(_parsed(read_user_text(path), file))
-    sections = Sections.of(raw)
-    position, mistakes = _surveyed(sections.place, file)
+    site, mistakes = _validated(raw, file)
+    sections = Sections.of(raw) if site is None else Sections.of_site(site)
+    position, place_mistakes = _surveyed(sections.place, file)
+    mistakes += place_mistakes
     mistakes += cross_mistakes(sections, file)
     mistakes += bearing_mistakes(sections.horizon, sections.place, position, file)
-    try:
-        site = Site.model_validate(raw)
-    except ValidationError as error:
-        refused = (*refusals(error, file), *mistakes)
-        raise RefusedSiteError(*refused, legible=legible_site(raw, path)) from error
-    if mistakes or position is None:
+    if mistakes or site is None or position is None:
         raise RefusedSiteError(*mistakes, legible=legible_site(raw, path))
     site = site.model_copy(update={"sky": _completed(site.sky)})
     site._path, site._position, site.require._asked_by = path, position, asked_by
     return site
+
+
+def _validated(raw: Mapping[str, Any], file: str) -> tuple[Site | None, list[Mistake]]:
+    try:
+        return Site.model_validate(raw), []
+    except ValidationError as error:
+        return None, list(refusals(error, file))
 
 
 def _surveyed(place: Place | None, file: str) -> tuple[Position | None, list[Mistake]]:
