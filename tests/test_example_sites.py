@@ -1,8 +1,10 @@
-"""The invented harbour: one spot passes, one fails on a silo and a crane, one is close to the limit."""
+"""The invented sites: a spot that passes, one that fails, one close to the limit, one with three sources."""
 
 import json
+import runpy
 from pathlib import Path
 
+import numpy as np
 import pytest
 
 from siteassess import assess, read_site
@@ -52,3 +54,18 @@ def test_sky_stays_open_below_the_crane_jib() -> None:
     below, inside, above = hiding_obstacle(skyline, [250.0, 250.0, 250.0], [15.0, 32.0, 45.0]).tolist()
     assert skyline.obstacles[inside].name == "crane jib"
     assert (below, above) == (-1, -1)
+
+
+def test_the_ground_below_the_ridge_is_what_its_builder_says() -> None:
+    """The raster holds the invented landscape to half a decimetre, and stays small."""
+    rasterio = pytest.importorskip("rasterio")
+    builder = runpy.run_path(str(ROOT / "tests" / "builders" / "build_ridge_terrain.py"))
+    path = ROOT / builder["RASTER"]
+    assert path.stat().st_size < 60_000
+    with rasterio.open(path) as raster:
+        rows, columns = np.mgrid[: raster.height, : raster.width]
+        cells = raster.transform
+        easting_m, northing_m = cells.c + cells.a * (columns + 0.5), cells.f + cells.e * (rows + 0.5)
+        height_m = raster.read(1) * raster.scales[0] + raster.offsets[0]
+    ground_m = builder["ground_m"](easting_m - builder["EASTING_M"], northing_m - builder["NORTHING_M"])
+    np.testing.assert_allclose(height_m, ground_m, atol=0.5 * builder["STEP_M"] + 1e-6)

@@ -19,6 +19,7 @@ from siteassess.horizon.survey import Survey, read_survey
 from siteassess.horizon.terrain import Terrain, read_terrain
 from siteassess.site_file.model import HorizonSource, Site
 from siteassess.site_file.read import RefusedSiteError, read_site
+from siteassess.tables import packaged_rows
 from siteassess.wording import listed
 
 __all__ = ["read_site_skyline", "read_skyline"]
@@ -82,7 +83,9 @@ def read_site_skyline(path: str | PathLike[str]) -> tuple[Site, Skyline]:
 
 
 def _held_against_others(block: HorizonSource, found: Survey | Outlines | Terrain) -> Source:
-    azimuth_error_deg = block.azimuth_error_deg
+    azimuth_error_deg, elevation_error_deg = (
+        _stated(block, key) for key in ("azimuth_error_deg", "elevation_error_deg")
+    )
     if isinstance(found, Survey) and found.facts.uncertainty_deg:
         stated_deg = SURVEY_ERRORS_DEG[0] if azimuth_error_deg is None else azimuth_error_deg
         azimuth_error_deg = hypot(stated_deg, found.facts.uncertainty_deg)
@@ -93,8 +96,17 @@ def _held_against_others(block: HorizonSource, found: Survey | Outlines | Terrai
         surveyed_deg=found.surveyed_deg,
         complete=block.complete,
         azimuth_error_deg=azimuth_error_deg,
-        elevation_error_deg=block.elevation_error_deg,
+        elevation_error_deg=elevation_error_deg,
     )
+
+
+def _stated(block: HorizonSource, key: str) -> float | None:
+    """An error of a survey: its own, or else that of its instrument's class."""
+    own: float | None = getattr(block, key)
+    if own is not None or block.instrument is None:
+        return own
+    classes = {row["instrument"]: row for row in packaged_rows("verdict/instrument_classes.csv")}
+    return float(classes[block.instrument][key])
 
 
 def _source(site: Site, index: int, years: float) -> Survey | Outlines | Terrain:

@@ -2,6 +2,8 @@
 
 from dataclasses import dataclass
 
+from siteassess.tables import packaged_rows
+
 __all__ = ["CLASSES", "COLUMNS", "GROUPS", "PHOTOGRAPHS", "RULES", "Column", "Field", "Group"]
 
 
@@ -49,12 +51,11 @@ class Column:
     width_mm: float = 0.0  # 0: what the others leave
 
 
-# Own defaults of one standard deviation, for those who know no better figure.
-CLASSES = (
-    ("compass and clinometer, by hand", "1.0", "0.5"),
-    ("hand instrument with digital display", "0.5", "0.2"),
-    ("theodolite or total station", "0.05", "0.05"),
-)
+# What the errors of a class are: azimuth, elevation, distance.
+CLASSES = {
+    row["instrument"]: (row["azimuth_error_deg"], row["elevation_error_deg"], row["distance_error_m"])
+    for row in packaged_rows("verdict/instrument_classes.csv")
+}
 
 GROUPS = (
     Group(
@@ -74,13 +75,16 @@ GROUPS = (
         heading="Instrument",
         fields=(
             Field(label="Instrument and its number", wide=True),
+            Field(label="Class", key="horizon.instrument", choices=tuple(CLASSES), wide=True),
             Field(label="Error of azimuths", key="horizon.azimuth_error_deg", unit="deg"),
             Field(label="Error of elevations", key="horizon.elevation_error_deg", unit="deg"),
+            Field(label="Error of distances", key="horizon.distance_error_m", unit="m"),
+            Field(label="Eye above the mark", key="horizon.instrument_up_m", unit="m"),
             Field(label="Stood east of the mark", key="horizon.instrument_east_m", unit="m, west −"),
             Field(label="Stood north of the mark", key="horizon.instrument_north_m", unit="m, south −"),
-            Field(label="Eye above the mark", key="horizon.instrument_up_m", unit="m", wide=True),
         ),
-        note="Best stand where the antenna will be, at its height. Errors are one standard deviation.",
+        note="Best stand where the antenna will be, at its height. Errors are one standard deviation; "
+        "without them those of the class hold.",
     ),
     Group(
         heading="North",

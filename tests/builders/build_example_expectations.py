@@ -12,7 +12,7 @@ from siteassess import Assessment, assess, read_site
 
 ROOT = Path(__file__).parent.parent.parent
 EXPECTED = ROOT / "tests" / "example_sites_expected.json"
-SITES = ("harbour/quay_office", "harbour/silo_yard", "harbour/tree_line", "chain_mistake")
+SITES = ("harbour/quay_office", "harbour/silo_yard", "harbour/tree_line", "chain_mistake", "ridge_mast")
 
 
 def figures(assessment: Assessment) -> dict[str, Any]:
