@@ -101,8 +101,9 @@ def assess(site: Site) -> Assessment:
 def explained(assessment: Assessment) -> Assessment:
     """The same assessment with causes, cures, and how sure the verdict is.
 
-    What each obstacle returns by going stands in `verdict.obstacles`, all else in `explanation`. Where a taller
-    mast turns a fail into a pass, finding its height takes some more whole assessments.
+    What each obstacle returns by going stands in `verdict.obstacles`, all else in `explanation` and
+    `uncertainty`. Where a taller mast turns a fail into a pass, finding its height takes some more whole
+    assessments.
 
     Parameters
     ----------

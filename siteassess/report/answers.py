@@ -4,6 +4,7 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
+from siteassess.report.how_sure import how_sure
 from siteassess.report.phrases import azimuth_range, compass_point, number, percent, plain, told_apart
 from siteassess.report.pieces import Answer
 from siteassess.verdict.causes import cost_rank
@@ -30,14 +31,15 @@ SECTOR_WORDS = {
 
 def answers(assessment: Assessment) -> tuple[Answer, ...]:
     """Questions of the reader and their answers, the verdict first."""
-    verdict = assessment.verdict
+    verdict, sure = assessment.verdict, how_sure(assessment)
     return (
-        Answer(label="Result", question="Does the spot pass?", answer=_passes(verdict)),
+        Answer(label="Result", question="Does the spot pass?", answer=_passes(assessment)),
         Answer(
             label="Reason",
             question="Why?" if verdict.outcome == "pass" else "Why not?",
             answer=_why(verdict),
         ),
+        *([Answer(label="How sure", question="How sure is that?", answer=sure)] if sure else []),
         Answer(
             label="Worst direction",
             question="Which direction is worst?",
@@ -56,14 +58,16 @@ def _required(verdict: Verdict) -> list[Finding]:
     return [finding for finding in verdict.findings if finding.required]
 
 
-def _passes(verdict: Verdict) -> str:
+def _passes(assessment: Assessment) -> str:
+    verdict, sure = assessment.verdict, assessment.uncertainty
+    narrowly = ", narrowly" if sure is not None and sure.narrow else ""
     required = _required(verdict)
     asked = f"{len(required)} requirement{'s' if len(required) != 1 else ''}"
     missed = sum(finding.outcome == "missed" for finding in required)
     if verdict.outcome == "pass":
-        return f"Yes. It meets {'the one requirement' if len(required) == 1 else f'all {asked}'}."
+        return f"Yes{narrowly}. It meets {'the one requirement' if len(required) == 1 else f'all {asked}'}."
     if verdict.outcome == "fail":
-        return f"No. It misses {missed} of {asked}."
+        return f"No{narrowly}. It misses {missed} of {asked}."
     if verdict.sky.unsurveyed_share == 0:
         return "Not proven. No requirement is missed, but the survey does not answer all of them."
     return (

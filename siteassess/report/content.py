@@ -9,6 +9,7 @@ from siteassess.report.causes import causes_section
 from siteassess.report.chain import chain_section
 from siteassess.report.changes import changes_section
 from siteassess.report.cures import cures_section
+from siteassess.report.how_sure import how_sure_section
 from siteassess.report.levels import antenna_section, budget_section
 from siteassess.report.noise import noise_section
 from siteassess.report.outcomes import (
@@ -23,6 +24,7 @@ from siteassess.report.phrases import azimuth_range, number, plain
 from siteassess.report.pieces import Content, Section, Table
 from siteassess.report.setting import CAUTIONS, LIMITS, assumptions
 from siteassess.report.sources import disagreement_tables
+from siteassess.verdict.survey_errors import stated_errors
 from siteassess.wording import listed
 
 if TYPE_CHECKING:
@@ -60,7 +62,8 @@ def report_content(assessment: Assessment) -> Content:
         sections=(
             _sky_section(assessment),
             _horizon_section(assessment),
-            findings_section(verdict),
+            findings_section(assessment),
+            *(section for section in (how_sure_section(assessment),) if section),
             signals_section(assessment),
             obstacles_section(assessment),
             *(section for section in (causes_section(assessment), cures_section(assessment)) if section),
@@ -210,16 +213,20 @@ def _survey_section(assessment: Assessment) -> Section:
 
 
 def _source_row(source: HorizonSource) -> tuple[str, ...]:
-    def error(value_deg: float | None) -> str:
-        return "not given" if value_deg is None else f"{value_deg:g}°"
+    errors = stated_errors(source)
+
+    def error(key: str) -> str:
+        if errors[key] is None:
+            return "not given"
+        return f"{errors[key]:g}°" + ("" if key in source.model_fields_set else f" ({source.instrument})")
 
     return (
         SOURCES[source.source],
         plain(listed(file.replace("\\", "/").rsplit("/", 1)[-1] for file in source.files)),
         source.surveyed_on.isoformat() if source.surveyed_on else "not given",
         "a landmark" if source.landmark_reading_deg is not None else BEARINGS[source.bearings],
-        error(source.azimuth_error_deg),
-        error(source.elevation_error_deg),
+        error("azimuth_error_deg"),
+        error("elevation_error_deg"),
         "yes" if source.complete else "not stated",
         _seen_from(source),
     )

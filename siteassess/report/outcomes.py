@@ -5,6 +5,7 @@ from __future__ import annotations
 from typing import TYPE_CHECKING
 
 from siteassess.report.answers import ranked_obstacles
+from siteassess.report.how_sure import on_finding, spreads
 from siteassess.report.obstacle_tables import leaves_table, thin_table
 from siteassess.report.phrases import azimuth_range, decibels, number, percent, plain, told_apart
 from siteassess.report.pieces import Section, Table
@@ -12,6 +13,7 @@ from siteassess.verdict.criteria import read_criteria
 
 if TYPE_CHECKING:
     from siteassess.assessment import Assessment
+    from siteassess.verdict.uncertainty import FindingSpread
     from siteassess.verdict.verdict import Finding, Verdict
 
 __all__ = [
@@ -25,27 +27,32 @@ __all__ = [
 OUTCOMES = {"met": "met", "missed": "missed", "unproven": "not proven"}
 
 
-def findings_section(verdict: Verdict) -> Section:
+def findings_section(assessment: Assessment) -> Section:
     """Criteria held against the site: first what is required, then what is advice."""
+    verdict, spread = assessment.verdict, spreads(assessment.uncertainty)
     required = [finding for finding in verdict.findings if finding.required]
     advice = [finding for finding in verdict.findings if not finding.required]
-    tables = [_findings_table("Required by the site file; the worst first.", required)]
+    tables = [_findings_table("Required by the site file; the worst first.", required, spread)]
     if advice:
-        tables.append(_findings_table("Advice, which never fails a site.", advice))
+        tables.append(_findings_table("Advice, which never fails a site.", advice, spread))
     return Section(key="findings", heading="Asked and found", tables=tuple(tables))
 
 
-def _findings_table(caption: str, findings: list[Finding]) -> Table:
+def _findings_table(
+    caption: str, findings: list[Finding], spread: dict[tuple[str, str | None], FindingSpread]
+) -> Table:
     return Table(
         caption=caption,
         header=("Outcome", "Criterion", "Found", "Asked", "Asked by", "Reason"),
-        rows=tuple(_finding_row(finding) for finding in findings),
+        rows=tuple(
+            _finding_row(finding, spread.get((finding.criterion, finding.signal))) for finding in findings
+        ),
         align="llrrll",
         tones=tuple(finding.outcome for finding in findings),
     )
 
 
-def _finding_row(finding: Finding) -> tuple[str, ...]:
+def _finding_row(finding: Finding, spread: FindingSpread | None) -> tuple[str, ...]:
     criterion = read_criteria()[finding.criterion]
     value, limit = told_apart(finding.value, finding.limit, finding.unit)
     title = f"{finding.signal}: {criterion.title}" if finding.signal else criterion.title
@@ -55,7 +62,7 @@ def _finding_row(finding: Finding) -> tuple[str, ...]:
         value,
         f"{criterion.sense} {limit}",
         finding.source,
-        plain(finding.reason),
+        f"{plain(finding.reason)} {on_finding(spread)}".strip(),
     )
 
 

@@ -12,6 +12,7 @@ from siteassess.report.plain_json import rounded as _rounded
 from siteassess.report.setting import CAUTIONS, assumptions
 from siteassess.report.sources import disagreement_records
 from siteassess.report.time_results import time_record
+from siteassess.report.uncertainty_results import uncertainty_record
 from siteassess.verdict.what_if import WHAT_IF_ELEVATIONS_DEG, Change
 
 if TYPE_CHECKING:
@@ -127,6 +128,7 @@ def assessment_record(assessment: Assessment) -> dict[str, Any]:
         "what_if": [_change(change) for change in assessment.what_if],
         "causes": causes_record(assessment),
         "cures": cures_record(assessment),
+        "uncertainty": uncertainty_record(assessment),
         "assumptions": list(assumptions(assessment)),
         "cautions": list(CAUTIONS),
     }

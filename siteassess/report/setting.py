@@ -29,8 +29,8 @@ LIMITS = (
     "Interference, jamming and reflections from walls, roofs and water are not part of C/N0 here.",
     "Rain, wet snow and ice on the antenna or in trees, and ionospheric scintillation, are not counted.",
     (
-        "The skyline is as good as its survey. Errors of the instrument are printed, and are not carried "
-        "into the shares."
+        "The skyline is as good as its survey. How sure the verdict is rests on the errors that were stated; "
+        "building outlines and terrain count as exact."
     ),
     "Diffraction treats each edge as a straight, perfectly absorbing knife edge, one obstacle at a time.",
     "Losses in leaves differ from tree to tree and with wind and season by several decibels.",

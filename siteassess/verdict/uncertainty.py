@@ -65,7 +65,7 @@ class Uncertainty:
     probability : float or None
         That all requirements are met that depend on directions; None where none does.
     narrow : bool
-        Whether a requirement might well turn out the other way.
+        Whether the verdict might well turn out the other way.
     findings : tuple of FindingSpread
         Those that depend on survey or levels, in the order of `Verdict.findings`.
     closest : FindingSpread or None
@@ -129,11 +129,12 @@ def uncertainty(
     found = tuple(spreads[_key(one)] for one in verdict.findings if _key(one) in spreads)
     required = [(one, of_one) for one, of_one in zip(angular, values, strict=True) if one.required]
     closest = _closest(required)
+    probability = float(np.all([_met(*one) for one in required], axis=0).mean()) if required else None
     return Uncertainty(
         draws=draws,
         seed=site.sky.seed,
-        probability=float(np.all([_met(*one) for one in required], axis=0).mean()) if required else None,
-        narrow=any(spread.narrow for spread in found),
+        probability=probability,
+        narrow=_is_narrow(verdict, found, probability),
         findings=found,
         closest=None if closest is None else spreads[_key(closest)],
         sources=() if closest is None else error_sources(site, model, errors, sample, closest),
@@ -177,6 +178,15 @@ def _spread(finding: Finding, values: FloatArray) -> FindingSpread:
         p95=p95,
         narrow=finding.required and stays < NARROW_BELOW,
     )
+
+
+def _is_narrow(verdict: Verdict, found: Sequence[FindingSpread], probability: float | None) -> bool:
+    """Whether a miss may be none, with no other that stands; or whether a pass may be a miss."""
+    narrow = {(one.criterion, one.signal) for one in found if one.narrow}
+    missed = {_key(one) for one in verdict.findings if one.required and one.outcome == "missed"}
+    if missed:
+        return missed <= narrow
+    return bool(narrow) or (probability is not None and probability < NARROW_BELOW)
 
 
 def _bounds(finding: Finding, low: float, high: float) -> FindingSpread:
