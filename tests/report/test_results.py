@@ -14,7 +14,7 @@ KEYS = {
     "": {
         "format", "tool_version", "site", "verdict", "findings", "sky", "obstacles", "signals", "satellites",
         "noise", "what_if", "assumptions", "cautions", "surveys", "sectors", "counts", "time", "causes",
-        "cures", "uncertainty",
+        "cures", "uncertainty", "disagreements",
     },
     "site": {"name", "latitude_deg", "longitude_deg", "height_m"},
     "findings": {
