@@ -283,3 +283,15 @@ def test_a_cell_is_covered_in_part(obstacle: Build, skyline: BuildSkyline) -> No
     partial = (sin[1] - sin[0]) / (sin[2] - sin[0])
     expected = [[0.5, 0.5 * partial, 0], [1, partial, 0], [0, 0, 0]]
     np.testing.assert_allclose(cells, expected, atol=CLOSED_FORM)
+
+
+def test_a_block_holds_what_of_its_edge_is_above_the_mask(
+    obstacle: Callable[..., Obstacle], skyline: Callable[..., Skyline]
+) -> None:
+    """A long edge that passes the mask near its end belongs to the block there, not to one at its middle."""
+    slope = obstacle([100, 200], [-20, 20], name="slope")
+    post = obstacle([110, 111], [12, 12], name="post")
+    both, alone = sky_shares(skyline(slope, post), 10.0), sky_shares(skyline(slope), 10.0)
+    assert alone.largest_block_deg == pytest.approx((175.0, 200.0))
+    assert both.largest_block_deg == pytest.approx((175.0, 200.0))
+    assert both.largest_block_share == pytest.approx(alone.largest_block_share, abs=1e-12)
