@@ -8,7 +8,7 @@ from siteassess.horizon.shares import covered_share, sky_shares
 from siteassess.horizon.skyline import Obstacle, Skyline
 
 CLOSED_FORM = 1e-9
-DENSE_SUM = 1e-6  # what the judge's midpoint sums leave
+DENSE_SUM = 1e-6  # what sums over midpoints leave
 Build = Callable[..., Obstacle]
 BuildSkyline = Callable[..., Skyline]
 Array = np.ndarray

@@ -51,7 +51,7 @@ def together(sources: list[list[Obstacle]]) -> Skyline:
     )
 
 
-@settings(max_examples=60, deadline=None, suppress_health_check=list(HealthCheck))
+@settings(max_examples=60, derandomize=True, deadline=None, suppress_health_check=list(HealthCheck))
 @given(sources=SOURCES)
 def test_the_order_of_sources_changes_nothing(sources: list[list[Obstacle]]) -> None:
     first = together(sources)
@@ -68,7 +68,7 @@ def test_the_order_of_sources_changes_nothing(sources: list[list[Obstacle]]) -> 
         assert again.foliage_share_above_mask == pytest.approx(shares.foliage_share_above_mask, abs=ROUNDING)
 
 
-@settings(max_examples=60, deadline=None, suppress_health_check=list(HealthCheck))
+@settings(max_examples=60, derandomize=True, deadline=None, suppress_health_check=list(HealthCheck))
 @given(sources=SOURCES, further=st.lists(obstacles(), min_size=1, max_size=4))
 def test_another_source_opens_no_sky(sources: list[list[Obstacle]], further: list[Obstacle]) -> None:
     before, after = together(sources), together([*sources, further])

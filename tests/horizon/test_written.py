@@ -152,7 +152,7 @@ def assert_same_obstacle(one: Obstacle, other: Obstacle) -> None:
     )
 
 
-@settings(max_examples=60, deadline=None, suppress_health_check=list(HealthCheck))
+@settings(max_examples=60, derandomize=True, deadline=None, suppress_health_check=list(HealthCheck))
 @given(
     texts=st.lists(survey_text(), min_size=1, max_size=2),
     complete=st.booleans(),
