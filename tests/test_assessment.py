@@ -178,9 +178,9 @@ def test_files_are_read_even_where_the_mount_cannot_be_made_out(write_site: Writ
     [
         ("choke-ring", "chokering", 'site.toml: antenna.pattern is "chokering"; did you mean choke-ring?'),
         (
-            'source = "survey"\nfile = "horizon.csv"',
-            'source = "terrain"\nfile = "heights.tif"',
-            'site.toml: horizon[1].source is "terrain"; this version supports "survey" only',
+            'source = "survey"',
+            'source = "photo"',
+            'site.toml: horizon[1].source is "photo"; it must be "survey", "outlines" or "terrain"',
         ),
         (
             "complete = true",
