@@ -138,8 +138,7 @@ def _foliage_loss_db(
     obstacle: Obstacle, azimuth_deg: FloatArray, elevation_deg: FloatArray, carrier_hz: float
 ) -> tuple[IndexArray, FloatArray]:
     """Indices of the directions that look through leaves, and the loss there."""
-    near = np.flatnonzero(elevation_deg < np.max(obstacle.elevation_deg))
-    near = near[covers(obstacle, azimuth_deg[near], elevation_deg[near])]
+    near = np.flatnonzero(covers(obstacle, azimuth_deg, elevation_deg))
     through_m = depth_m(obstacle, azimuth_deg[near])
     return near, leaves_loss_db(
         obstacle.foliage_model, obstacle.leaf, through_m, carrier_hz, elevation_deg[near]

@@ -232,11 +232,8 @@ def _usable_parts(
 ) -> Iterator[tuple[IndexArray, FloatArray]]:
     """Of every signal: its directions above a mask, and the usable part of each."""
     counts = form.elevation_deg >= mask_deg
-    open_share = counts.astype(np.float64)
-    tops_deg = [float(obstacle.elevation_deg.max()) for obstacle in skyline.obstacles]
-    foot_deg = form.apparent_elevation_deg - form.half_height_deg
-    low = np.flatnonzero(counts & (foot_deg < max(tops_deg, default=-90.0)))
-    open_share[low] = _open_share(form, skyline, low)
+    open_share = np.zeros(len(form.weight))
+    open_share[counts] = _open_share(form, skyline, np.flatnonzero(counts))
     loss_db = _loss_db(form, skyline, open_share, counts)
     for one in form.signals:
         own = counts[one.direction]

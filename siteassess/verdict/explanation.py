@@ -7,8 +7,8 @@ import numpy as np
 from numpy.typing import NDArray
 
 from siteassess.antenna.pattern import GainPattern
-from siteassess.horizon.skyline import Skyline
-from siteassess.horizon.view import foliage_obstacles
+from siteassess.horizon.skyline import Obstacle, Skyline
+from siteassess.horizon.view import edge_elevation_deg, foliage_obstacles
 from siteassess.link_budget.budget import LinkBudget
 from siteassess.site_file.model import Site
 from siteassess.sky_tracks.tracks import SkyTracks
@@ -31,6 +31,7 @@ __all__ = ["ALL_LEAVES", "Explanation", "TreeCut", "explanation"]
 
 CUT_TO_DEG = (5.0, 10.0, 15.0, 20.0)  # own default: elevations to which trees are cut, and the mask
 MOST_TREES = 10
+EDGE_POINTS = 181
 ALL_LEAVES = "all leaves"
 
 
@@ -159,14 +160,21 @@ def _tree_cuts(
     found = []
     for index in named:
         obstacle = skyline.obstacles[index]
-        top_deg = float(obstacle.elevation_deg.max())
+        top_deg = _top_deg(obstacle)
         free = {signal: returned[index] for signal, returned in alone.items()}
         found += [_cut(obstacle.name, cut_deg, lost, free) for cut_deg in cuts_deg if cut_deg < top_deg]
     if len(leaves) > 1:
-        top_deg = max(float(skyline.obstacles[index].elevation_deg.max()) for index in leaves)
+        top_deg = max(_top_deg(skyline.obstacles[index]) for index in leaves)
         free = {signal: returned_without(one, leaves) for signal, one in lost.items()}
         found += [_cut(ALL_LEAVES, cut_deg, lost, free) for cut_deg in cuts_deg if cut_deg < top_deg]
     return tuple(found)
+
+
+def _top_deg(obstacle: Obstacle) -> float:
+    """Highest elevation of an edge, which bulges upward between its points where it is straight in space."""
+    azimuth_deg = np.linspace(obstacle.azimuth_deg[0], obstacle.azimuth_deg[-1], EDGE_POINTS)
+    between_deg = np.nanmax(edge_elevation_deg(obstacle, azimuth_deg))
+    return float(max(between_deg, obstacle.elevation_deg.max()))
 
 
 def _cut(name: str, cut_deg: float, lost: dict[str, LostSky], free: dict[str, NDArray[np.bool_]]) -> TreeCut:

@@ -226,6 +226,21 @@ def test_leaves_cost_by_the_depth_in_their_azimuth(leaf: str, expected_db: float
     assert loss_db(tree, 20.0, 30.0) == 0.0
 
 
+def test_leaves_reach_as_high_as_a_straight_row_bulges() -> None:
+    # A straight level row, 30 degrees high at its ends 45 degrees aside: arctan(tan 30 / cos 45) = 39.23.
+    row = Obstacle(
+        name="row",
+        cover="foliage",
+        azimuth_deg=np.array([135.0, 225.0]),
+        elevation_deg=np.array([30.0, 30.0]),
+        distance_m=np.array([40.0, 40.0]),
+        depth_m=np.array([5.0, 5.0]),
+        straight_in_space=True,
+    )
+    assert loss_db(row, 180.0, 39.2) > 1.0
+    assert loss_db(row, 180.0, 39.3) == 0.0
+
+
 def test_losses_add_and_the_costliest_obstacle_is_named() -> None:
     tree = Obstacle(
         name="tree",

@@ -7,7 +7,11 @@ import numpy as np
 import pytest
 
 from siteassess import Assessment, assess, read_site
+from siteassess.horizon.outline import upper_envelope
+from siteassess.horizon.skyline import Obstacle, Skyline
+from siteassess.link_budget.assemble import link_budget
 from siteassess.verdict.angular import AngularForm, angular_form, noise_gain_db, shares_above, usable_shares
+from siteassess.verdict.judge import judge
 
 BUILDERS = Path(__file__).parents[1] / "builders"
 HARBOUR = Path(__file__).parents[2] / "example_sites" / "harbour"
@@ -34,6 +38,24 @@ def test_random_sites_agree_with_whole_budgets() -> None:
 def test_present_skyline_returns_the_assessment(assessment: Assessment, form: AngularForm) -> None:
     quick = usable_shares(form, assessment.skyline)
     for one in assessment.verdict.signals:
+        assert quick[one.signal] == pytest.approx(one.usable_share, abs=TWO_TENTHS_OF_A_PERCENT)
+
+
+def test_straight_wall_that_bulges_between_its_ends(assessment: Assessment, form: AngularForm) -> None:
+    # 20 degrees high at its ends, arctan(tan 20 / cos 60) = 36 degrees in the middle.
+    wall = Obstacle(
+        name="wall",
+        cover="solid",
+        azimuth_deg=np.array([90.0, 210.0]),
+        elevation_deg=np.array([20.0, 20.0]),
+        distance_m=np.array([60.0, 60.0]),
+        straight_in_space=True,
+    )
+    skyline = Skyline(obstacles=(wall,), outline=upper_envelope((wall,)), unsurveyed_deg=np.empty((0, 2)))
+    budget = link_budget(assessment.site, skyline, assessment.pattern, assessment.tracks)
+    whole = judge(assessment.site, skyline, assessment.tracks, budget)
+    quick = usable_shares(form, skyline, noise_gain_db(form, skyline))
+    for one in whole.signals:
         assert quick[one.signal] == pytest.approx(one.usable_share, abs=TWO_TENTHS_OF_A_PERCENT)
 
 
