@@ -338,6 +338,51 @@ def rank(
         ctx.exit(3)
 
 
+@main.command()
+@click.argument("old", type=click.Path(path_type=Path))
+@click.argument("new", type=click.Path(path_type=Path))
+@click.option(
+    "--out", type=click.Path(path_type=Path), metavar="FOLDER",
+    help="Write changes.html, changes.pdf, changes.json and changes.svg here.",
+)  # fmt: skip
+@click.option("--json", "as_json", is_flag=True, help="Print the changes as JSON.")
+@click.option("--quiet", is_flag=True, help="No summary, notes or progress.")
+def changes(old: Path, new: Path, out: Path | None, as_json: bool, quiet: bool) -> None:
+    """Compare two surveys of one spot, the site files OLD and NEW.
+
+    It tells what rose and what fell round the antenna beyond the errors of the surveys, and what that did to
+    every finding. The spots must be the same within 5 m.
+
+    \b
+    Example:
+      siteassess changes roof_2024 roof_2026
+      siteassess changes roof_2024.toml roof_2026.toml --out reports/roof
+    """
+    from siteassess.candidates.resurvey import resurvey
+
+    with _progress(shown=not quiet) as step:
+        step("reading and assessing")
+        found = resurvey(old, new)
+        if out is not None:
+            import logging
+
+            from siteassess.report.write_resurvey import write_resurvey
+
+            logging.getLogger("matplotlib").setLevel(logging.ERROR)
+            write_resurvey(found, out, step)
+    if as_json:
+        from siteassess.report.resurvey_results import resurvey_json
+
+        click.echo(resurvey_json(found).encode(), nl=False)
+    elif not quiet:
+        from siteassess.report.resurvey_results import resurvey_lines
+
+        for line in resurvey_lines(found):
+            click.echo(line)
+    if out is not None and not quiet:
+        _tell(f"Changes written to {out}")
+
+
 @contextmanager
 def _interruptible() -> Iterator[None]:
     """Ends an interrupted command as such, whatever a library makes of it that was just being loaded."""

@@ -74,7 +74,8 @@ def how_sure_section(assessment: Assessment) -> Section | None:
             caption=(
                 "Findings that depend on survey or levels. 5 % of the draws lie below the first figure, half "
                 "below the second, 95 % below the third. Findings on satellites at once carry no "
-                "probability: the figures are those of a bad and of a good draw for the signals."
+                "probability: the figures are those of a bad and of a good draw for the signals. “Met in” is "
+                "the part of the draws in which the limit is met."
             ),
             header=("Criterion", "Asked", "Found", "5 %", "Half", "95 %", "Met in", ""),
             rows=tuple(_finding_row(findings[one.criterion, one.signal], one) for one in sure.findings),
