@@ -5,8 +5,7 @@ satellite position. Edges and limits that run through a direction's cell take th
 their far side.
 """
 
-from collections.abc import Iterator
-from dataclasses import dataclass
+from dataclasses import dataclass, replace
 
 import numpy as np
 from numpy.typing import NDArray
@@ -14,33 +13,19 @@ from numpy.typing import NDArray
 from siteassess.antenna.energy import efficiency
 from siteassess.antenna.mount import mounted_gain_dbic
 from siteassess.antenna.pattern import GainPattern
-from siteassess.constants import REFERENCE_TEMPERATURE_K
-from siteassess.decibels import to_db
-from siteassess.horizon.skyline import Skyline
-from siteassess.horizon.view import covers, outline_elevation_deg
-from siteassess.link_budget.antenna_noise import ring_gain, seen_temperature_k
+from siteassess.link_budget.antenna_noise import ring_gain
 from siteassess.link_budget.brightness import sky_brightness_k
 from siteassess.link_budget.budget import LinkBudget, SignalBudget
 from siteassess.link_budget.power import received_power
 from siteassess.link_budget.receive_chain import ChainNoise
-from siteassess.link_budget.seen_sky import RING_DEG, seen_sky
+from siteassess.link_budget.seen_sky import RING_DEG
 from siteassess.link_budget.signals import Signal
-from siteassess.link_budget.way_in import skyline_loss_db
 from siteassess.site_file.model import Site
 from siteassess.sky_tracks.refraction import apparent_elevation_deg
 from siteassess.sky_tracks.thinned import ThinnedSky, thinned_sky
 from siteassess.sky_tracks.tracks import SkyTracks
-from siteassess.verdict.states import WEAKENED_FROM_DB
 
-__all__ = [
-    "AngularForm",
-    "AngularSignal",
-    "NoiseForm",
-    "angular_form",
-    "noise_gain_db",
-    "shares_above",
-    "usable_shares",
-]
+__all__ = ["AngularForm", "AngularSignal", "NoiseForm", "angular_form", "taken"]
 
 FloatArray = NDArray[np.float64]
 IndexArray = NDArray[np.int64]
@@ -49,8 +34,6 @@ IndexArray = NDArray[np.int64]
 # sites these cells kept within 0.09 % of satellite-time of whole budgets; 1 degree of width, within 0.21 %.
 RING_HEIGHT_DEG = 0.5
 SECTOR_WIDTH_DEG = 0.5
-# An edge reaches as far as the root of the wavelength: within a band by 1 % of some 2 degrees at most.
-ONE_BAND = 1.03
 THINNEST_DEG, THINNEST_DB = 1e-9, 1e-9
 
 
@@ -170,131 +153,29 @@ def angular_form(
     )
 
 
-def noise_gain_db(form: AngularForm, skyline: Skyline) -> dict[float, float]:
-    """How much less noise [dB] there is with another skyline, by carrier."""
-    gain_db = {}
-    for carrier_hz, noise in form.noise.items():
-        antenna_k = seen_temperature_k(
-            noise.taken_in, seen_sky(skyline, carrier_hz), noise.sky_k, REFERENCE_TEMPERATURE_K
-        )
-        gain_db[carrier_hz] = float(to_db(noise.system_k / (antenna_k + noise.chain_k)))
-    return gain_db
-
-
-def usable_shares(
-    form: AngularForm, skyline: Skyline, gain_db: dict[float, float] | None = None
-) -> dict[str, float]:
-    """Usable share of every signal with another skyline.
-
-    Parameters
-    ----------
-    form : AngularForm
-        The site.
-    skyline : Skyline
-        What stands round it now.
-    gain_db : dict of float to float, or None
-        From :func:`noise_gain_db`; None leaves the noise as it was.
-    """
-    shares = {}
-    for one, (at, usable) in zip(
-        form.signals, _usable_parts(form, skyline, form.mask_deg, gain_db or {}), strict=True
-    ):
-        total = form.weight[at].sum()
-        shares[one.signal.name] = float((form.weight[at] * usable).sum() / total) if total > 0.0 else 0.0
-    return shares
-
-
-def shares_above(form: AngularForm, skyline: Skyline, mask_deg: FloatArray) -> dict[str, FloatArray]:
-    """Usable share of every signal above each of several masks, shape (mask,); 0 above all satellites.
-
-    Parameters
-    ----------
-    form, skyline : AngularForm, Skyline
-        The site.
-    mask_deg : array, shape (mask,)
-        Ascending; each an edge between cells, which whole degrees are.
-    """
-    shares = {}
-    for one, (at, usable) in zip(form.signals, _usable_parts(form, skyline, mask_deg[0], {}), strict=True):
-        step = np.searchsorted(mask_deg, form.elevation_deg[at], side="right") - 1
-
-        def above(weight: FloatArray, step: IndexArray = step) -> FloatArray:
-            summed = np.bincount(step, weights=weight, minlength=len(mask_deg))
-            return np.asarray(np.cumsum(summed[::-1])[::-1])
-
-        total = above(form.weight[at])
-        shares[one.signal.name] = above(form.weight[at] * usable) / np.maximum(total, np.finfo(float).tiny)
-    return shares
-
-
-def _usable_parts(
-    form: AngularForm, skyline: Skyline, mask_deg: float, gain_db: dict[float, float]
-) -> Iterator[tuple[IndexArray, FloatArray]]:
-    """Of every signal: its directions above a mask, and the usable part of each."""
-    counts = form.elevation_deg >= mask_deg
-    open_share = np.zeros(len(form.weight))
-    open_share[counts] = _open_share(form, skyline, np.flatnonzero(counts))
-    loss_db = _loss_db(form, skyline, open_share, counts)
+def taken(form: AngularForm, which: NDArray[np.bool_]) -> AngularForm:
+    """The part of an angular form that some of its directions make up; `which` has shape (direction,)."""
+    place = np.cumsum(which) - 1
+    signals = []
     for one in form.signals:
-        own = counts[one.direction]
-        at, carrier_hz = one.direction[own], one.signal.carrier_hz
-        own_loss_db = loss_db[carrier_hz][at]
-        spare_db = one.cn0_open_sky_dbhz[own] - own_loss_db - one.min_cn0_dbhz
-        spare_db += gain_db.get(carrier_hz, 0.0)
-        # Open and strong are both the upper part of a cell.
-        usable = np.minimum(open_share[at], _upper_part(spare_db, one.half_range_db[own]))
-        if not form.count_weakened:
-            usable[own_loss_db >= WEAKENED_FROM_DB] = 0.0
-        yield at, usable
-
-
-def _loss_db(
-    form: AngularForm, skyline: Skyline, open_share: FloatArray, counts: NDArray[np.bool_]
-) -> dict[float, FloatArray]:
-    """Loss at every direction, by carrier; 0 where no signal of that carrier comes from or all is hidden.
-
-    It is taken half-way between the top of the cell and what hides its foot.
-    """
-    middle_deg = form.apparent_elevation_deg + form.half_height_deg * (1.0 - open_share)
-    loss_db: dict[float, FloatArray] = {}
-    for band_hz in _bands_hz(sorted(form.noise)):
-        wanted = np.zeros(len(form.weight), dtype=np.bool_)
-        for one in form.signals:
-            if one.signal.carrier_hz in band_hz:
-                wanted[one.direction] = True
-        at = np.flatnonzero(wanted & counts & (open_share > 0.0))
-        band_loss_db = np.zeros(len(form.weight))
-        middle_hz = float(np.mean(band_hz))
-        band_loss_db[at], _ = skyline_loss_db(skyline, form.azimuth_deg[at], middle_deg[at], middle_hz)
-        loss_db |= dict.fromkeys(band_hz, band_loss_db)
-    return loss_db
-
-
-def _bands_hz(carriers_hz: list[float]) -> list[list[float]]:
-    """Ascending carriers in bands so narrow that obstacles cost about the same in all of a band."""
-    bands_hz: list[list[float]] = []
-    for carrier_hz in carriers_hz:
-        if bands_hz and carrier_hz <= ONE_BAND * bands_hz[-1][0]:
-            bands_hz[-1].append(carrier_hz)
-        else:
-            bands_hz.append([carrier_hz])
-    return bands_hz
-
-
-def _open_share(form: AngularForm, skyline: Skyline, at: IndexArray) -> FloatArray:
-    """Part of some directions that nothing solid hides."""
-    azimuth_deg, elevation_deg = form.azimuth_deg[at], form.apparent_elevation_deg[at]
-    above_deg = elevation_deg - outline_elevation_deg(skyline, azimuth_deg)
-    open_share = _upper_part(above_deg, form.half_height_deg[at])
-    for obstacle in skyline.obstacles:
-        if obstacle.cover == "solid" and obstacle.hangs_free:
-            open_share[covers(obstacle, azimuth_deg, elevation_deg)] = 0.0
-    return open_share
-
-
-def _upper_part(above: FloatArray, half: FloatArray) -> FloatArray:
-    """Part of what spreads evenly from `above` - `half` to `above` + `half` that is at least 0."""
-    return np.asarray(np.clip(0.5 + 0.5 * above / half, 0.0, 1.0))
+        own = which[one.direction]
+        signals.append(
+            replace(
+                one,
+                direction=place[one.direction[own]],
+                cn0_open_sky_dbhz=one.cn0_open_sky_dbhz[own],
+                half_range_db=one.half_range_db[own],
+            )
+        )
+    return replace(
+        form,
+        azimuth_deg=form.azimuth_deg[which],
+        elevation_deg=form.elevation_deg[which],
+        apparent_elevation_deg=form.apparent_elevation_deg[which],
+        half_height_deg=form.half_height_deg[which],
+        weight=form.weight[which],
+        signals=tuple(signals),
+    )
 
 
 def _angular_signal(budget: SignalBudget, site: Site, pattern: GainPattern, sky: ThinnedSky) -> AngularSignal:

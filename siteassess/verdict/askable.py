@@ -7,7 +7,8 @@ from numpy.typing import NDArray
 
 from siteassess.horizon.skyline import Skyline
 from siteassess.link_budget.budget import SignalBudget
-from siteassess.verdict.angular import AngularForm, shares_above
+from siteassess.verdict.angular import AngularForm
+from siteassess.verdict.angular_shares import shares_above
 from siteassess.verdict.states import WEAKENED_FROM_DB, SampleStates
 
 __all__ = ["ALL_SIGNALS", "Askable", "askable", "lowest_masks_deg"]

@@ -6,11 +6,13 @@ from math import ceil, radians, sin
 
 import numpy as np
 
+from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.raised import keeps_its_angles, raised
 from siteassess.horizon.shares import sky_shares
 from siteassess.horizon.skyline import Skyline
 from siteassess.site_file.model import Mount, Site
-from siteassess.verdict.angular import AngularForm, noise_gain_db, usable_shares
+from siteassess.verdict.angular import AngularForm, taken
+from siteassess.verdict.angular_shares import noise_gain_db, usable_weights, within_reach
 from siteassess.verdict.criteria import read_criteria
 from siteassess.verdict.verdict import Finding, Verdict
 
@@ -20,6 +22,8 @@ HEIGHTS = 21
 DEFAULT_RISE_M = 5.0  # own default, where the site file names no tallest mast
 STEP_M = 0.01  # masts are cut to the centimetre
 MOST_ASSESSMENTS = 24
+TINY = 1e-300
+OPEN_SKY = Skyline(obstacles=(), outline=upper_envelope(()), unsurveyed_deg=np.empty((0, 2)))
 NOISE_AT = (0, HEIGHTS // 2, HEIGHTS - 1)  # noise bends little with height: three heights tell the others
 
 
@@ -120,8 +124,11 @@ def heights(
     skylines = [raised(skyline, mast_m - present_m) for mast_m in masts_m.tolist()]
     noise = [noise_gain_db(form, skylines[index]) for index in NOISE_AT]
     limits = {one.criterion: one.limit for one in verdict.findings if one.required}
+    # From higher up all edges come down: what they do not touch now they never will.
+    near = within_reach(form, skyline)
+    forms = taken(form, near), taken(form, ~near)
     steps = tuple(
-        _step(site, form, seen, mast_m, _between(noise, masts_m[list(NOISE_AT)].tolist(), mast_m), limits)
+        _step(site, forms, seen, mast_m, _between(noise, masts_m[list(NOISE_AT)].tolist(), mast_m), limits)
         for seen, mast_m in zip(skylines, masts_m.tolist(), strict=True)
     )
     lowest_m: float | None = present_m
@@ -150,13 +157,20 @@ def _between(noise: list[dict[float, float]], at_m: list[float], mast_m: float) 
 
 def _step(
     site: Site,
-    form: AngularForm,
+    forms: tuple[AngularForm, AngularForm],
     skyline: Skyline,
     mast_m: float,
     gain_db: dict[float, float],
     limits: dict[str, float],
 ) -> HeightStep:
-    usable_share = usable_shares(form, skyline, gain_db)
+    parts = (
+        usable_weights(form, seen, gain_db) for form, seen in zip(forms, (skyline, OPEN_SKY), strict=True)
+    )
+    near, far = parts
+    usable_share = {
+        signal: (usable + far[signal][0]) / max(total + far[signal][1], TINY)
+        for signal, (usable, total) in near.items()
+    }
     values, criteria = _other_values(site, skyline, mast_m, limits), read_criteria()
     return HeightStep(
         mast_height_m=mast_m,

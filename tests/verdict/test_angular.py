@@ -8,9 +8,18 @@ import pytest
 
 from siteassess import Assessment, assess, read_site
 from siteassess.horizon.outline import upper_envelope
+from siteassess.horizon.raised import raised
 from siteassess.horizon.skyline import Obstacle, Skyline
 from siteassess.link_budget.assemble import link_budget
-from siteassess.verdict.angular import AngularForm, angular_form, noise_gain_db, shares_above, usable_shares
+from siteassess.verdict.angular import AngularForm, angular_form, taken
+from siteassess.verdict.angular_shares import (
+    noise_gain_db,
+    shares_above,
+    usable_shares,
+    usable_weights,
+    within_reach,
+)
+from siteassess.verdict.heights import OPEN_SKY
 from siteassess.verdict.judge import judge
 
 BUILDERS = Path(__file__).parents[1] / "builders"
@@ -62,6 +71,26 @@ def test_straight_wall_that_bulges_between_its_ends(assessment: Assessment, form
 def test_present_skyline_has_the_present_noise(assessment: Assessment, form: AngularForm) -> None:
     for gain_db in noise_gain_db(form, assessment.skyline).values():
         assert gain_db == pytest.approx(0.0, abs=ROUNDING_DB)
+
+
+def test_parts_of_a_form_add_up_to_it(assessment: Assessment, form: AngularForm) -> None:
+    low = form.elevation_deg < 30.0
+    whole = usable_weights(form, assessment.skyline)
+    parts = [usable_weights(taken(form, which), assessment.skyline) for which in (low, ~low)]
+    for signal, weights in whole.items():
+        np.testing.assert_allclose(np.sum([part[signal] for part in parts], axis=0), weights)
+
+
+def test_what_is_out_of_reach_is_open_from_any_height(assessment: Assessment, form: AngularForm) -> None:
+    far = taken(form, ~within_reach(form, assessment.skyline))
+    assert (
+        0.5
+        < far.weight[far.elevation_deg >= 10.0].sum() / form.weight[form.elevation_deg >= 10.0].sum()
+        < 0.95
+    )
+    everything = usable_weights(far, OPEN_SKY)
+    for rise_m in (0.0, 0.5, 2.0, 5.0, 12.0):
+        assert usable_weights(far, raised(assessment.skyline, rise_m)) == everything
 
 
 @pytest.mark.parametrize("mask_deg", [5.0, 10.0, 25.0])
