@@ -103,7 +103,7 @@ def new(folder: Path) -> None:
     "--json", "as_json", is_flag=True, help="Print the assessment as JSON; write files only with --out."
 )
 @click.option(
-    "--explain", is_flag=True, help="Find causes and cures for --json too; a written report has them anyway."
+    "--explain", is_flag=True, help="Find causes, cures and how sure it is for --json too, as for a report."
 )
 @click.option("--quiet", is_flag=True, help="No summary, notes or progress.")
 @click.option("--require-pass", is_flag=True, help="Exit with 3 unless the verdict is pass.")
@@ -132,7 +132,7 @@ def assess(
         assessment = assess_file(site)
         folder = out if out is not None or as_json else _beside(assessment.site, "report")
         if explain or folder is not None:
-            step("finding causes and cures")
+            step("finding causes, cures and how sure it is")
             assessment = explained(assessment)
         if folder is not None:
             import logging

@@ -42,6 +42,7 @@ METHOD_HEADINGS = [
 UNITS = {
     "_deg": "deg",
     "_deg_per_s": "deg/s",
+    "_deg_per_m": "deg/m",
     "_m": "m",
     "_s": "s",
     "_hz": "Hz",

@@ -16,7 +16,7 @@ from siteassess.verdict.criteria import limit_or_advice
 from siteassess.verdict.draws import Draws, only, some
 from siteassess.verdict.movers import Mover, carrier_key, movers
 from siteassess.verdict.possible_values import hidden_shares, peak_deg, usable_share
-from siteassess.verdict.sky_density import SkyDensity, sky_density
+from siteassess.verdict.signal_density import SignalDensity, signal_density
 from siteassess.verdict.states import WEAKENED_FROM_DB, sample_weights
 from siteassess.verdict.survey_errors import SurveyErrors
 from siteassess.verdict.verdict import Finding
@@ -51,7 +51,7 @@ class DrawnSite:
     movers: tuple[Mover, ...]
     signals: tuple[str, ...]
     carriers_hz: tuple[float, ...]
-    densities: tuple[SkyDensity, ...]
+    densities: tuple[SignalDensity, ...]
     mask_deg: float
     floor_deg: float
 
@@ -80,7 +80,9 @@ def drawn_site(
         ),
         signals=tuple(signal.signal.name for signal in budget.signals),
         carriers_hz=tuple(signal.signal.carrier_hz for signal in budget.signals),
-        densities=tuple(sky_density(signal, budget.samples, weight, first_deg) for signal in budget.signals),
+        densities=tuple(
+            signal_density(signal, budget.samples, weight, first_deg) for signal in budget.signals
+        ),
         mask_deg=mask_deg,
         floor_deg=floor_deg,
     )

@@ -39,7 +39,7 @@ class Mover:
         Sky that they take from a signal, by :func:`carrier_key`.
     nodes : Between
         What the edges at the columns hang on.
-    deg_per_m : array, shape (node,)
+    rise_deg_per_m : array, shape (node,)
         How much higher a reading stands, as the antenna sees it, when its distance is longer.
     highest, near : Peaks
         Points of all solid edges, and of those near enough to reflect.
@@ -50,7 +50,7 @@ class Mover:
     solid: TakenSky
     taken: Mapping[int, TakenSky]
     nodes: Between
-    deg_per_m: FloatArray
+    rise_deg_per_m: FloatArray
     highest: Peaks
     near: Peaks
 
@@ -124,7 +124,7 @@ def _mover(
         solid=solid,
         taken=taken,
         nodes=replace(at_columns, left=split[0], right=split[1]),
-        deg_per_m=deg_per_m[used],
+        rise_deg_per_m=deg_per_m[used],
         highest=replace(highest, nodes=replace(highest.nodes, left=split[2], right=split[3])),
         near=replace(near, nodes=replace(near.nodes, left=split[4], right=split[5])),
     )
@@ -134,7 +134,7 @@ def moved_deg(mover: Mover, draws: Draws, places: Between) -> FloatArray:
     """How much higher places stand in each draw, shape (draw, place)."""
     if mover.survey is None:
         return np.zeros((len(draws), len(places.left)))
-    node_deg = draws.reading_deg[mover.survey] + draws.distance_m[mover.survey] * mover.deg_per_m
+    node_deg = draws.reading_deg[mover.survey] + draws.distance_m[mover.survey] * mover.rise_deg_per_m
     return _at(node_deg, places) + draws.common_deg[:, mover.survey, None]
 
 

@@ -9,7 +9,7 @@ from siteassess.verdict.draws import Draws, some
 from siteassess.verdict.movers import Mover, at_columns_deg, carrier_key, moved_deg, moved_m
 from siteassess.verdict.peaks import Peaks
 from siteassess.verdict.readings import taken_places
-from siteassess.verdict.sky_density import RING_DEG, SkyDensity, below_share, strong_share
+from siteassess.verdict.signal_density import RING_DEG, SignalDensity, below_share, strong_share
 from siteassess.verdict.taken_sky import COLUMN_DEG, COLUMNS, TakenSky
 
 __all__ = ["hidden_shares", "peak_deg", "pieces", "top_deg", "usable_share"]
@@ -36,7 +36,7 @@ def _taken(mover: Mover, carrier_hz: float | None) -> TakenSky:
 
 def usable_share(
     movers: Sequence[Mover],
-    density: SkyDensity,
+    density: SignalDensity,
     carrier_hz: float,
     gain_db: FloatArray,
     floor_deg: float,
@@ -48,7 +48,7 @@ def usable_share(
     ----------
     movers : sequence of Mover
         The skyline, part by part.
-    density : SkyDensity
+    density : SignalDensity
         Where the signal's satellites stand.
     carrier_hz : float
         Its carrier [Hz].

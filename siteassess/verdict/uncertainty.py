@@ -143,7 +143,7 @@ def uncertainty(
 
 
 def _nodes(model: DrawnSite, survey: int) -> int:
-    return sum(len(mover.deg_per_m) for mover in model.movers if mover.survey == survey)
+    return sum(len(mover.rise_deg_per_m) for mover in model.movers if mover.survey == survey)
 
 
 def _key(finding: Finding) -> tuple[str, str | None]:

@@ -1,4 +1,4 @@
-"""Writes the tables of docs/site_file.md that repeat packaged ones: kinds of parts, instruments, and purposes.
+"""Writes the tables of docs/site_file.md that repeat packaged ones: kinds of parts, instruments, purposes.
 
 Run it from the project folder after a change of those tables:
 
@@ -56,9 +56,8 @@ def instruments_table() -> str:
         f"| {row['distance_error_m']} m | {row['source']} ({row['status']}) |"
         for row in packaged_rows("verdict/instrument_classes.csv")
     ]
-    return "\n".join(
-        ["| instrument | azimuth | elevation | distance | rests on |", "| --- | --- | --- | --- | --- |", *rows]
-    )
+    head = "| instrument | azimuth | elevation | distance | rests on |"
+    return "\n".join([head, "| --- | --- | --- | --- | --- |", *rows])
 
 
 def with_tables(page: str) -> str:

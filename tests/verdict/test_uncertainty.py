@@ -169,7 +169,7 @@ def test_a_draw_is_the_whole_assessment_of_a_survey_that_is_off(
     truth = assess(read_site(write_site(horizon=moved)))
     errors = errors_of(azimuth_deg=1.0, elevation_common_deg=1.0)
     model = drawn_site(found.site, found.skyline, found.tracks, found.budget, errors)
-    nodes = sum(len(mover.deg_per_m) for mover in model.movers)
+    nodes = sum(len(mover.rise_deg_per_m) for mover in model.movers)
     draw = Draws(
         azimuth_deg=np.array([[turn_deg]]),
         common_deg=np.array([[up_deg]]),
@@ -202,7 +202,7 @@ def test_a_wrong_distance_moves_what_the_antenna_sees(write_site: WriteSite) -> 
     nearer = degrees(np.arctan2(up_m + 0.1 * sin(radians(60.0)), 20.0 + 0.1 * cos(radians(60.0))))
     rise_deg = nearer - degrees(float(np.arctan2(up_m, 20.0)))
     model = drawn_site(found.site, found.skyline, found.tracks, found.budget, errors)
-    nodes = sum(len(mover.deg_per_m) for mover in model.movers)
+    nodes = sum(len(mover.rise_deg_per_m) for mover in model.movers)
     draws = drawn(
         errors, [nodes], gain_error_db=0.0, power_error_db=0.0, signals=len(model.signals), draws=1, seed=1
     )

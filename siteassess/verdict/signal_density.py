@@ -8,7 +8,7 @@ from numpy.typing import NDArray
 from siteassess.link_budget.budget import SignalBudget, SkySamples
 from siteassess.verdict.taken_sky import COLUMN_DEG, COLUMNS
 
-__all__ = ["SkyDensity", "below_share", "sky_density", "strong_share"]
+__all__ = ["SignalDensity", "below_share", "signal_density", "strong_share"]
 
 FloatArray = NDArray[np.float64]
 IndexArray = NDArray[np.int64]
@@ -18,7 +18,7 @@ LEVEL_STEP_DB = 0.5
 
 
 @dataclass(frozen=True, slots=True, kw_only=True, eq=False)
-class SkyDensity:
+class SignalDensity:
     """Satellite-time of one signal above the mask, as shares of all of it.
 
     Attributes
@@ -41,9 +41,9 @@ class SkyDensity:
     first_deg: float
 
 
-def sky_density(
+def signal_density(
     budget: SignalBudget, samples: SkySamples, weight: FloatArray, first_deg: float
-) -> SkyDensity:
+) -> SignalDensity:
     """The density of one signal.
 
     Parameters
@@ -60,7 +60,7 @@ def sky_density(
     counts = counts[np.argsort(budget.cn0_open_sky_dbhz[counts], kind="stable")]
     at = budget.sample[counts]
     share = own[counts] / max(own.sum(), np.finfo(float).tiny)
-    return SkyDensity(
+    return SignalDensity(
         margin_db=budget.cn0_open_sky_dbhz[counts] - budget.min_cn0_dbhz,
         at_least_share=np.append(np.cumsum(share[::-1])[::-1], 0.0),
         column=np.minimum((samples.azimuth_deg[at] / COLUMN_DEG).astype(np.int64), COLUMNS - 1),
@@ -70,17 +70,17 @@ def sky_density(
     )
 
 
-def strong_share(density: SkyDensity, gain_db: FloatArray) -> FloatArray:
+def strong_share(density: SignalDensity, gain_db: FloatArray) -> FloatArray:
     """Share of the time that is strong enough under an open sky when all comes so much stronger."""
     return density.at_least_share[np.searchsorted(density.margin_db, -gain_db)]
 
 
-def below_share(density: SkyDensity, gain_db: FloatArray) -> tuple[IndexArray, FloatArray]:
+def below_share(density: SignalDensity, gain_db: FloatArray) -> tuple[IndexArray, FloatArray]:
     """What of that lies below elevations, column by column.
 
     Parameters
     ----------
-    density : SkyDensity
+    density : SignalDensity
         The signal.
     gain_db : array, shape (draw,)
         How much stronger all comes.
