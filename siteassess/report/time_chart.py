@@ -2,7 +2,7 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING
+from typing import TYPE_CHECKING, Any
 
 import numpy as np
 from numpy.typing import NDArray
@@ -80,8 +80,13 @@ def _draw_numbers(axes: Axes, timeline: Timeline) -> None:
 def _draw_at_least(axes: Axes, count: NDArray[np.int64], colour: str, width: float) -> None:
     share = at_least_share(count)
     edges = np.arange(len(share) + 1) - 0.5
-    axes.stairs(share, edges, baseline=None, color=colour, linewidth=width)
-    axes.plot([edges[-1]] * 2, [share[-1], 0.0], color=colour, linewidth=width)
+    across, up = _steps(edges, share)
+    axes.plot([*across, edges[-1]], [*up, 0.0], color=colour, linewidth=width)
+
+
+def _steps(edges: NDArray[Any], level: NDArray[Any]) -> tuple[NDArray[Any], NDArray[Any]]:
+    """Corners of a staircase; as a line it draws several times faster than as a patch of its own."""
+    return np.repeat(edges, 2)[1:-1], np.repeat(level, 2)
 
 
 def _draw_pdop(axes: Axes, timeline: Timeline) -> None:
@@ -110,8 +115,8 @@ def _draw_strip(axes: Axes, timeline: Timeline) -> None:
     _frame(axes)
     hours, in_view = _fewest(timeline.in_view[-1], timeline.window_s)
     _, usable = _fewest(timeline.usable[-1], timeline.window_s)
-    axes.stairs(in_view, hours, fill=True, color=IN_VIEW)
-    axes.stairs(usable, hours, fill=True, color=USABLE)
+    axes.fill_between(*_steps(hours, in_view), color=IN_VIEW, linewidth=0.0)
+    axes.fill_between(*_steps(hours, usable), color=USABLE, linewidth=0.0)
     short = timeline.shortfall("satellites", ALL_SYSTEMS)
     axes.axhline(short.limit, color=SHORT, linewidth=0.8, dashes=(4, 2))
     top = 1.08 * max(float(in_view.max()), short.limit)
@@ -120,7 +125,8 @@ def _draw_strip(axes: Axes, timeline: Timeline) -> None:
         -(~(timeline.dilution.position <= timeline.shortfall("PDOP", ALL_SYSTEMS).limit)).astype(np.int64),
         timeline.window_s,
     )
-    axes.stairs(np.where((too_few < 0) | (too_wide < 0), -0.09 * top, 0.0), hours, fill=True, color=SHORT)
+    short_of = np.where((too_few < 0) | (too_wide < 0), -0.09 * top, 0.0)
+    axes.fill_between(*_steps(hours, short_of), color=SHORT, linewidth=0.0)
     axes.axhline(0.0, color=INK, linewidth=0.6)
     axes.set(
         xlim=(0.0, hours[-1]),
