@@ -15,7 +15,7 @@ from siteassess.sky_tracks.tracks import SkyTracks
 from siteassess.verdict.criteria import limit_or_advice
 from siteassess.verdict.draws import Draws, only, some
 from siteassess.verdict.movers import Mover, carrier_key, movers
-from siteassess.verdict.possible_values import hidden_shares, peak_deg, usable_share
+from siteassess.verdict.possible_values import hidden_shares, peak_deg, usable_shares
 from siteassess.verdict.signal_density import SignalDensity, signal_density
 from siteassess.verdict.states import WEAKENED_FROM_DB, sample_weights
 from siteassess.verdict.survey_errors import SurveyErrors
@@ -127,18 +127,21 @@ def _quantity(finding: Finding) -> str:
 
 
 def _quantities(model: DrawnSite, wanted: set[str], draws: Draws) -> dict[str, FloatArray]:
-    found = {}
+    found: dict[str, FloatArray] = {}
+    by_edges: dict[int, list[int]] = {}
     for index, name in enumerate(model.signals):
         if name in wanted:
-            gain_db = draws.gain_db + draws.power_db[:, index]
-            found[name] = usable_share(
-                model.movers,
-                model.densities[index],
-                model.carriers_hz[index],
-                gain_db,
-                model.floor_deg,
-                draws,
-            )
+            by_edges.setdefault(carrier_key(model.carriers_hz[index]), []).append(index)
+    for signals in by_edges.values():
+        shares = usable_shares(
+            model.movers,
+            [model.densities[index] for index in signals],
+            model.carriers_hz[signals[0]],
+            [draws.gain_db + draws.power_db[:, index] for index in signals],
+            model.floor_deg,
+            draws,
+        )
+        found |= {model.signals[index]: share for index, share in zip(signals, shares, strict=True)}
     if wanted & {"max_blocked_sky_share", "max_block_share"}:
         found["max_blocked_sky_share"], found["max_block_share"] = hidden_shares(
             model.movers, model.mask_deg, model.floor_deg, draws

@@ -1,6 +1,6 @@
 """Shares and elevations when the survey and the levels are off: one row a draw."""
 
-from collections.abc import Sequence
+from collections.abc import Iterator, Sequence
 
 import numpy as np
 from numpy.typing import NDArray
@@ -12,7 +12,7 @@ from siteassess.verdict.readings import taken_places
 from siteassess.verdict.signal_density import RING_DEG, SignalDensity, below_share, strong_share
 from siteassess.verdict.taken_sky import COLUMN_DEG, COLUMNS, TakenSky
 
-__all__ = ["hidden_shares", "peak_deg", "pieces", "top_deg", "usable_share"]
+__all__ = ["hidden_shares", "peak_deg", "pieces", "top_deg", "usable_shares"]
 
 FloatArray = NDArray[np.float64]
 IndexArray = NDArray[np.int64]
@@ -34,53 +34,56 @@ def _taken(mover: Mover, carrier_hz: float | None) -> TakenSky:
     return mover.solid if carrier_hz is None else mover.taken[carrier_key(carrier_hz)]
 
 
-def usable_share(
+def usable_shares(
     movers: Sequence[Mover],
-    density: SignalDensity,
+    densities: Sequence[SignalDensity],
     carrier_hz: float,
-    gain_db: FloatArray,
+    gain_db: Sequence[FloatArray],
     floor_deg: float,
     draws: Draws,
 ) -> FloatArray:
-    """Usable share of one signal's satellite-time in each draw.
+    """Usable shares of the satellite-time of signals that the same edges take, shape (signal, draw).
 
     Parameters
     ----------
     movers : sequence of Mover
         The skyline, part by part.
-    density : SignalDensity
-        Where the signal's satellites stand.
+    densities : sequence of SignalDensity
+        Where each signal's satellites stand.
     carrier_hz : float
-        Its carrier [Hz].
-    gain_db : array, shape (draw,)
-        How much stronger it comes [dB].
+        A carrier with these edges [Hz].
+    gain_db : sequence of array, shape (draw,)
+        How much stronger each signal comes [dB].
     floor_deg : float
         Elevation below which an edge takes nothing in any draw [deg].
     draws : Draws
         What is off.
     """
-    strong = strong_share(density, gain_db)
-    level, below = below_share(density, gain_db)
-    rings = below.shape[2]
-    flat = below.ravel()
-
-    def below_at(row: IndexArray, column: IndexArray, elevation_deg: FloatArray) -> FloatArray:
-        ring = np.clip((elevation_deg - density.first_deg) / RING_DEG, 0.0, rings - 1.001)
-        whole = ring.astype(np.int64)
-        place = (row * COLUMNS + column) * rings + whole
-        low = flat[place]
-        return np.asarray(low + (flat[place + 1] - low) * (ring - whole))
-
-    columns = np.arange(COLUMNS)
-    lost = np.empty(len(draws))
+    shares = np.stack([strong_share(one, gain) for one, gain in zip(densities, gain_db, strict=True)])
+    tables = [below_share(one, gain) for one, gain in zip(densities, gain_db, strict=True)]
+    first_deg, rings = densities[0].first_deg, tables[0][1].shape[2]
     for rows in _chunks(len(draws)):
-        part, row = some(draws, rows), level[rows, None]
-        lost[rows] = below_at(row, columns, top_deg(movers, carrier_hz, floor_deg, part)).sum(axis=1)
-        for mover in movers:
-            for weight, column, low_deg, high_deg in pieces(mover, carrier_hz, part):
-                piece = below_at(row, column, high_deg) - below_at(row, column, low_deg)
-                lost[rows] += (weight * piece).sum(axis=1)
-    return np.asarray(strong - lost)
+        for weight, column, elevation_deg in _edges(movers, carrier_hz, floor_deg, some(draws, rows)):
+            ring = np.clip((elevation_deg - first_deg) / RING_DEG, 0.0, rings - 1.001)
+            whole = ring.astype(np.int64)
+            place, part = column * rings + whole, ring - whole
+            for signal, (level, below) in enumerate(tables):
+                flat, at = below.ravel(), place + level[rows, None] * (COLUMNS * rings)
+                low = flat[at]
+                low += (flat[at + 1] - low) * part
+                shares[signal, rows] -= (low if weight is None else weight * low).sum(axis=1)
+    return shares
+
+
+def _edges(
+    movers: Sequence[Mover], carrier_hz: float, floor_deg: float, draws: Draws
+) -> Iterator[tuple[FloatArray | None, IndexArray, FloatArray]]:
+    """Weight (None: 1), column and elevation of edges; what lies below them adds up to what is taken."""
+    yield None, np.arange(COLUMNS), top_deg(movers, carrier_hz, floor_deg, draws)
+    for mover in movers:
+        for weight, column, low_deg, high_deg in pieces(mover, carrier_hz, draws):
+            yield weight, column, high_deg
+            yield -weight, column, low_deg
 
 
 def pieces(
