@@ -417,7 +417,7 @@ class SkyModel(Record):
     power_error_db: Annotated[float, Field(ge=0, le=10)] = Field(
         default=1.0, description="Uncertainty of the power of the signals, one standard deviation [dB]."
     )
-    seed: Annotated[int, Field(ge=0, le=4_294_967_295)] = Field(
+    seed: Annotated[int, Field(ge=0, le=999_999)] = Field(
         default=1, description="Seed of the random draws that say how sure the verdict is."
     )
     tracked: Literal["pilot", "whole-signal"] = Field(

@@ -15,7 +15,7 @@ from siteassess.verdict.readings import Between, between_readings, rise_deg_per_
 from siteassess.verdict.survey_errors import SurveyErrors
 from siteassess.verdict.taken_sky import COLUMN_DEG, COLUMNS, TakenSky, column_azimuth_deg, owners, taken_sky
 
-__all__ = ["Mover", "at_columns_deg", "carrier_key", "moved_deg", "moved_m", "movers"]
+__all__ = ["Mover", "carrier_key", "moved_deg", "moved_m", "movers", "turned_deg", "turns_by_columns"]
 
 FloatArray = NDArray[np.float64]
 IndexArray = NDArray[np.int64]
@@ -150,17 +150,25 @@ def _at(nodes: FloatArray, places: Between) -> FloatArray:
     return np.asarray(left + (nodes[:, places.right] - left) * places.part)
 
 
-def at_columns_deg(mover: Mover, top_deg: FloatArray, draws: Draws, floor_deg: float) -> FloatArray:
-    """An edge at the columns in each draw: turned with its survey and moved up, shape (draw, column)."""
+def turned_deg(mover: Mover, top_deg: FloatArray, turns: IndexArray, floor_deg: float) -> FloatArray:
+    """An edge at the columns, turned with its survey by so many columns, shape (draw, column)."""
     top_deg = np.maximum(top_deg, floor_deg)
     if mover.survey is None:
-        return np.broadcast_to(top_deg, (len(draws), COLUMNS))
-    turn = draws.azimuth_deg[:, mover.survey] / COLUMN_DEG
+        return np.broadcast_to(top_deg, (len(turns), COLUMNS))
+    return np.asarray(top_deg[(np.arange(COLUMNS) - turns[:, mover.survey, None]) % COLUMNS])
+
+
+def turns_by_columns(draws: Draws) -> list[tuple[FloatArray | None, IndexArray]]:
+    """How many columns each survey turns in each draw: weight (None: 1), and turns of shape (draw, survey).
+
+    What one survey turns by a part of a column is shared between two turns. Where several turn, they do so by
+    whole columns, because their edges meet.
+    """
+    turn = draws.azimuth_deg / COLUMN_DEG
+    if np.count_nonzero(turn.any(axis=0)) > 1:
+        return [(None, np.rint(turn).astype(np.int64))]
     whole = np.floor(turn).astype(np.int64)
-    part = (turn - whole)[:, None]
-    # Column c shows what stood at c - turn, between the columns c - whole - 1 and c - whole.
-    behind = (np.arange(COLUMNS) - whole[:, None] - 1) % COLUMNS
-    turned = np.append(top_deg, top_deg[0])
-    turned_deg = turned[behind + 1]
-    turned_deg += (turned[behind] - turned_deg) * part
-    return np.asarray(turned_deg + moved_deg(mover, draws, mover.nodes))
+    part = (turn - whole).sum(axis=1, keepdims=True)
+    if not part.any():
+        return [(None, whole)]
+    return [(1.0 - part, whole), (part, whole + 1)]

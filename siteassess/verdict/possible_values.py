@@ -6,13 +6,13 @@ import numpy as np
 from numpy.typing import NDArray
 
 from siteassess.verdict.draws import Draws, some
-from siteassess.verdict.movers import Mover, at_columns_deg, carrier_key, moved_deg, moved_m
+from siteassess.verdict.movers import Mover, carrier_key, moved_deg, moved_m, turned_deg, turns_by_columns
 from siteassess.verdict.peaks import Peaks
 from siteassess.verdict.readings import taken_places
 from siteassess.verdict.signal_density import RING_DEG, SignalDensity, below_share, strong_share
 from siteassess.verdict.taken_sky import COLUMN_DEG, COLUMNS, TakenSky
 
-__all__ = ["hidden_shares", "peak_deg", "pieces", "top_deg", "usable_shares"]
+__all__ = ["hidden_shares", "peak_deg", "pieces", "tops_deg", "usable_shares"]
 
 FloatArray = NDArray[np.float64]
 IndexArray = NDArray[np.int64]
@@ -21,13 +21,25 @@ DRAWS_AT_ONCE = 128  # so that a table of draws by columns stays in the processo
 OPEN_SHARE = 1e-9
 
 
-def top_deg(movers: Sequence[Mover], carrier_hz: float | None, floor_deg: float, draws: Draws) -> FloatArray:
-    """Elevation below which all is taken from a carrier, or hidden, shape (draw, column)."""
-    highest_deg = np.full((len(draws), COLUMNS), floor_deg)
-    for mover in movers:
-        own_deg = at_columns_deg(mover, _taken(mover, carrier_hz).top_deg, draws, floor_deg)
-        np.maximum(highest_deg, own_deg, out=highest_deg)
-    return highest_deg
+def tops_deg(
+    movers: Sequence[Mover], carrier_hz: float | None, floor_deg: float, draws: Draws
+) -> list[tuple[FloatArray | None, FloatArray]]:
+    """Elevation below which all is taken from a carrier, or hidden, as one or two weighted cases.
+
+    Returns
+    -------
+    list of tuple
+        Weight of shape (draw, 1), None for 1, and elevation of shape (draw, column).
+    """
+    up_deg = [moved_deg(mover, draws, mover.nodes) for mover in movers]
+    cases = []
+    for weight, turns in turns_by_columns(draws):
+        highest_deg = np.full((len(draws), COLUMNS), floor_deg)
+        for mover, up in zip(movers, up_deg, strict=True):
+            own_deg = turned_deg(mover, _taken(mover, carrier_hz).top_deg, turns, floor_deg) + up
+            np.maximum(highest_deg, own_deg, out=highest_deg)
+        cases.append((weight, highest_deg))
+    return cases
 
 
 def _taken(mover: Mover, carrier_hz: float | None) -> TakenSky:
@@ -79,7 +91,8 @@ def _edges(
     movers: Sequence[Mover], carrier_hz: float, floor_deg: float, draws: Draws
 ) -> Iterator[tuple[FloatArray | None, IndexArray, FloatArray]]:
     """Weight (None: 1), column and elevation of edges; what lies below them adds up to what is taken."""
-    yield None, np.arange(COLUMNS), top_deg(movers, carrier_hz, floor_deg, draws)
+    for weight, top_deg in tops_deg(movers, carrier_hz, floor_deg, draws):
+        yield weight, np.arange(COLUMNS), top_deg
     for mover in movers:
         for weight, column, low_deg, high_deg in pieces(mover, carrier_hz, draws):
             yield weight, column, high_deg
@@ -125,7 +138,9 @@ def hidden_shares(
     blocked, block = np.empty((2, len(draws)))
     for rows in _chunks(len(draws)):
         part = some(draws, rows)
-        hidden = above_mask(top_deg(movers, None, floor_deg, part))
+        hidden = np.zeros((len(part), COLUMNS))
+        for share, top_deg in tops_deg(movers, None, floor_deg, part):
+            hidden += above_mask(top_deg) if share is None else share * above_mask(top_deg)
         for mover in movers:
             for weight, column, low_deg, high_deg in pieces(mover, None, part):
                 piece = weight * (above_mask(high_deg) - above_mask(low_deg))

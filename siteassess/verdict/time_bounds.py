@@ -13,7 +13,7 @@ from siteassess.verdict.counts import joint_samples
 from siteassess.verdict.drawn_site import DrawnSite
 from siteassess.verdict.draws import Draws, only
 from siteassess.verdict.over_time import over_time
-from siteassess.verdict.possible_values import pieces, top_deg
+from siteassess.verdict.possible_values import pieces, tops_deg
 from siteassess.verdict.states import sample_states, sample_weights
 from siteassess.verdict.taken_sky import COLUMN_DEG, COLUMNS
 from siteassess.verdict.time_findings import time_findings
@@ -80,7 +80,10 @@ def _usable(
     column = np.minimum((samples.azimuth_deg[signal.sample] / COLUMN_DEG).astype(np.int64), COLUMNS - 1)
     elevation_deg = samples.apparent_elevation_deg[signal.sample]
     usable = signal.cn0_open_sky_dbhz + gain_db >= signal.min_cn0_dbhz
-    usable &= elevation_deg >= top_deg(model.movers, carrier_hz, model.floor_deg, draw)[0, column]
+    # Of an edge shared between two turns the case with the larger weight stands for both.
+    cases = tops_deg(model.movers, carrier_hz, model.floor_deg, draw)
+    _, top_deg = max(cases, key=lambda case: 1.0 if case[0] is None else float(case[0][0, 0]))
+    usable &= elevation_deg >= top_deg[0, column]
     for low_deg, high_deg in _hanging(model, carrier_hz, draw):
         usable &= (elevation_deg < low_deg[column]) | (elevation_deg >= high_deg[column])
     return np.asarray(usable, dtype=np.bool_)
