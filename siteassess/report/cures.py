@@ -7,6 +7,7 @@ from typing import TYPE_CHECKING
 from siteassess.report.phrases import in_unit, number, percent, plain
 from siteassess.report.pieces import Section, Table
 from siteassess.verdict.criteria import read_criteria
+from siteassess.verdict.heights import is_asked
 from siteassess.wording import listed
 
 if TYPE_CHECKING:
@@ -53,6 +54,11 @@ def _asked_now(mask_deg: float | None) -> str:
 
 def _no_heights(assessment: Assessment) -> str:
     mount = assessment.site.mount
+    if not is_asked(assessment.site, assessment.verdict):
+        return (
+            "Nothing required is missed, so no taller mast was looked at. With max_mast_height_m in the site "
+            "file the report shows what one would bring."
+        )
     if mount.max_mast_height_m == mount.mast_height_m:
         return "The mast is as tall as the site file allows."
     return (

@@ -16,7 +16,7 @@ from siteassess.verdict.angular_shares import noise_gain_db, usable_weights, wit
 from siteassess.verdict.criteria import read_criteria
 from siteassess.verdict.verdict import Finding, Verdict
 
-__all__ = ["DEFAULT_RISE_M", "HeightStep", "Heights", "at_height", "heights", "highest_mast_m"]
+__all__ = ["DEFAULT_RISE_M", "HeightStep", "Heights", "at_height", "heights", "highest_mast_m", "is_asked"]
 
 HEIGHTS = 21
 DEFAULT_RISE_M = 5.0  # own default, where the site file names no tallest mast
@@ -98,6 +98,11 @@ def at_height(site: Site, mast_height_m: float) -> Site:
     return site.model_copy(update={"mount": mount.model_copy(update=update), "horizon": sources})
 
 
+def is_asked(site: Site, verdict: Verdict) -> bool:
+    """Whether to look at taller masts: something is missed, or the site file names a tallest one."""
+    return bool(_missed(verdict)) or site.mount.max_mast_height_m is not None
+
+
 def heights(
     site: Site,
     skyline: Skyline,
@@ -105,7 +110,10 @@ def heights(
     verdict: Verdict,
     assessed_at: Callable[[float], Verdict],
 ) -> Heights | None:
-    """What a taller mast brings; None where no obstacle carries a distance, so that nothing would change.
+    """What a taller mast brings.
+
+    None where no obstacle carries a distance, so that nothing would change, and where nothing required is
+    missed and the site file names no tallest mast, so that nobody asked.
 
     Parameters
     ----------
@@ -116,6 +124,8 @@ def heights(
     assessed_at : function
         The verdict of a whole assessment with a mast of a given height [m].
     """
+    if not is_asked(site, verdict):
+        return None
     present_m, highest_m = site.mount.mast_height_m, highest_mast_m(site.mount)
     known = [obstacle for obstacle in skyline.obstacles if obstacle.distance_m is not None]
     if not known or highest_m == present_m:

@@ -39,6 +39,7 @@ def main() -> None:
     parser.add_argument("--quick", action="store_true", help="one repeat each")
     repeats = 1 if parser.parse_args().quick else 9
     os.environ["MPLBACKEND"] = "agg"
+    os.environ.pop("PYTHONDONTWRITEBYTECODE", None)  # an installed package has its byte code
     siteassess = [sys.executable, "-m", "siteassess"]
     with tempfile.TemporaryDirectory() as folder:
         site = str(Path(folder) / "site")

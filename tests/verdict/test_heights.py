@@ -139,8 +139,10 @@ def test_survey_stays_where_it_was_made_and_the_roof_below(behind_a_wall: Callab
 
 
 def test_passing_site_keeps_its_mast(behind_a_wall: Callable[..., Site]) -> None:
-    site = behind_a_wall(("min_cn0_dbhz = 33", "min_cn0_dbhz = 33\nmin_usable_share = 0.5"))
-    heights = found_heights(site)
+    lenient = ("min_cn0_dbhz = 33", "min_cn0_dbhz = 33\nmin_usable_share = 0.5")
+    assert found_heights(behind_a_wall(lenient)) is None
+    named = ("mast_height_m = 1.5", "mast_height_m = 1.5\nmax_mast_height_m = 4.0")
+    heights = found_heights(behind_a_wall(lenient, named))
     assert heights is not None
     assert heights.lowest_passing_m == 1.5
     assert heights.missed_at_highest == ()
