@@ -19,7 +19,7 @@ BoolArray = NDArray[np.bool_]
 COLUMNS = 360
 COLUMN_DEG = 360.0 / COLUMNS
 SCAN_STEP_DEG = 1.0
-HALVINGS = 6  # of the scan's step: 0.02 degrees
+LOOKS, PARTS = 2, 8  # how often a step of the scan is cut, and into how many: 0.02 degrees
 # Farther from an edge than this it costs less than 1 dB, even an edge 2 m away.
 REACH_DEG = 8.0
 
@@ -99,7 +99,7 @@ def taken_sky(
     order = np.lexsort((level, column))
     level, column = level[order], column[order]
     opens = taken[level, column]  # taken below, open above
-    edge_deg = _halved(is_taken, azimuth_deg[column], level_deg[level], opens)
+    edge_deg = _narrowed(is_taken, azimuth_deg[column], level_deg[level], opens)
     # Nothing is taken at 90 degrees, so after the ground's own edge they come in pairs.
     of_ground = opens & taken[0, column]
     of_ground[1:] &= column[1:] != column[:-1]
@@ -139,16 +139,20 @@ def _reach_deg(skyline: Skyline, azimuth_deg: FloatArray, outline_deg: FloatArra
     return np.asarray(np.minimum(beside.max(axis=1) + REACH_DEG, 90.0 - SCAN_STEP_DEG))
 
 
-def _halved(
+def _narrowed(
     is_taken: Callable[[FloatArray, FloatArray], BoolArray],
     azimuth_deg: FloatArray,
     low_deg: FloatArray,
     opens: BoolArray,
 ) -> FloatArray:
-    """Elevations at which the sky opens, or closes, within a step of the scan."""
+    """Elevations at which the sky opens, or closes, within a step of the scan.
+
+    Few looks at many directions: each look costs a pass over all obstacles.
+    """
     low_deg, step_deg = low_deg.copy(), SCAN_STEP_DEG
-    for _ in range(HALVINGS):
-        step_deg /= 2.0
-        as_below = is_taken(azimuth_deg, low_deg + step_deg) == opens
-        low_deg[as_below] += step_deg
+    for _ in range(LOOKS):
+        step_deg /= PARTS
+        level_deg = low_deg + step_deg * np.arange(1, PARTS)[:, None]
+        taken = is_taken(np.tile(azimuth_deg, PARTS - 1), level_deg.ravel()).reshape(level_deg.shape)
+        low_deg += step_deg * np.cumprod(taken == opens, axis=0).sum(axis=0)
     return np.asarray(low_deg + step_deg / 2.0)
