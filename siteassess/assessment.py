@@ -11,18 +11,18 @@ from siteassess.horizon.read import read_skyline
 from siteassess.horizon.skyline import Skyline
 from siteassess.link_budget.assemble import link_budget
 from siteassess.link_budget.budget import LinkBudget
-from siteassess.link_budget.read import read_chain, read_kinds
+from siteassess.link_budget.chain.read import read_chain, read_kinds
 from siteassess.orbits.constellations import nominal_orbits
 from siteassess.site_file.model import Part, Site
 from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
+from siteassess.verdict.cures.what_if import Change, what_if
 from siteassess.verdict.judge import judge
-from siteassess.verdict.uncertainty import Uncertainty, uncertainty
+from siteassess.verdict.uncertainty.how_sure import Uncertainty, uncertainty
 from siteassess.verdict.verdict import Verdict
-from siteassess.verdict.what_if import Change, what_if
 
 if TYPE_CHECKING:
-    from siteassess.verdict.explanation import Explanation
+    from siteassess.verdict.cures.explanation import Explanation
 
 __all__ = ["Assessment", "assess", "assess_file", "explained"]
 
@@ -111,8 +111,8 @@ def explained(assessment: Assessment) -> Assessment:
         What :func:`assess` returned.
     """
     # Loaded here, because most runs ask for the verdict alone.
-    from siteassess.verdict.explanation import explanation
-    from siteassess.verdict.heights import at_height
+    from siteassess.verdict.cures.explanation import explanation
+    from siteassess.verdict.cures.heights import at_height
 
     site, pattern, tracks = assessment.site, assessment.pattern, assessment.tracks
 

@@ -16,7 +16,7 @@ import click
 from siteassess.errors import SiteAssessError
 
 if TYPE_CHECKING:
-    from siteassess.report.sheet import Paper
+    from siteassess.report.sheet.form import Paper
     from siteassess.site_file.model import Site
 
 __all__ = ["main"]
@@ -227,7 +227,7 @@ def sheet(out: Path, paper: "Paper") -> None:
     """
     if out.suffix.lower() != ".pdf":
         raise click.BadParameter("the form is a PDF: its name must end in .pdf", param_hint="--out")
-    from siteassess.report.sheet import write_sheet
+    from siteassess.report.sheet.form import write_sheet
 
     write_sheet(out, paper)
     _tell(f"Form written to {out}")
@@ -258,7 +258,7 @@ def antenna(pattern: str, out: Path | None, as_json: bool) -> None:
 
     gain = named_pattern(pattern)
     if out is not None:
-        from siteassess.report.antenna_plot import antenna_svg, write_svg
+        from siteassess.report.figures.antenna_plot import antenna_svg, write_svg
 
         write_svg(out, antenna_svg(gain))
     if as_json:
@@ -310,16 +310,16 @@ def rank(
         if folder is not None and ranking.sites:
             import logging
 
-            from siteassess.report.write_ranking import write_ranking
+            from siteassess.report.ranking.write import write_ranking
 
             logging.getLogger("matplotlib").setLevel(logging.ERROR)
             write_ranking(ranking, folder, step)
     if ranking.sites and as_json:
-        from siteassess.report.ranking_results import ranking_json
+        from siteassess.report.ranking.results import ranking_json
 
         click.echo(ranking_json(ranking).encode(), nl=False)
     elif ranking.sites and not quiet:
-        from siteassess.report.ranking_summary import ranking_lines
+        from siteassess.report.ranking.summary import ranking_lines
 
         for line in ranking_lines(ranking):
             click.echo(line)
@@ -366,16 +366,16 @@ def changes(old: Path, new: Path, out: Path | None, as_json: bool, quiet: bool) 
         if out is not None:
             import logging
 
-            from siteassess.report.write_resurvey import write_resurvey
+            from siteassess.report.resurvey.write import write_resurvey
 
             logging.getLogger("matplotlib").setLevel(logging.ERROR)
             write_resurvey(found, out, step)
     if as_json:
-        from siteassess.report.resurvey_results import resurvey_json
+        from siteassess.report.resurvey.results import resurvey_json
 
         click.echo(resurvey_json(found).encode(), nl=False)
     elif not quiet:
-        from siteassess.report.resurvey_results import resurvey_lines
+        from siteassess.report.resurvey.results import resurvey_lines
 
         for line in resurvey_lines(found):
             click.echo(line)

@@ -66,7 +66,7 @@ def packaged_header(path: str) -> dict[str, str]:
     Parameters
     ----------
     path : str
-        Such as "link_budget/signals.csv", relative to the package.
+        Such as "link_budget/power/signals.csv", relative to the package.
 
     Returns
     -------

@@ -33,7 +33,7 @@ MAY_IMPORT = {
 
 # What a run that only prints JSON must not load, and what may load it inside a function.
 HEAVY = {"pandas", "matplotlib", "jinja2", "typst", "shapely", "pyproj", "pygeomag"}
-MAY_LOAD_HEAVY = {"report/skyplot.py", "report/panorama.py"}
+MAY_LOAD_HEAVY = {"report/figures/skyplot.py", "report/figures/panorama.py"}
 
 
 def module_paths() -> list[Path]:

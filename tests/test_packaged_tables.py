@@ -27,13 +27,13 @@ WITHOUT_UNIT = {"slot", "advice_limit", "value", "order", "f", "g"}
 
 # A blank cell means something in these columns; everywhere else it is a gap.
 MAY_BE_BLANK = {
-    "link_budget/beam.csv": {"gps_l1_ca_dbw", "gps_l1_p_dbw", "gps_l2_p_dbw"},  # peaks lie apart
-    "link_budget/parts.csv": {  # a kind has what its construction has
+    "link_budget/power/beam.csv": {"gps_l1_ca_dbw", "gps_l1_p_dbw", "gps_l2_p_dbw"},  # peaks lie apart
+    "link_budget/chain/parts.csv": {  # a kind has what its construction has
         *("k1_db_per_100m", "k2_db_per_100m", "ohm_per_100m", "loss_db", "gain_db", "noise_figure_db"),
         *("supply_voltage_v", "supply_current_ma", "min_supply_voltage_v", "max_supply_voltage_v"),
         "passes_supply",
     },
-    "link_budget/signals.csv": {"meo_dbw", "igso_dbw", "geo_dbw", "atmosphere_included_db"},
+    "link_budget/power/signals.csv": {"meo_dbw", "igso_dbw", "geo_dbw", "atmosphere_included_db"},
     "orbits/beidou.csv": {
         *("node_deg", "argument_of_latitude_deg", "crossing_longitude_deg"),
         *("nodal_period_s", "held_revolutions_per_day"),
@@ -106,7 +106,7 @@ def test_rows_are_told_apart_by_their_key(name: str) -> None:
     assert len(set(keys)) == len(keys)
 
 
-@pytest.mark.parametrize("name", [*PATTERNS, "link_budget/beam.csv"])
+@pytest.mark.parametrize("name", [*PATTERNS, "link_budget/power/beam.csv"])
 def test_elevations_ascend(name: str) -> None:
     assert np.all(np.diff(packaged_columns(name)["elevation_deg"]) > 0)
 
@@ -120,15 +120,15 @@ def test_pattern_covers_the_sphere_in_even_steps(name: str) -> None:
 
 
 def test_beam_curves_reach_from_5_degrees_to_the_zenith() -> None:
-    table = packaged_columns("link_budget/beam.csv")
+    table = packaged_columns("link_budget/power/beam.csv")
     assert table["elevation_deg"][[0, -1]].tolist() == [5.0, 90.0]
     for column, level_dbw in table.items():
         assert np.all(np.isfinite(level_dbw[[0, -1]])), column
 
 
 def test_signals_lie_in_the_navigation_bands_and_are_sent_by_somebody() -> None:
-    beams = {"flat", *packaged_columns("link_budget/beam.csv")}
-    for row in packaged_rows("link_budget/signals.csv"):
+    beams = {"flat", *packaged_columns("link_budget/power/beam.csv")}
+    for row in packaged_rows("link_budget/power/signals.csv"):
         carrier_hz = float(row["carrier_hz"])
         assert any(low <= carrier_hz <= high for low, high in NAVIGATION_BANDS_HZ), row["signal"]
         assert row["beam"] in beams
@@ -137,7 +137,7 @@ def test_signals_lie_in_the_navigation_bands_and_are_sent_by_somebody() -> None:
 
 
 def test_every_signal_has_satellites_in_the_constellation_tables() -> None:
-    for row in packaged_rows("link_budget/signals.csv"):
+    for row in packaged_rows("link_budget/power/signals.csv"):
         satellites = packaged_rows(f"orbits/{row['system'].lower()}.csv")
         classes = {satellite["orbit_class"].lower() for satellite in satellites}
         assert {name for name in ("meo", "igso", "geo") if row[f"{name}_dbw"]} <= classes

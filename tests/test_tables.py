@@ -46,7 +46,7 @@ def refusal(folder: Path, text: str | bytes) -> str:
 
 
 def test_packaged_rows_are_texts_and_blank_cells_are_empty() -> None:
-    row = next(row for row in packaged_rows("link_budget/signals.csv") if row["signal"] == "BeiDou B1C")
+    row = next(row for row in packaged_rows("link_budget/power/signals.csv") if row["signal"] == "BeiDou B1C")
     assert (row["carrier_hz"], row["geo_dbw"], row["status"]) == ("1575420000", "", "seen")
 
 

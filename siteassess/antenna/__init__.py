@@ -1,0 +1,1 @@
+"""What the antenna does with direction."""

@@ -1,0 +1,1 @@
+"""Many sites, and one site twice."""

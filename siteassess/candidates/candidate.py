@@ -9,8 +9,8 @@ from siteassess.assessment import Assessment
 from siteassess.errors import Mistake
 from siteassess.horizon.shares import SkyShares
 from siteassess.site_file.model import Requirements, SkyModel
-from siteassess.verdict.counts import ALL_SYSTEMS
 from siteassess.verdict.criteria import read_criteria
+from siteassess.verdict.time.counts import ALL_SYSTEMS
 from siteassess.verdict.verdict import Finding, SignalShares, UsableCount
 
 __all__ = ["Candidate", "RefusedCandidate", "candidate_of", "room"]

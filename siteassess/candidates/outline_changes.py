@@ -9,7 +9,7 @@ from numpy.typing import NDArray
 
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.view import edge_elevation_deg, outline_elevation_deg
-from siteassess.verdict.survey_errors import SurveyErrors
+from siteassess.verdict.uncertainty.survey_errors import SurveyErrors
 
 __all__ = [
     "STEP_DEG",

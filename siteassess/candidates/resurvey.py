@@ -10,10 +10,10 @@ from typing import Literal
 from siteassess.assessment import Assessment, assess_file
 from siteassess.candidates.outline_changes import OutlineChange, Tolerance, outline_changes, tolerance
 from siteassess.errors import InputError, Mistake, gather
-from siteassess.horizon.plan import east_north_m
+from siteassess.horizon.buildings.plan import east_north_m
 from siteassess.site_file.model import Site
 from siteassess.verdict.criteria import read_criteria
-from siteassess.verdict.survey_errors import survey_errors
+from siteassess.verdict.uncertainty.survey_errors import survey_errors
 from siteassess.verdict.verdict import Finding, ObstacleCost
 
 __all__ = [

@@ -1,0 +1,1 @@
+"""What hides the sky."""

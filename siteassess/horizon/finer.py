@@ -4,8 +4,8 @@ from dataclasses import fields
 
 import numpy as np
 
-from siteassess.horizon.carry import Points
 from siteassess.horizon.curves import FloatArray, IndexArray, between_on_great_circle
+from siteassess.horizon.survey.carry import Points
 
 __all__ = ["cut_off", "with_other_lines"]
 

@@ -4,8 +4,8 @@ from dataclasses import replace
 
 import numpy as np
 
-from siteassess.horizon.survey_checks import cover_of
-from siteassess.horizon.survey_rows import Rows
+from siteassess.horizon.survey.checks import cover_of
+from siteassess.horizon.survey.rows import Rows
 
 __all__ = ["grown"]
 

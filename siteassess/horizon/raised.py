@@ -4,10 +4,10 @@ from dataclasses import replace
 
 import numpy as np
 
-from siteassess.horizon.carry import Points, carried
 from siteassess.horizon.curves import FloatArray
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import Obstacle, Skyline
+from siteassess.horizon.survey.carry import Points, carried
 
 __all__ = ["keeps_its_angles", "raised"]
 

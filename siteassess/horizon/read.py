@@ -9,14 +9,14 @@ from pathlib import Path
 import numpy as np
 
 from siteassess.errors import InputError, gather
-from siteassess.horizon.bearings import north_turn
+from siteassess.horizon.buildings.read import Outlines, read_outlines
 from siteassess.horizon.disagreement import SURVEY_ERRORS_DEG, Source, disagreements
 from siteassess.horizon.looked_at import gaps_between
 from siteassess.horizon.outline import upper_envelope
-from siteassess.horizon.outlines import Outlines, read_outlines
 from siteassess.horizon.skyline import Skyline
-from siteassess.horizon.survey import Survey, read_survey
-from siteassess.horizon.terrain import Terrain, read_terrain
+from siteassess.horizon.survey.bearings import north_turn
+from siteassess.horizon.survey.read import Survey, read_survey
+from siteassess.horizon.terrain.read import Terrain, read_terrain
 from siteassess.site_file.model import HorizonSource, Site
 from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.tables import packaged_rows
@@ -105,7 +105,7 @@ def _stated(block: HorizonSource, key: str) -> float | None:
     own: float | None = getattr(block, key)
     if own is not None or block.instrument is None:
         return own
-    classes = {row["instrument"]: row for row in packaged_rows("verdict/instrument_classes.csv")}
+    classes = {row["instrument"]: row for row in packaged_rows("verdict/uncertainty/instrument_classes.csv")}
     return float(classes[block.instrument][key])
 
 

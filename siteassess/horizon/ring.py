@@ -4,8 +4,8 @@ from dataclasses import replace
 
 import numpy as np
 
-from siteassess.horizon.carry import Points
 from siteassess.horizon.curves import NOTHING_DEG, BoolArray
+from siteassess.horizon.survey.carry import Points
 
 __all__ = ["closed_ring", "opened_ring"]
 

@@ -11,11 +11,11 @@ from dataclasses import replace
 
 import numpy as np
 
-from siteassess.horizon.carry import Points
 from siteassess.horizon.curves import BoolArray, FloatArray
 from siteassess.horizon.finer import cut_off, with_other_lines
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import GENERAL_SKYLINE, Obstacle, Skyline
+from siteassess.horizon.survey.carry import Points
 
 __all__ = ["COLUMNS", "horizon_csv"]
 

@@ -1,0 +1,1 @@
+"""How strong what arrives is."""

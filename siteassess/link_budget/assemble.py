@@ -11,11 +11,11 @@ from siteassess.antenna.pattern import GainPattern
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.view import hiding_obstacle, is_unsurveyed
 from siteassess.link_budget.budget import BudgetLines, LinkBudget, SignalBudget, SkySamples
-from siteassess.link_budget.noise import chain_noise
-from siteassess.link_budget.power import received_power
-from siteassess.link_budget.receive_chain import ChainNoise
-from siteassess.link_budget.signals import Signal, read_signals
-from siteassess.link_budget.way_in import skyline_loss_db
+from siteassess.link_budget.chain.receive_chain import ChainNoise
+from siteassess.link_budget.noise.chain_noise import chain_noise
+from siteassess.link_budget.obstacles.way_in import skyline_loss_db
+from siteassess.link_budget.power.received import received_power
+from siteassess.link_budget.power.signals import Signal, read_signals
 from siteassess.site_file.model import Site
 from siteassess.sky_tracks.refraction import apparent_elevation_deg
 from siteassess.sky_tracks.tracks import SkyTracks

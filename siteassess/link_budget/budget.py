@@ -5,8 +5,8 @@ from dataclasses import dataclass
 import numpy as np
 from numpy.typing import NDArray
 
-from siteassess.link_budget.receive_chain import ChainNoise
-from siteassess.link_budget.signals import Signal
+from siteassess.link_budget.chain.receive_chain import ChainNoise
+from siteassess.link_budget.power.signals import Signal
 
 __all__ = ["BudgetLines", "LinkBudget", "SignalBudget", "SkySamples"]
 

@@ -4,27 +4,27 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from siteassess.report.answers import VERDICTS, answers
-from siteassess.report.causes import causes_section
-from siteassess.report.chain import chain_section
-from siteassess.report.changes import changes_section
-from siteassess.report.cures import cures_section
-from siteassess.report.how_sure import how_sure_section
-from siteassess.report.levels import antenna_section, budget_section
-from siteassess.report.noise import noise_section
-from siteassess.report.outcomes import (
+from siteassess.report.phrases import azimuth_range, number, plain
+from siteassess.report.pieces import Content, Section, Table
+from siteassess.report.sections.answers import VERDICTS, answers
+from siteassess.report.sections.causes import causes_section
+from siteassess.report.sections.chain import chain_section
+from siteassess.report.sections.changes import changes_section
+from siteassess.report.sections.cures import cures_section
+from siteassess.report.sections.how_sure import how_sure_section
+from siteassess.report.sections.levels import antenna_section, budget_section
+from siteassess.report.sections.noise import noise_section
+from siteassess.report.sections.outcomes import (
     findings_section,
     obstacles_section,
     satellites_section,
     sectors_section,
     signals_section,
 )
-from siteassess.report.over_time import over_time_section
-from siteassess.report.phrases import azimuth_range, number, plain
-from siteassess.report.pieces import Content, Section, Table
-from siteassess.report.setting import CAUTIONS, LIMITS, assumptions
-from siteassess.report.sources import disagreement_tables
-from siteassess.verdict.survey_errors import stated_errors
+from siteassess.report.sections.over_time import over_time_section
+from siteassess.report.sections.setting import CAUTIONS, LIMITS, assumptions
+from siteassess.report.sections.sources import disagreement_tables
+from siteassess.verdict.uncertainty.survey_errors import stated_errors
 from siteassess.wording import listed
 
 if TYPE_CHECKING:

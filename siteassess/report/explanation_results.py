@@ -10,7 +10,7 @@ from siteassess.verdict.criteria import read_criteria
 
 if TYPE_CHECKING:
     from siteassess.assessment import Assessment
-    from siteassess.verdict.heights import Heights
+    from siteassess.verdict.cures.heights import Heights
 
 __all__ = ["causes_record", "cures_record"]
 

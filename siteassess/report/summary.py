@@ -4,8 +4,8 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING
 
-from siteassess.report.answers import VERDICTS, answers
 from siteassess.report.phrases import number, percent, plain
+from siteassess.report.sections.answers import VERDICTS, answers
 
 if TYPE_CHECKING:
     from siteassess.assessment import Assessment

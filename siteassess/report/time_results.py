@@ -6,13 +6,13 @@ from typing import TYPE_CHECKING, Any
 
 from siteassess.report.plain_json import rounded
 from siteassess.sky_tracks.dilution import not_exceeded
-from siteassess.verdict.counts import at_least_share, number_reached
+from siteassess.verdict.time.counts import at_least_share, number_reached
 
 if TYPE_CHECKING:
     from numpy.typing import NDArray
 
     from siteassess.sky_tracks.dilution import Dilution
-    from siteassess.verdict.timeline import Shortfall, Timeline
+    from siteassess.verdict.time.timeline import Shortfall, Timeline
 
 __all__ = ["DILUTIONS", "DILUTION_SHARES", "time_record"]
 

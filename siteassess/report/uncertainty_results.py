@@ -9,7 +9,7 @@ from siteassess.verdict.criteria import read_criteria
 
 if TYPE_CHECKING:
     from siteassess.assessment import Assessment
-    from siteassess.verdict.uncertainty import FindingSpread
+    from siteassess.verdict.uncertainty.how_sure import FindingSpread
 
 __all__ = ["uncertainty_record"]
 

@@ -44,7 +44,7 @@ def _files(assessment: Assessment, tell: Callable[[str], None]) -> Iterator[NewF
     """The files of the report, the figures being drawn once."""
     from siteassess.report.content import report_content
     from siteassess.report.document import document_pdf
-    from siteassess.report.figures import report_figures
+    from siteassess.report.figures.all_figures import report_figures
     from siteassess.report.page import page_html
     from siteassess.report.results import json_text
     from siteassess.report.satellite_table import csv_text

@@ -63,7 +63,7 @@ def write_horizon(
 
 def _files(skyline: Skyline, shares: SkyShares, mask_deg: float) -> Iterator[NewFile]:
     from siteassess.horizon.written import horizon_csv
-    from siteassess.report.source_panorama import source_panorama_svg
+    from siteassess.report.figures.source_panorama import source_panorama_svg
 
     yield NewFile("horizon.csv", lambda: horizon_csv(skyline).encode(), "writing the horizon")
     yield NewFile(

@@ -11,8 +11,8 @@ from typing import Any
 from pydantic import ValidationError
 
 from siteassess.errors import InputError, Mistake
-from siteassess.site_file.bearing_checks import bearing_mistakes
-from siteassess.site_file.checks import Sections, cross_mistakes, signals_of, systems_of
+from siteassess.site_file.checks.bearings import bearing_mistakes
+from siteassess.site_file.checks.cross import Sections, cross_mistakes, signals_of, systems_of
 from siteassess.site_file.criteria_sets import with_criteria_set
 from siteassess.site_file.legible import legible_site
 from siteassess.site_file.model import Place, Position, Site, SkyModel

@@ -1,0 +1,1 @@
+"""The sky seen from the site."""

@@ -6,8 +6,8 @@ from numpy.typing import NDArray
 from siteassess.horizon.shares import SkyShares
 from siteassess.horizon.skyline import Obstacle, Skyline
 from siteassess.link_budget.budget import LinkBudget, SkySamples
-from siteassess.link_budget.foliage import FOLIAGE_MODELS, leaves_loss_db
-from siteassess.link_budget.thin import grazes, is_thin, loss_behind_db
+from siteassess.link_budget.obstacles.foliage import FOLIAGE_MODELS, leaves_loss_db
+from siteassess.link_budget.obstacles.thin import grazes, is_thin, loss_behind_db
 from siteassess.verdict.states import SampleStates
 from siteassess.verdict.verdict import ObstacleCost, SectorShare
 

@@ -11,15 +11,15 @@ from siteassess.link_budget.budget import LinkBudget
 from siteassess.site_file.model import Requirements, Site
 from siteassess.sky_tracks.tracks import SkyTracks
 from siteassess.verdict.causes import obstacle_costs, sector_shares
-from siteassess.verdict.chain_findings import chain_findings
-from siteassess.verdict.counts import joint_samples, usable_counts
-from siteassess.verdict.findings import site_findings, worst_first
-from siteassess.verdict.growth_findings import growth_findings
-from siteassess.verdict.near_findings import near_findings
-from siteassess.verdict.over_time import over_time
+from siteassess.verdict.findings.chain import chain_findings
+from siteassess.verdict.findings.growth import growth_findings
+from siteassess.verdict.findings.near import near_findings
+from siteassess.verdict.findings.over_time import time_findings
+from siteassess.verdict.findings.site_findings import site_findings, worst_first
 from siteassess.verdict.shares import satellite_shares, signal_shares
 from siteassess.verdict.states import SampleStates, sample_states, sample_weights, share
-from siteassess.verdict.time_findings import time_findings
+from siteassess.verdict.time.counts import joint_samples, usable_counts
+from siteassess.verdict.time.over_time import over_time
 from siteassess.verdict.verdict import Finding, SignalShares, Verdict
 
 __all__ = ["judge"]

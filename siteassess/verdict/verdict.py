@@ -5,7 +5,7 @@ from dataclasses import dataclass, field
 from typing import Literal
 
 from siteassess.horizon.shares import SkyShares
-from siteassess.verdict.timeline import Timeline
+from siteassess.verdict.time.timeline import Timeline
 
 __all__ = [
     "Finding",

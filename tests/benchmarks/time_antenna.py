@@ -15,7 +15,7 @@ from siteassess.antenna.mount import mounted_gain_dbic
 from siteassess.antenna.pattern import GainPattern
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import Obstacle, Skyline
-from siteassess.link_budget.antenna_noise import antenna_noise
+from siteassess.link_budget.noise.antenna_noise import antenna_noise
 from siteassess.site_file.model import Mount
 
 L1_HZ = 1575.42e6

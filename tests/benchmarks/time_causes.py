@@ -10,9 +10,9 @@ from pathlib import Path
 
 from siteassess.assessment import assess_file, explained
 from siteassess.report.results import json_text
-from siteassess.verdict.angular import angular_form
-from siteassess.verdict.heights import heights
-from siteassess.verdict.returns import lost_sky, returned_alone, returned_in_order
+from siteassess.verdict.cures.angular import angular_form
+from siteassess.verdict.cures.heights import heights
+from siteassess.verdict.cures.returns import lost_sky, returned_alone, returned_in_order
 from siteassess.verdict.states import sample_states, sample_weights
 
 HARBOUR = Path(__file__).parents[2] / "example_sites" / "harbour"

@@ -10,10 +10,10 @@ import time
 import numpy as np
 import shapely
 
-from siteassess.horizon.building import Building
+from siteassess.horizon.buildings.building import Building
+from siteassess.horizon.buildings.obstacles import obstacles_of
+from siteassess.horizon.buildings.walls import Parts, parts_of
 from siteassess.horizon.outline import upper_envelope
-from siteassess.horizon.outline_obstacles import obstacles_of
-from siteassess.horizon.walls import Parts, parts_of
 
 ANTENNA_M = 1.6
 REACH_M = 2000.0

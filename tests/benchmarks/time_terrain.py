@@ -10,8 +10,8 @@ from collections.abc import Callable
 
 import numpy as np
 
-from siteassess.horizon.height_grid import MISSING_M, HeightGrid
-from siteassess.horizon.terrain import terrain_skyline
+from siteassess.horizon.terrain.height_grid import MISSING_M, HeightGrid
+from siteassess.horizon.terrain.read import terrain_skyline
 
 CELL_M = 30.0
 YARDSTICK = np.linspace(0.1, 3.0, 345_600)

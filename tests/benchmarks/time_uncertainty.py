@@ -10,10 +10,10 @@ from pathlib import Path
 
 from siteassess.assessment import assess_file
 from siteassess.report.results import json_text
-from siteassess.verdict.drawn_site import ANGULAR, drawn_site, drawn_values
-from siteassess.verdict.draws import drawn
-from siteassess.verdict.survey_errors import survey_errors
-from siteassess.verdict.uncertainty import DRAWS, uncertainty
+from siteassess.verdict.uncertainty.drawn_site import ANGULAR, drawn_site, drawn_values
+from siteassess.verdict.uncertainty.draws import drawn
+from siteassess.verdict.uncertainty.how_sure import DRAWS, uncertainty
+from siteassess.verdict.uncertainty.survey_errors import survey_errors
 
 HARBOUR = Path(__file__).parents[2] / "example_sites" / "harbour"
 AIM = 1.0  # of the plain assessment, for the draws of all findings that depend on directions

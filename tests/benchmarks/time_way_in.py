@@ -11,7 +11,7 @@ import numpy as np
 
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import GENERAL_SKYLINE, Obstacle, Skyline
-from siteassess.link_budget.way_in import skyline_loss_db
+from siteassess.link_budget.obstacles.way_in import skyline_loss_db
 
 L1_HZ = 1575.42e6
 

@@ -23,19 +23,19 @@ from siteassess.horizon.read import read_skyline
 from siteassess.horizon.shares import SkyShares, sky_shares
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.view import outline_elevation_deg
-from siteassess.link_budget.diffraction import (
+from siteassess.link_budget.chain.parts import part_kinds, whole_part
+from siteassess.link_budget.chain.receive_chain import QUANTISATION_LOSS_DB, cascade, value_at_carrier
+from siteassess.link_budget.chain.supply import supply_voltages_v
+from siteassess.link_budget.obstacles.diffraction import (
     exact_knife_edge_loss_db,
     fresnel_parameter,
     knife_edge_loss_db,
     strip_loss_db,
 )
-from siteassess.link_budget.foliage import slant_path_loss_db, weissberger_loss_db
-from siteassess.link_budget.gases import gas_loss_db
-from siteassess.link_budget.parts import part_kinds, whole_part
-from siteassess.link_budget.power import received_power
-from siteassess.link_budget.receive_chain import QUANTISATION_LOSS_DB, cascade, value_at_carrier
-from siteassess.link_budget.signals import read_signals
-from siteassess.link_budget.supply import supply_voltages_v
+from siteassess.link_budget.obstacles.foliage import slant_path_loss_db, weissberger_loss_db
+from siteassess.link_budget.power.gases import gas_loss_db
+from siteassess.link_budget.power.received import received_power
+from siteassess.link_budget.power.signals import read_signals
 from siteassess.orbits.constellations import baseline_gps_orbits, nominal_orbits
 from siteassess.orbits.secular import secular_rates
 from siteassess.site_file.model import Part, Position

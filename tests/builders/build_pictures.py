@@ -3,7 +3,7 @@
 from pathlib import Path
 
 from siteassess import assess, read_site
-from siteassess.report.skyplot import skyplot_svg
+from siteassess.report.figures.skyplot import skyplot_svg
 
 ROOT = Path(__file__).parent.parent.parent
 

@@ -7,7 +7,7 @@ Run it from the project folder after a change of those tables:
 
 from pathlib import Path
 
-from siteassess.link_budget.parts import CABLE_CHECK_HZ, PartKind, cable_loss_db, part_kinds
+from siteassess.link_budget.chain.parts import CABLE_CHECK_HZ, PartKind, cable_loss_db, part_kinds
 from siteassess.tables import packaged_rows
 
 PAGE = Path("docs/site_file.md")
@@ -15,7 +15,7 @@ PAGE = Path("docs/site_file.md")
 
 def kinds_table() -> str:
     """Kinds of parts, each with what it does and where that comes from."""
-    description = {row["kind"]: row["description"] for row in packaged_rows("link_budget/parts.csv")}
+    description = {row["kind"]: row["description"] for row in packaged_rows("link_budget/chain/parts.csv")}
     rows = [
         f"| `{name}` | {description[name]} | {_does(kind)} | {kind.rests_on} |"
         for name, kind in part_kinds().items()
@@ -54,7 +54,7 @@ def instruments_table() -> str:
     rows = [
         f"| `{row['instrument']}` | {row['azimuth_error_deg']} deg | {row['elevation_error_deg']} deg "
         f"| {row['distance_error_m']} m | {row['source']} ({row['status']}) |"
-        for row in packaged_rows("verdict/instrument_classes.csv")
+        for row in packaged_rows("verdict/uncertainty/instrument_classes.csv")
     ]
     head = "| instrument | azimuth | elevation | distance | rests on |"
     return "\n".join([head, "| --- | --- | --- | --- | --- |", *rows])

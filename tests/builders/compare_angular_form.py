@@ -15,8 +15,8 @@ from siteassess.antenna.builtin import builtin_pattern
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import GENERAL_SKYLINE, Obstacle, Skyline
 from siteassess.link_budget.assemble import link_budget
-from siteassess.verdict.angular import angular_form
-from siteassess.verdict.angular_shares import noise_gain_db, usable_shares
+from siteassess.verdict.cures.angular import angular_form
+from siteassess.verdict.cures.angular_shares import noise_gain_db, usable_shares
 from siteassess.verdict.states import sample_states, sample_weights, share
 
 SITE = Path(__file__).parents[2] / "example_sites" / "harbour" / "silo_yard"

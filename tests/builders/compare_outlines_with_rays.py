@@ -11,13 +11,13 @@ import numpy as np
 import shapely
 from numpy.typing import NDArray
 
-from siteassess.horizon.building import Building
+from siteassess.horizon.buildings.building import Building
+from siteassess.horizon.buildings.obstacles import obstacles_of
+from siteassess.horizon.buildings.walls import Parts, parts_of
 from siteassess.horizon.outline import upper_envelope
-from siteassess.horizon.outline_obstacles import obstacles_of
 from siteassess.horizon.shares import sky_shares
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.view import outline_elevation_deg
-from siteassess.horizon.walls import Parts, parts_of
 
 FloatArray = NDArray[np.float64]
 

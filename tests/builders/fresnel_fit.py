@@ -1,4 +1,4 @@
-"""Makes siteassess/link_budget/fresnel.csv: series of the auxiliary functions of the Fresnel integrals.
+"""Makes siteassess/link_budget/obstacles/fresnel.csv: series that the Fresnel integrals are computed from.
 
 Run from the project folder: python tests/builders/fresnel_fit.py
 """
@@ -10,7 +10,7 @@ from numpy.polynomial import chebyshev
 from numpy.typing import NDArray
 from scipy.special import fresnel
 
-TABLE = Path("siteassess/link_budget/fresnel.csv")
+TABLE = Path("siteassess/link_budget/obstacles/fresnel.csv")
 HALF_WAY = 2.0  # the argument that is mapped to the middle of the series; of those tried, it errs least
 DEGREE = 16
 NODES = 400

@@ -12,7 +12,7 @@ import pytest
 from click.testing import CliRunner, Result
 
 from siteassess.cli import main
-from siteassess.report.write_ranking import RANKING_FILES
+from siteassess.report.ranking.write import RANKING_FILES
 
 WriteSite = Callable[..., Path]
 

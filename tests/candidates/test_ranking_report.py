@@ -21,17 +21,17 @@ from siteassess.candidates.candidate import Candidate, RefusedCandidate
 from siteassess.candidates.rank import rank_candidates
 from siteassess.candidates.ranking import Ranking
 from siteassess.errors import Mistake
-from siteassess.report import ranking_chart
 from siteassess.report.document import document_pdf
 from siteassess.report.page import page_html
 from siteassess.report.pieces import Content
-from siteassess.report.ranking_chart import MARKS, MOST_ROWS, chart_svg
-from siteassess.report.ranking_content import ranking_content
-from siteassess.report.ranking_results import ranking_csv, ranking_json
-from siteassess.report.ranking_summary import ranking_lines
-from siteassess.report.setting import CAUTIONS
+from siteassess.report.ranking import chart as ranking_chart
+from siteassess.report.ranking.chart import MARKS, MOST_ROWS, chart_svg
+from siteassess.report.ranking.content import ranking_content
+from siteassess.report.ranking.results import ranking_csv, ranking_json
+from siteassess.report.ranking.summary import ranking_lines
+from siteassess.report.ranking.write import RANKING_FILES, write_ranking
+from siteassess.report.sections.setting import CAUTIONS
 from siteassess.report.write import FILES
-from siteassess.report.write_ranking import RANKING_FILES, write_ranking
 from siteassess.verdict.verdict import Finding
 
 Found = Callable[..., Finding]
@@ -335,7 +335,7 @@ def test_files_are_the_five_of_a_ranking_and_never_those_of_an_assessment(
 def test_error_leaves_the_old_ranking(
     ranking: Ranking, tmp_path: Any, monkeypatch: pytest.MonkeyPatch
 ) -> None:
-    from siteassess.report import ranking_results
+    from siteassess.report.ranking import results as ranking_results
 
     def broken(_: Ranking) -> str:
         raise RuntimeError("table")

@@ -10,9 +10,9 @@ from click.testing import CliRunner
 from siteassess.candidates.resurvey import Resurvey, resurvey
 from siteassess.cli import main
 from siteassess.errors import InputError
-from siteassess.report.resurvey_content import resurvey_content
-from siteassess.report.resurvey_results import resurvey_json, resurvey_lines
-from siteassess.report.write_resurvey import RESURVEY_FILES
+from siteassess.report.resurvey.content import resurvey_content
+from siteassess.report.resurvey.results import resurvey_json, resurvey_lines
+from siteassess.report.resurvey.write import RESURVEY_FILES
 
 WriteSite = Callable[..., Path]
 HEAD = "azimuth_deg,elevation_deg,distance_m,obstacle,cover,depth_m,underside_deg\n0,2,,,,,\n"

@@ -6,10 +6,10 @@ from pathlib import Path
 import numpy as np
 import pytest
 
-from siteassess.horizon.bearings import NorthTurn
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import Obstacle, Skyline
-from siteassess.horizon.survey import NORTH_AS_READ, Survey, read_survey
+from siteassess.horizon.survey.bearings import NorthTurn
+from siteassess.horizon.survey.read import NORTH_AS_READ, Survey, read_survey
 from siteassess.site_file.model import HorizonSource, Mount
 
 

@@ -16,10 +16,10 @@ from pyproj import CRS, Proj
 
 from siteassess import read_site
 from siteassess.errors import InputError
-from siteassess.horizon.bearings import NorthTurn, decimal_year, declination, north_turn
 from siteassess.horizon.read import read_skyline
 from siteassess.horizon.skyline import Skyline
-from siteassess.horizon.survey import Survey
+from siteassess.horizon.survey.bearings import NorthTurn, decimal_year, declination, north_turn
+from siteassess.horizon.survey.read import Survey
 from siteassess.horizon.view import outline_elevation_deg
 from siteassess.site_file.model import Position
 from siteassess.site_file.reference_system import grid_convergence_deg, known_system

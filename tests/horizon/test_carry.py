@@ -3,8 +3,8 @@ from collections.abc import Callable
 import numpy as np
 import pytest
 
-from siteassess.horizon.carry import Points, carried
-from siteassess.horizon.survey import Survey
+from siteassess.horizon.survey.carry import Points, carried
+from siteassess.horizon.survey.read import Survey
 from siteassess.horizon.view import edge_elevation_deg
 
 ROUNDING_DEG = 1e-9

@@ -9,9 +9,9 @@ from numpy.typing import NDArray
 from scipy.interpolate import RegularGridInterpolator
 from scipy.optimize import minimize_scalar
 
-from siteassess.horizon.far_skyline import tangent
-from siteassess.horizon.height_grid import MISSING_M, HeightGrid
-from siteassess.horizon.terrain import terrain_skyline
+from siteassess.horizon.terrain.far_skyline import tangent
+from siteassess.horizon.terrain.height_grid import MISSING_M, HeightGrid
+from siteassess.horizon.terrain.read import terrain_skyline
 
 FloatArray = NDArray[np.float64]
 

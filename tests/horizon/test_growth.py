@@ -5,7 +5,7 @@ from collections.abc import Callable
 import numpy as np
 import pytest
 
-from siteassess.horizon.survey import Survey
+from siteassess.horizon.survey.read import Survey
 
 Read = Callable[..., Survey]
 
@@ -59,7 +59,7 @@ def test_a_tree_seen_from_elsewhere_grows_at_its_own_place(survey: Read) -> None
 
 
 def test_growth_of_the_site_file_is_for_rows_that_say_none(survey: Read, tmp_path) -> None:
-    from siteassess.horizon.survey import read_survey
+    from siteassess.horizon.survey.read import read_survey
     from siteassess.site_file.model import HorizonSource, Mount
 
     (tmp_path / "trees.csv").write_text(

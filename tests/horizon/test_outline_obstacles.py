@@ -11,11 +11,12 @@ import numpy as np
 import pytest
 
 from siteassess.errors import InputError
-from siteassess.horizon import building_silhouettes, outline_obstacles
-from siteassess.horizon.building import Building
-from siteassess.horizon.hidden_walls import screen_tangent
+from siteassess.horizon.buildings import obstacles, silhouettes
+from siteassess.horizon.buildings.building import Building
+from siteassess.horizon.buildings.hidden_walls import screen_tangent
+from siteassess.horizon.buildings.obstacles import obstacles_of
+from siteassess.horizon.buildings.walls import Walls, walls_of
 from siteassess.horizon.outline import upper_envelope
-from siteassess.horizon.outline_obstacles import obstacles_of
 from siteassess.horizon.shares import sky_shares
 from siteassess.horizon.skyline import Obstacle, Skyline
 from siteassess.horizon.view import (
@@ -26,7 +27,6 @@ from siteassess.horizon.view import (
     outline_elevation_deg,
     underside_elevation_deg,
 )
-from siteassess.horizon.walls import Walls, walls_of
 
 RAYS = runpy.run_path(str(Path(__file__).parents[1] / "builders" / "compare_outlines_with_rays.py"))
 difference, random_neighbourhood, plan_of, skyline_of, standing = (
@@ -402,7 +402,7 @@ def test_leaving_out_hidden_walls_early_changes_nothing(monkeypatch: pytest.Monk
     def nothing(walls: Walls, *_: object) -> np.ndarray:
         return np.zeros(len(walls), dtype=np.bool_)
 
-    for module in (building_silhouettes, outline_obstacles):
+    for module in (silhouettes, obstacles):
         monkeypatch.setattr(module, "surely_hidden", nothing)
     slow = skyline_of(buildings)
     assert [one.name for one in quick.obstacles] == [one.name for one in slow.obstacles]

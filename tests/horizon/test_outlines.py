@@ -12,8 +12,8 @@ import pyproj
 import pytest
 
 from siteassess.errors import InputError
-from siteassess.horizon.outlines import Outlines, read_outlines
-from siteassess.horizon.plan import east_north_m
+from siteassess.horizon.buildings.plan import east_north_m
+from siteassess.horizon.buildings.read import Outlines, read_outlines
 from siteassess.horizon.read import read_skyline
 from siteassess.horizon.view import edge_distance_m, edge_elevation_deg
 from siteassess.site_file.model import HorizonSource, Mount, Position

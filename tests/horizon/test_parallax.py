@@ -7,10 +7,10 @@ import numpy as np
 import pytest
 
 from siteassess import read_site
-from siteassess.horizon.carry import Points, carried
-from siteassess.horizon.parallax import parallax_bound_deg
 from siteassess.horizon.read import read_skyline
-from siteassess.horizon.survey import Survey
+from siteassess.horizon.survey.carry import Points, carried
+from siteassess.horizon.survey.parallax import parallax_bound_deg
+from siteassess.horizon.survey.read import Survey
 
 HUNDREDTH_DEG = 0.01
 THOUSANDTH_DEG = 0.001

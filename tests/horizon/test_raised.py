@@ -14,7 +14,7 @@ from siteassess.horizon.raised import keeps_its_angles, raised
 from siteassess.horizon.read import read_skyline
 from siteassess.horizon.skyline import Obstacle, Skyline
 from siteassess.horizon.view import outline_elevation_deg
-from siteassess.verdict.heights import at_height
+from siteassess.verdict.cures.heights import at_height
 
 ROUNDING_DEG = 1e-9
 MILLIMETRE_M = 0.001

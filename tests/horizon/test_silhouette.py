@@ -4,7 +4,7 @@ from itertools import pairwise
 import numpy as np
 import pytest
 
-from siteassess.horizon.survey import Survey
+from siteassess.horizon.survey.read import Survey
 from siteassess.horizon.view import edge_distance_m, edge_elevation_deg
 
 ROUNDING_DEG = 1e-6

@@ -3,8 +3,8 @@ from collections.abc import Callable
 import numpy as np
 import pytest
 
-from siteassess.horizon.bearings import NorthTurn
-from siteassess.horizon.survey import Survey
+from siteassess.horizon.survey.bearings import NorthTurn
+from siteassess.horizon.survey.read import Survey
 from siteassess.horizon.view import edge_elevation_deg
 
 ROUNDING = 1e-9

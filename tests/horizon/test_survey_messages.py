@@ -5,7 +5,7 @@ from collections.abc import Callable
 import pytest
 
 from siteassess.errors import InputError
-from siteassess.horizon.survey import Survey
+from siteassess.horizon.survey.read import Survey
 
 Read = Callable[..., Survey]
 

@@ -13,7 +13,7 @@ from siteassess.horizon.looked_at import gaps_between
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.shares import sky_shares
 from siteassess.horizon.skyline import Obstacle, Skyline
-from siteassess.horizon.survey import Survey, read_survey
+from siteassess.horizon.survey.read import Survey, read_survey
 from siteassess.horizon.view import (
     depth_m,
     edge_distance_m,

@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from siteassess.link_budget.brightness import (
+from siteassess.link_budget.noise.brightness import (
     ATMOSPHERE_K,
     COSMIC_BACKGROUND_K,
     atmosphere_brightness_k,

@@ -2,9 +2,9 @@
 
 import pytest
 
-from siteassess.link_budget.chain_changes import chain_changes
-from siteassess.link_budget.parts import part_kinds, whole_part
-from siteassess.link_budget.receive_chain import cascade
+from siteassess.link_budget.chain.changes import chain_changes
+from siteassess.link_budget.chain.parts import part_kinds, whole_part
+from siteassess.link_budget.chain.receive_chain import cascade
 from siteassess.site_file.model import Part
 
 L1_HZ = 1575.42e6

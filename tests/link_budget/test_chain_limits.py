@@ -8,12 +8,12 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from siteassess.constants import BOLTZMANN_J_PER_K
-from siteassess.link_budget.chain_limits import (
+from siteassess.link_budget.chain.limits import (
     cable_losses_db_per_m,
     cn0_lost_before_preamplifier_db,
     saturation_margins,
 )
-from siteassess.link_budget.receive_chain import cascade, part_noises
+from siteassess.link_budget.chain.receive_chain import cascade, part_noises
 from siteassess.site_file.model import Part
 
 L1_HZ = 1575.42e6

@@ -4,7 +4,7 @@ import numpy as np
 import pytest
 from scipy.special import fresnel
 
-from siteassess.link_budget.diffraction import (
+from siteassess.link_budget.obstacles.diffraction import (
     exact_knife_edge_loss_db,
     fresnel_integrals,
     fresnel_parameter,

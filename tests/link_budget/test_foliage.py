@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from siteassess.link_budget.foliage import (
+from siteassess.link_budget.obstacles.foliage import (
     FOLIAGE_MODELS,
     leaf_factor,
     leaves_loss_db,

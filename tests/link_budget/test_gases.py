@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from siteassess.link_budget.gases import gas_loss_db
+from siteassess.link_budget.power.gases import gas_loss_db
 
 L1_HZ, L2_HZ, L5_HZ = 1575.42e6, 1227.60e6, 1176.45e6
 HALF_MILLIBEL = 0.0005

@@ -10,10 +10,10 @@ from siteassess.antenna.energy import efficiency
 from siteassess.antenna.pattern import GainPattern
 from siteassess.antenna.shapes import by_elevation, hemisphere, isotropic, uniform_cone
 from siteassess.horizon.skyline import Obstacle, Outline, Skyline
-from siteassess.link_budget.antenna_noise import antenna_noise, ring_gain, seen_temperature_k
-from siteassess.link_budget.brightness import sky_brightness_k
-from siteassess.link_budget.noise import chain_noise
-from siteassess.link_budget.seen_sky import RING_DEG, seen_sky
+from siteassess.link_budget.noise.antenna_noise import antenna_noise, ring_gain, seen_temperature_k
+from siteassess.link_budget.noise.brightness import sky_brightness_k
+from siteassess.link_budget.noise.chain_noise import chain_noise
+from siteassess.link_budget.noise.seen_sky import RING_DEG, seen_sky
 from siteassess.site_file.model import Mount, Part
 
 L1_HZ = 1575.42e6

@@ -4,8 +4,8 @@ import math
 
 import pytest
 
-from siteassess.link_budget.parts import cable_loss_db, part_kinds, whole_part
-from siteassess.link_budget.receive_chain import (
+from siteassess.link_budget.chain.parts import cable_loss_db, part_kinds, whole_part
+from siteassess.link_budget.chain.receive_chain import (
     QUANTISATION_LOSS_DB,
     cascade,
     receiver_loss_db,
@@ -106,7 +106,7 @@ def test_blocked_port_of_a_splitter_passes_no_supply() -> None:
 
 
 def test_no_kind_rests_on_a_value_of_low_confidence() -> None:
-    for row in packaged_rows("link_budget/parts.csv"):
+    for row in packaged_rows("link_budget/chain/parts.csv"):
         assert any(word in row["status"] for word in ("seen", "memory", "own default"))
         assert "low confidence" not in row["status"]
 

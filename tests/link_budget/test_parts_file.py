@@ -5,7 +5,7 @@ from pathlib import Path
 import pytest
 
 from siteassess.errors import InputError
-from siteassess.link_budget.parts_file import read_parts_file
+from siteassess.link_budget.chain.parts_file import read_parts_file
 
 GOOD = """\
 kind,carrier_mhz,k1_db_per_100m,k2_db_per_100m,ohm_per_100m,loss_db,gain_db,noise_figure_db,passes_supply,source

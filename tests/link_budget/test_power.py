@@ -3,11 +3,11 @@
 import numpy as np
 import pytest
 
-from siteassess.link_budget.beam import beam_gain_db, even_cone_gain_dbi
-from siteassess.link_budget.gases import gas_loss_db
-from siteassess.link_budget.power import power_flux_density_dbw_per_m2, received_power
-from siteassess.link_budget.signals import read_signals
-from siteassess.link_budget.spreading import free_space_loss_db, slant_range_m
+from siteassess.link_budget.power.beam import beam_gain_db, even_cone_gain_dbi
+from siteassess.link_budget.power.gases import gas_loss_db
+from siteassess.link_budget.power.received import power_flux_density_dbw_per_m2, received_power
+from siteassess.link_budget.power.signals import read_signals
+from siteassess.link_budget.power.spreading import free_space_loss_db, slant_range_m
 
 TENTH_DB = 0.1
 READING_DB = 0.05  # what the figure of IS-GPS-200 can be read to

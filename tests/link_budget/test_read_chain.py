@@ -8,8 +8,8 @@ import pytest
 from siteassess import assess, read_site
 from siteassess.assessment import assess_file
 from siteassess.errors import InputError
-from siteassess.link_budget.read import read_chain
-from siteassess.link_budget.receive_chain import value_at_carrier
+from siteassess.link_budget.chain.read import read_chain
+from siteassess.link_budget.chain.receive_chain import value_at_carrier
 
 CABLE = 'part = "cable"\nloss_db = 5.0\n'
 BY_KIND = 'part = "cable"\nkind = "foam, 10 mm"\nlength_m = 30\n'

@@ -6,7 +6,7 @@ import numpy as np
 import pytest
 
 from siteassess.constants import BOLTZMANN_J_PER_K
-from siteassess.link_budget.receive_chain import cascade, value_at_carrier
+from siteassess.link_budget.chain.receive_chain import cascade, value_at_carrier
 from siteassess.site_file.model import Part
 
 L1_HZ, L5_HZ = 1575.42e6, 1176.45e6

@@ -10,11 +10,11 @@ from siteassess.antenna.pattern import GainPattern
 from siteassess.antenna.shapes import hemisphere
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import Obstacle, Skyline
-from siteassess.link_budget.antenna_noise import antenna_noise, ring_gain, seen_temperature_k
-from siteassess.link_budget.brightness import sky_brightness_k
-from siteassess.link_budget.foliage import slant_path_loss_db
-from siteassess.link_budget.noise import chain_noise
-from siteassess.link_budget.seen_sky import RING_DEG, seen_brightness_k, seen_sky
+from siteassess.link_budget.noise.antenna_noise import antenna_noise, ring_gain, seen_temperature_k
+from siteassess.link_budget.noise.brightness import sky_brightness_k
+from siteassess.link_budget.noise.chain_noise import chain_noise
+from siteassess.link_budget.noise.seen_sky import RING_DEG, seen_brightness_k, seen_sky
+from siteassess.link_budget.obstacles.foliage import slant_path_loss_db
 from siteassess.site_file.model import Mount, Part
 
 L1_HZ, L5_HZ = 1575.42e6, 1176.45e6

@@ -4,7 +4,7 @@ import math
 
 import pytest
 
-from siteassess.link_budget.signals import glonass_carrier_hz, read_signals
+from siteassess.link_budget.power.signals import glonass_carrier_hz, read_signals
 from siteassess.tables import packaged_header
 
 # Guaranteed minima by orbit class [dBW]: IS-GPS-200F Table 3-Va, IS-GPS-705B Table 3-III (two components of
@@ -108,7 +108,7 @@ def test_glonass_channels_have_the_carriers_of_the_document(
     assert glonass_carrier_hz(channel_0_hz, channel) == pytest.approx(carrier_hz, abs=1.0)
 
 
-@pytest.mark.parametrize("table", ["signals", "beam", "fresnel"])
+@pytest.mark.parametrize("table", ["power/signals", "power/beam", "obstacles/fresnel"])
 def test_link_budget_tables_say_where_they_come_from(table: str) -> None:
     assert {"source", "edition", "status"} <= packaged_header(f"link_budget/{table}.csv").keys()
 

@@ -3,7 +3,7 @@
 import numpy as np
 import pytest
 
-from siteassess.link_budget.spreading import free_space_loss_db, off_boresight_deg, slant_range_m
+from siteassess.link_budget.power.spreading import free_space_loss_db, off_boresight_deg, slant_range_m
 
 TENTH_KM = 100.0
 THOUSANDTH_DEG = 0.001

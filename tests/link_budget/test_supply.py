@@ -2,8 +2,8 @@
 
 import pytest
 
-from siteassess.link_budget.parts import part_kinds, whole_part
-from siteassess.link_budget.supply import preamplifier_index, preamplifier_voltage_v, supply_voltages_v
+from siteassess.link_budget.chain.parts import part_kinds, whole_part
+from siteassess.link_budget.chain.supply import preamplifier_index, preamplifier_voltage_v, supply_voltages_v
 from siteassess.site_file.model import Part
 
 HUNDREDTH_V = 0.01

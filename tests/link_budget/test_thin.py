@@ -6,7 +6,7 @@ from scipy.special import fresnel
 
 from siteassess.angles import direction
 from siteassess.horizon.skyline import Obstacle
-from siteassess.link_budget.thin import grazes, is_thin, loss_behind_db
+from siteassess.link_budget.obstacles.thin import grazes, is_thin, loss_behind_db
 
 HUNDREDTH_DB = 0.01
 L1_HZ = 1575.42e6

@@ -7,8 +7,8 @@ from numpy.typing import NDArray
 from siteassess.angles import direction
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import GENERAL_SKYLINE, Obstacle, Skyline
-from siteassess.link_budget.edges import lower_edges, smallest_detour_m, upper_edges
-from siteassess.link_budget.way_in import is_narrow, skyline_loss_db
+from siteassess.link_budget.obstacles.edges import lower_edges, smallest_detour_m, upper_edges
+from siteassess.link_budget.obstacles.way_in import is_narrow, skyline_loss_db
 
 HUNDREDTH_DB = 0.01
 TENTH_DB = 0.1

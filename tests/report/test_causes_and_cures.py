@@ -10,11 +10,11 @@ from click.testing import CliRunner
 from siteassess import Assessment, assess, read_site
 from siteassess.assessment import explained
 from siteassess.cli import main
-from siteassess.report.answers import ranked_obstacles
 from siteassess.report.content import report_content
 from siteassess.report.phrases import percent, plain
 from siteassess.report.pieces import Section
 from siteassess.report.results import assessment_record
+from siteassess.report.sections.answers import ranked_obstacles
 
 HARBOUR = Path(__file__).parents[2] / "example_sites" / "harbour"
 

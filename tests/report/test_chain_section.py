@@ -5,9 +5,9 @@ from pathlib import Path
 import pytest
 
 from siteassess import Assessment, assess, read_site
-from siteassess.report.chain import chain_section
 from siteassess.report.content import report_content
 from siteassess.report.results import assessment_record
+from siteassess.report.sections.chain import chain_section
 from siteassess.report.summary import MOST_LINES, summary_lines
 
 SITE = Path(__file__).parents[2] / "example_sites" / "chain_mistake"

@@ -4,10 +4,10 @@ import dataclasses
 
 import pytest
 
-from siteassess.report.answers import answers, ranked_obstacles
 from siteassess.report.content import report_content
 from siteassess.report.phrases import azimuth_range, compass_point, number, percent, plain, told_apart
-from siteassess.report.setting import CAUTIONS, assumptions
+from siteassess.report.sections.answers import answers, ranked_obstacles
+from siteassess.report.sections.setting import CAUTIONS, assumptions
 
 
 @pytest.fixture(scope="module")

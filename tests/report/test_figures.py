@@ -8,11 +8,11 @@ import numpy as np
 import pytest
 from scipy.optimize import isotonic_regression
 
-from siteassess.report.drawing import obstacle_edges, on_paper, outline_points, shortened
-from siteassess.report.labels import label_rows, spread
-from siteassess.report.panorama import panorama_svg
-from siteassess.report.skyplot import skyplot_svg
-from siteassess.report.track_lines import MARGIN_CLASSES, first_signal_margin_db, runs
+from siteassess.report.figures.drawing import obstacle_edges, on_paper, outline_points, shortened
+from siteassess.report.figures.labels import label_rows, spread
+from siteassess.report.figures.panorama import panorama_svg
+from siteassess.report.figures.skyplot import skyplot_svg
+from siteassess.report.figures.track_lines import MARGIN_CLASSES, first_signal_margin_db, runs
 
 
 @pytest.mark.parametrize("draw", [skyplot_svg, panorama_svg])

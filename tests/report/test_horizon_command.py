@@ -13,7 +13,7 @@ from siteassess.cli import main
 from siteassess.horizon.read import read_site_skyline
 from siteassess.horizon.shares import sky_shares
 from siteassess.horizon.skyline import Skyline
-from siteassess.report.source_panorama import FILLS, LINES, sources_of
+from siteassess.report.figures.source_panorama import FILLS, LINES, sources_of
 
 ROOT = Path(__file__).parents[2]
 SHARE = 1e-6  # the last decimal of a share in JSON

@@ -8,12 +8,12 @@ import pytest
 
 from siteassess import Assessment, assess, read_site
 from siteassess.assessment import explained
-from siteassess.report.answers import answers
 from siteassess.report.content import report_content
 from siteassess.report.pieces import Section
 from siteassess.report.results import assessment_record, json_text
+from siteassess.report.sections.answers import answers
 from siteassess.report.summary import MOST_LINES, summary_lines
-from siteassess.verdict.uncertainty import uncertainty
+from siteassess.verdict.uncertainty.how_sure import uncertainty
 
 WriteSite = Callable[..., Path]
 WALL = "azimuth_deg,elevation_deg,obstacle\n0,0,\n120,30,wall\n240,30,wall\n"

@@ -2,9 +2,9 @@
 
 import re
 
-from siteassess.report.over_time import over_time_section
+from siteassess.report.figures.time_chart import time_chart_svg
 from siteassess.report.results import assessment_record
-from siteassess.report.time_chart import time_chart_svg
+from siteassess.report.sections.over_time import over_time_section
 
 
 def test_time_in_json_agrees_with_the_counts(markup_assessment):

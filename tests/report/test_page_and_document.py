@@ -11,9 +11,9 @@ import typst
 
 from siteassess.report.content import report_content
 from siteassess.report.document import document_pdf
-from siteassess.report.figures import report_figures
+from siteassess.report.figures.all_figures import report_figures
 from siteassess.report.page import page_html
-from siteassess.report.setting import CAUTIONS
+from siteassess.report.sections.setting import CAUTIONS
 
 
 class Page(HTMLParser):

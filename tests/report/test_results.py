@@ -8,7 +8,7 @@ import re
 import numpy as np
 
 from siteassess.report.results import assessment_record, json_text
-from siteassess.report.setting import CAUTIONS
+from siteassess.report.sections.setting import CAUTIONS
 
 KEYS = {
     "": {

@@ -11,10 +11,10 @@ from click.testing import CliRunner
 
 from siteassess.cli import main
 from siteassess.horizon.read import read_site_skyline
-from siteassess.horizon.survey_rows import NUMBERS, TEXTS
-from siteassess.report.setting import CAUTIONS
-from siteassess.report.sheet import PAPER_NAMES, ROWS_PER_PAGE, Paper, sheet_content, sheet_pdf
-from siteassess.report.sheet_fields import COLUMNS, GROUPS
+from siteassess.horizon.survey.rows import NUMBERS, TEXTS
+from siteassess.report.sections.setting import CAUTIONS
+from siteassess.report.sheet.fields import COLUMNS, GROUPS
+from siteassess.report.sheet.form import PAPER_NAMES, ROWS_PER_PAGE, Paper, sheet_content, sheet_pdf
 
 PAPERS: tuple[Paper, ...] = ("a4", "letter")
 
@@ -113,7 +113,7 @@ def test_words_to_choose_from_are_those_of_the_site_file() -> None:
 def test_the_form_has_four_pages_and_the_same_bytes(paper: Paper) -> None:
     pdf = sheet_pdf(paper)
     assert pdf == sheet_pdf(paper)
-    layout = resources.files("siteassess.report").joinpath("sheet.typ").read_bytes()
+    layout = resources.files("siteassess.report.sheet").joinpath("sheet.typ").read_bytes()
     inputs = {"content": json.dumps(sheet_content(paper)), "paper": PAPER_NAMES[paper]}
     pages = typst.compile(layout, format="svg", ignore_system_fonts=True, sys_inputs=inputs)
     assert len(pages) == 4

@@ -6,10 +6,10 @@ import numpy as np
 import pytest
 
 from siteassess.antenna.builtin import builtin_pattern
-from siteassess.report.antenna_plot import antenna_svg
-from siteassess.report.changes import changes_section
-from siteassess.report.noise_map import noise_map_svg
-from siteassess.report.waterfall import waterfall, waterfall_svg
+from siteassess.report.figures.antenna_plot import antenna_svg
+from siteassess.report.figures.noise_map import noise_map_svg
+from siteassess.report.figures.waterfall import waterfall, waterfall_svg
+from siteassess.report.sections.changes import changes_section
 
 THOUSANDTH_DB = 0.001
 

@@ -13,7 +13,7 @@ from siteassess.tables import packaged_rows
 WriteSite = Callable[..., Path]
 CABLE, AMPLIFIER = "loss_db = 5.0", "gain_db = 40.0\nnoise_figure_db = 1.5"
 RECEIVER = "noise_figure_db = 8.0\nimplementation_loss_db = 1.0"
-KINDS = [row["kind"] for row in packaged_rows("link_budget/parts.csv")]
+KINDS = [row["kind"] for row in packaged_rows("link_budget/chain/parts.csv")]
 
 
 def refusal(path: Path) -> str:

@@ -88,7 +88,7 @@ def test_schema_has_no_null_which_toml_cannot_write() -> None:
 
 
 def test_starter_and_page_name_every_signal_and_pattern() -> None:
-    for row in packaged_rows("link_budget/signals.csv"):
+    for row in packaged_rows("link_budget/power/signals.csv"):
         assert row["signal"] in " ".join(PAGE.split())
     starter = resources.files("siteassess").joinpath("site_file/starter_site/site.toml").read_text("utf-8")
     for row in packaged_rows("antenna/builtin.csv"):

@@ -7,7 +7,7 @@ import pytest
 
 from siteassess.errors import InputError
 from siteassess.site_file.read import read_site
-from siteassess.verdict.survey_errors import instrument_classes, stated_errors
+from siteassess.verdict.uncertainty.survey_errors import instrument_classes, stated_errors
 
 WriteSite = Callable[..., Path]
 SURVEY = "complete = true"

@@ -11,15 +11,15 @@ from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.raised import raised
 from siteassess.horizon.skyline import Obstacle, Skyline
 from siteassess.link_budget.assemble import link_budget
-from siteassess.verdict.angular import AngularForm, angular_form, taken
-from siteassess.verdict.angular_shares import (
+from siteassess.verdict.cures.angular import AngularForm, angular_form, taken
+from siteassess.verdict.cures.angular_shares import (
     noise_gain_db,
     shares_above,
     usable_shares,
     usable_weights,
     within_reach,
 )
-from siteassess.verdict.heights import OPEN_SKY
+from siteassess.verdict.cures.heights import OPEN_SKY
 from siteassess.verdict.judge import judge
 
 BUILDERS = Path(__file__).parents[1] / "builders"

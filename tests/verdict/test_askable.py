@@ -6,7 +6,7 @@ import pytest
 
 from siteassess import Assessment, assess, read_site
 from siteassess.assessment import explained
-from siteassess.verdict.explanation import Explanation
+from siteassess.verdict.cures.explanation import Explanation
 
 HARBOUR = Path(__file__).parents[2] / "example_sites" / "harbour"
 HUNDREDTH_DB = 0.01

@@ -4,9 +4,9 @@ from types import SimpleNamespace
 
 import pytest
 
-from siteassess.link_budget.receive_chain import cascade
+from siteassess.link_budget.chain.receive_chain import cascade
 from siteassess.site_file.model import Part, Requirements
-from siteassess.verdict.chain_findings import chain_findings
+from siteassess.verdict.findings.chain import chain_findings
 from siteassess.verdict.verdict import Finding
 
 L1_HZ, L5_HZ = 1575.42e6, 1176.45e6

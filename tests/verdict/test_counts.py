@@ -8,7 +8,7 @@ from hypothesis import given, settings
 from hypothesis import strategies as st
 
 from siteassess.site_file.model import Requirements
-from siteassess.verdict.counts import (
+from siteassess.verdict.time.counts import (
     JointSamples,
     at_least_share,
     counts_at_once,
@@ -16,7 +16,7 @@ from siteassess.verdict.counts import (
     number_reached,
     usable_counts,
 )
-from siteassess.verdict.over_time import over_time, runs
+from siteassess.verdict.time.over_time import over_time, runs
 
 COUNTS = st.lists(st.integers(0, 40), min_size=1, max_size=60).map(np.array)
 

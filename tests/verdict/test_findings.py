@@ -7,7 +7,7 @@ import pytest
 from siteassess.horizon.shares import SkyShares
 from siteassess.site_file.model import Mount, Requirements
 from siteassess.verdict.criteria import read_criteria
-from siteassess.verdict.findings import site_findings, worst_first
+from siteassess.verdict.findings.site_findings import site_findings, worst_first
 from siteassess.verdict.verdict import ObstacleCost, SignalShares
 
 OPEN_SKY = SkyShares(

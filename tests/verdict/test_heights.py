@@ -10,7 +10,7 @@ import pytest
 from siteassess import Assessment, assess, read_site
 from siteassess.assessment import explained
 from siteassess.site_file.model import Site
-from siteassess.verdict.heights import Heights, at_height
+from siteassess.verdict.cures.heights import Heights, at_height
 
 HARBOUR = Path(__file__).parents[2] / "example_sites" / "harbour"
 TWO_TENTHS_OF_A_PERCENT = 0.002

@@ -6,7 +6,7 @@ from pathlib import Path
 import pytest
 
 from siteassess import Assessment, assess, read_site
-from siteassess.verdict.near_findings import off_multiples_m
+from siteassess.verdict.findings.near import off_multiples_m
 from siteassess.verdict.verdict import Finding
 
 MILLIMETRE_M = 1e-3

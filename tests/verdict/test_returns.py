@@ -10,8 +10,8 @@ from siteassess import Assessment, assess, read_site
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import Obstacle, Skyline
 from siteassess.link_budget.assemble import sky_samples
-from siteassess.link_budget.way_in import skyline_loss_db
-from siteassess.verdict.returns import (
+from siteassess.link_budget.obstacles.way_in import skyline_loss_db
+from siteassess.verdict.cures.returns import (
     LostSky,
     lost_sky,
     returned_alone,

@@ -12,10 +12,10 @@ from hypothesis import strategies as st
 from scipy.special import ndtr
 
 from siteassess import Assessment, assess, read_site
-from siteassess.verdict.drawn_site import ANGULAR, drawn_site, drawn_values
-from siteassess.verdict.draws import Draws, drawn, only
-from siteassess.verdict.survey_errors import SurveyErrors, instrument_classes, survey_errors
-from siteassess.verdict.uncertainty import FindingSpread, Uncertainty, uncertainty
+from siteassess.verdict.uncertainty.drawn_site import ANGULAR, drawn_site, drawn_values
+from siteassess.verdict.uncertainty.draws import Draws, drawn, only
+from siteassess.verdict.uncertainty.how_sure import FindingSpread, Uncertainty, uncertainty
+from siteassess.verdict.uncertainty.survey_errors import SurveyErrors, instrument_classes, survey_errors
 
 ONE_PERCENT = 0.01
 TWO_TENTHS_OF_A_PERCENT = 0.002  # of satellite-time: columns of one degree over tracks that repeat
@@ -316,7 +316,7 @@ def test_a_close_call_is_narrow_and_a_clear_one_is_not(write_site: WriteSite) ->
 
 
 def test_stated_errors_go_before_those_of_the_instrument(write_site: WriteSite) -> None:
-    """Own table: verdict/instrument_classes.csv. Half the variance of an elevation is common: own default."""
+    """Own table verdict/uncertainty/instrument_classes.csv; half the variance of an elevation is common."""
     path = write_site(
         ("complete = true", 'complete = true\ninstrument = "smartphone"\nelevation_error_deg = 0.2')
     )

@@ -7,7 +7,7 @@ import numpy as np
 import pytest
 
 from siteassess import Assessment, assess, read_site
-from siteassess.verdict.what_if import Change
+from siteassess.verdict.cures.what_if import Change
 
 HUNDREDTH_DB = 0.01
 SITE = """\
@@ -114,7 +114,7 @@ def test_samples_that_cannot_be_lost_need_no_look(
     # A quiet chain, so that antennas differ in noise too.
     values = {"antenna": "choke-ring", "noise_figure_db": 0.2, "loss_db": 0.0, "min_cn0_dbhz": min_cn0_dbhz}
     some = assessed(**values).what_if
-    monkeypatch.setattr("siteassess.verdict.what_if._least_difference_db", lambda *arguments: -np.inf)
+    monkeypatch.setattr("siteassess.verdict.cures.what_if._least_difference_db", lambda *arguments: -np.inf)
     assert assessed(**values).what_if == some
 
 

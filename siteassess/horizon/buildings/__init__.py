@@ -1,0 +1,1 @@
+"""Outlines of buildings and trees, as obstacles seen from the antenna."""

@@ -1,0 +1,1 @@
+"""Elevation rasters, as the far skyline."""

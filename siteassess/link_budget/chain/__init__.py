@@ -1,0 +1,1 @@
+"""The parts behind the antenna: what they lose, add and feed."""

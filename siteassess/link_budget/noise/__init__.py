@@ -1,0 +1,1 @@
+"""What the antenna hears, and the noise at its port."""

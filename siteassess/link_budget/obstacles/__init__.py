@@ -1,0 +1,1 @@
+"""What edges and leaves cost on the way in."""

@@ -1,0 +1,1 @@
+"""What the satellites deliver: signals, beams, spreading and gases."""

@@ -1,0 +1,1 @@
+"""The report of two surveys of one spot."""

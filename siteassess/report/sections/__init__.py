@@ -1,0 +1,1 @@
+"""What the sections of a site report say."""

@@ -1,0 +1,1 @@
+"""The field form of a survey."""

@@ -1,0 +1,1 @@
+"""What the keys of a site file must be to each other."""

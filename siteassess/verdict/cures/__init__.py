@@ -1,0 +1,1 @@
+"""What comes back, what would help, and what could be asked."""

@@ -1,0 +1,1 @@
+"""Each criterion held against the site."""

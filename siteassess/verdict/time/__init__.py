@@ -1,0 +1,1 @@
+"""How many satellites at once, and how long not."""
