@@ -18,11 +18,11 @@ from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
 from siteassess.verdict.cures.what_if import Change, what_if
 from siteassess.verdict.judge import judge
-from siteassess.verdict.uncertainty.how_sure import Uncertainty, uncertainty
 from siteassess.verdict.verdict import Verdict
 
 if TYPE_CHECKING:
     from siteassess.verdict.cures.explanation import Explanation
+    from siteassess.verdict.uncertainty.how_sure import Uncertainty
 
 __all__ = ["Assessment", "assess", "assess_file", "explained"]
 
@@ -61,7 +61,7 @@ class Assessment:
     verdict: Verdict
     what_if: tuple[Change, ...]
     explanation: "Explanation | None" = None
-    uncertainty: Uncertainty | None = None
+    uncertainty: "Uncertainty | None" = None
 
 
 def assess(site: Site) -> Assessment:
@@ -113,6 +113,7 @@ def explained(assessment: Assessment) -> Assessment:
     # Loaded here, because most runs ask for the verdict alone.
     from siteassess.verdict.cures.explanation import explanation
     from siteassess.verdict.cures.heights import at_height
+    from siteassess.verdict.uncertainty.how_sure import uncertainty
 
     site, pattern, tracks = assessment.site, assessment.pattern, assessment.tracks
 

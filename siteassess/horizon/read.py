@@ -5,22 +5,25 @@ from functools import partial
 from math import hypot
 from os import PathLike
 from pathlib import Path
+from typing import TYPE_CHECKING
 
 import numpy as np
 
 from siteassess.errors import InputError, gather
-from siteassess.horizon.buildings.read import Outlines, read_outlines
 from siteassess.horizon.disagreement import SURVEY_ERRORS_DEG, Source, disagreements
 from siteassess.horizon.looked_at import gaps_between
 from siteassess.horizon.outline import upper_envelope
 from siteassess.horizon.skyline import Skyline
 from siteassess.horizon.survey.bearings import north_turn
 from siteassess.horizon.survey.read import Survey, read_survey
-from siteassess.horizon.terrain.read import Terrain, read_terrain
 from siteassess.site_file.model import HorizonSource, Site
 from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.tables import packaged_rows
 from siteassess.wording import listed
+
+if TYPE_CHECKING:
+    from siteassess.horizon.buildings.read import Outlines
+    from siteassess.horizon.terrain.read import Terrain
 
 __all__ = ["read_site_skyline", "read_skyline"]
 
@@ -82,7 +85,7 @@ def read_site_skyline(path: str | PathLike[str]) -> tuple[Site, Skyline]:
     return site, read_skyline(site)
 
 
-def _held_against_others(block: HorizonSource, found: Survey | Outlines | Terrain) -> Source:
+def _held_against_others(block: HorizonSource, found: "Survey | Outlines | Terrain") -> Source:
     azimuth_error_deg, elevation_error_deg = (
         _stated(block, key) for key in ("azimuth_error_deg", "elevation_error_deg")
     )
@@ -109,12 +112,16 @@ def _stated(block: HorizonSource, key: str) -> float | None:
     return float(classes[block.instrument][key])
 
 
-def _source(site: Site, index: int, years: float) -> Survey | Outlines | Terrain:
+def _source(site: Site, index: int, years: float) -> "Survey | Outlines | Terrain":
     source = site.horizon[index]
     if source.source == "terrain":
+        from siteassess.horizon.terrain.read import read_terrain
+
         return read_terrain(site, source)
     path = site.path.parent / source.files[0]
     if source.source == "outlines":
+        from siteassess.horizon.buildings.read import read_outlines
+
         return read_outlines(
             path,
             source,
