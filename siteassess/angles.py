@@ -5,7 +5,7 @@ from typing import Any
 import numpy as np
 from numpy.typing import ArrayLike, NDArray
 
-__all__ = ["direction", "wrap_azimuth_deg", "wrap_difference_deg"]
+__all__ = ["direction", "distinct", "wrap_azimuth_deg", "wrap_difference_deg"]
 
 
 def wrap_azimuth_deg(azimuth_deg: ArrayLike) -> Any:
@@ -29,6 +29,21 @@ def wrap_difference_deg(difference_deg: ArrayLike) -> Any:
     [-1.0, 1.0]
     """
     return np.mod(np.asarray(difference_deg, dtype=float) + 180.0, 360.0) - 180.0
+
+
+def distinct(values: NDArray[np.float64]) -> NDArray[np.float64]:
+    """Values in ascending order, each once, NaN left out.
+
+    What numpy.unique gives, which loads masked arrays at its first call.
+
+    Examples
+    --------
+    >>> distinct(np.array([3.0, 1.0, 3.0, np.nan])).tolist()
+    [1.0, 3.0]
+    """
+    ordered = np.sort(values[~np.isnan(values)])
+    once: NDArray[np.float64] = ordered[np.append(True, ordered[1:] > ordered[:-1])[: len(ordered)]]
+    return once
 
 
 def direction(azimuth_deg: ArrayLike, elevation_deg: ArrayLike) -> NDArray[np.float64]:

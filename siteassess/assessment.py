@@ -16,12 +16,12 @@ from siteassess.orbits.constellations import nominal_orbits
 from siteassess.site_file.model import Part, Site
 from siteassess.site_file.read import RefusedSiteError, read_site
 from siteassess.sky_tracks.tracks import SkyTracks, sky_tracks
-from siteassess.verdict.cures.what_if import Change, what_if
 from siteassess.verdict.judge import judge
 from siteassess.verdict.verdict import Verdict
 
 if TYPE_CHECKING:
     from siteassess.verdict.cures.explanation import Explanation
+    from siteassess.verdict.cures.what_if import Change
     from siteassess.verdict.uncertainty.how_sure import Uncertainty
 
 __all__ = ["Assessment", "assess", "assess_file", "explained"]
@@ -46,7 +46,7 @@ class Assessment:
     verdict : Verdict
         Whether it is good enough.
     what_if : tuple of Change
-        What another cable, preamplifier or antenna would change.
+        What another cable, preamplifier or antenna would change, from :func:`explained`.
     explanation : Explanation or None
         Causes and cures, from :func:`explained`.
     uncertainty : Uncertainty or None
@@ -59,7 +59,7 @@ class Assessment:
     tracks: SkyTracks
     budget: LinkBudget
     verdict: Verdict
-    what_if: tuple[Change, ...]
+    what_if: "tuple[Change, ...]" = ()
     explanation: "Explanation | None" = None
     uncertainty: "Uncertainty | None" = None
 
@@ -94,7 +94,6 @@ def assess(site: Site) -> Assessment:
         tracks=tracks,
         budget=budget,
         verdict=_judged(site, skyline, pattern, tracks, budget),
-        what_if=what_if(site, skyline, pattern, tracks, budget),
     )
 
 
@@ -113,6 +112,7 @@ def explained(assessment: Assessment) -> Assessment:
     # Loaded here, because most runs ask for the verdict alone.
     from siteassess.verdict.cures.explanation import explanation
     from siteassess.verdict.cures.heights import at_height
+    from siteassess.verdict.cures.what_if import what_if
     from siteassess.verdict.uncertainty.how_sure import uncertainty
 
     site, pattern, tracks = assessment.site, assessment.pattern, assessment.tracks
@@ -127,7 +127,8 @@ def explained(assessment: Assessment) -> Assessment:
         site, assessment.skyline, pattern, tracks, assessment.budget, assessment.verdict, assessed_at
     )
     sure = uncertainty(site, assessment.skyline, tracks, assessment.budget, verdict)
-    return replace(assessment, verdict=verdict, explanation=found, uncertainty=sure)
+    changes = what_if(site, assessment.skyline, pattern, tracks, assessment.budget)
+    return replace(assessment, verdict=verdict, what_if=changes, explanation=found, uncertainty=sure)
 
 
 def _judged(

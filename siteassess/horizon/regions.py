@@ -11,6 +11,7 @@ from itertools import combinations
 import numpy as np
 from numpy.typing import NDArray
 
+from siteassess.angles import distinct
 from siteassess.horizon.crossings import SAME_EDGE_DEG, crossing_azimuths
 from siteassess.horizon.curves import NOTHING_DEG, Curves, FloatArray, IndexArray, edge_elevation, join_curves
 from siteassess.horizon.outline import Circle, circle_of, envelope, obstacle_curves, outline_curves
@@ -154,7 +155,7 @@ def _shifted(circle: Circle, by: int) -> Circle:
 def _all_breaks(curves: Curves, bands: list[_Band]) -> FloatArray:
     """Azimuths between which no two edges start, end or cross."""
     circles = [circle for band in bands for circle in (band.top, band.bottom) if circle is not None]
-    breaks_deg = np.unique(np.concatenate([circle.start_deg for circle in circles] + [np.array([360.0])]))
+    breaks_deg = distinct(np.concatenate([circle.start_deg for circle in circles] + [np.array([360.0])]))
     start_deg, end_deg = breaks_deg[:-1], breaks_deg[1:]
     found = [breaks_deg]
     for one, other in combinations([circle.curve_at(start_deg) for circle in circles], 2):
@@ -163,8 +164,7 @@ def _all_breaks(curves: Curves, bands: list[_Band]) -> FloatArray:
             found.append(
                 crossing_azimuths(curves, one[both], other[both], start_deg[both], end_deg[both]).ravel()
             )
-    azimuth_deg: FloatArray = np.unique(np.concatenate(found))
-    return azimuth_deg[~np.isnan(azimuth_deg)]
+    return distinct(np.concatenate(found))
 
 
 def _remaining(curves: Curves, bands: list[_Band], breaks_deg: FloatArray) -> list[_Interval]:

@@ -59,31 +59,39 @@ def report_content(assessment: Assessment) -> Content:
         facts=_facts(assessment),
         cautions_heading="Cautions",
         cautions=CAUTIONS,
-        sections=(
-            _sky_section(assessment),
-            _horizon_section(assessment),
-            findings_section(assessment),
-            *(section for section in (how_sure_section(assessment),) if section),
-            signals_section(assessment),
-            obstacles_section(assessment),
-            *(section for section in (causes_section(assessment), cures_section(assessment)) if section),
-            sectors_section(verdict),
-            over_time_section(assessment),
-            budget_section(assessment),
-            noise_section(assessment),
-            chain_section(assessment),
-            antenna_section(assessment),
-            changes_section(assessment),
-            _survey_section(assessment),
-            Section(key="assumptions", heading="What was assumed", points=assumptions(assessment)),
-            Section(key="limits", heading="Limits of the method", points=LIMITS),
-        ),
+        sections=_sections(assessment),
         sign_heading="Photographs and signatures",
         photographs=PHOTOGRAPHS,
         signatures=SIGNATURES,
         appendix=satellites_section(verdict),
         maker=f"siteassess {__version__}",
     )
+
+
+def _sections(assessment: Assessment) -> tuple[Section, ...]:
+    """All sections, less those about what was not asked for."""
+    verdict = assessment.verdict
+    sections = (
+        _sky_section(assessment),
+        _horizon_section(assessment),
+        findings_section(assessment),
+        how_sure_section(assessment),
+        signals_section(assessment),
+        obstacles_section(assessment),
+        causes_section(assessment),
+        cures_section(assessment),
+        sectors_section(verdict),
+        over_time_section(assessment),
+        budget_section(assessment),
+        noise_section(assessment),
+        chain_section(assessment),
+        antenna_section(assessment),
+        changes_section(assessment),
+        _survey_section(assessment),
+        Section(key="assumptions", heading="What was assumed", points=assumptions(assessment)),
+        Section(key="limits", heading="Limits of the method", points=LIMITS),
+    )
+    return tuple(section for section in sections if section is not None)
 
 
 def _facts(assessment: Assessment) -> tuple[tuple[str, str], ...]:

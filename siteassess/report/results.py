@@ -13,11 +13,11 @@ from siteassess.report.sections.setting import CAUTIONS, assumptions
 from siteassess.report.sections.sources import disagreement_records
 from siteassess.report.time_results import time_record
 from siteassess.report.uncertainty_results import uncertainty_record
-from siteassess.verdict.cures.what_if import WHAT_IF_ELEVATIONS_DEG, Change
 
 if TYPE_CHECKING:
     from siteassess.assessment import Assessment
     from siteassess.link_budget.budget import BudgetLines, SignalBudget
+    from siteassess.verdict.cures.what_if import Change
     from siteassess.verdict.verdict import Finding, SatelliteShare, SignalShares
 
 __all__ = ["FORMAT", "assessment_record", "json_text"]
@@ -251,6 +251,8 @@ def _noise(assessment: Assessment) -> list[dict[str, Any]]:
 
 
 def _change(change: Change) -> dict[str, Any]:
+    from siteassess.verdict.cures.what_if import WHAT_IF_ELEVATIONS_DEG
+
     at_elevations = zip(WHAT_IF_ELEVATIONS_DEG, change.cn0_gain_db, strict=True)
     return {
         "change": change.change,

@@ -569,8 +569,9 @@ class Site(Record):
     chain: tuple[Part, ...] = Field(min_length=1)
     parts: PartsChoice | None = None
     horizon: tuple[HorizonSource, ...] = ()
-    foliage: Foliage = Foliage()
-    sky: SkyModel = SkyModel()
+    # Defaults need no checking, so they wait for no validator of their own.
+    foliage: Foliage = Field(default_factory=Foliage.model_construct)
+    sky: SkyModel = Field(default_factory=SkyModel.model_construct)
     require: Requirements
 
     _path: Path = PrivateAttr(default=Path("site.toml"))

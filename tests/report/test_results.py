@@ -7,6 +7,7 @@ import re
 
 import numpy as np
 
+from siteassess.assessment import explained
 from siteassess.report.results import assessment_record, json_text
 from siteassess.report.sections.setting import CAUTIONS
 
@@ -54,7 +55,7 @@ BY_ELEVATION = {
 
 
 def test_keys_are_those_of_the_format(markup_assessment):
-    record = assessment_record(markup_assessment)
+    record = assessment_record(explained(markup_assessment))
     assert record["format"] == "siteassess-assessment/1"
     assert set(record) == KEYS[""]
     for part in ("site", "sky"):

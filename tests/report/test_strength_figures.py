@@ -6,6 +6,7 @@ import numpy as np
 import pytest
 
 from siteassess.antenna.builtin import builtin_pattern
+from siteassess.assessment import explained
 from siteassess.report.figures.antenna_plot import antenna_svg
 from siteassess.report.figures.noise_map import noise_map_svg
 from siteassess.report.figures.waterfall import waterfall, waterfall_svg
@@ -58,7 +59,8 @@ def test_cut_of_a_pattern_that_names_no_carrier_has_two_lines():
 
 
 def test_changes_are_told_for_the_first_and_the_worst_signal(markup_assessment):
-    section = changes_section(markup_assessment)
+    assert changes_section(markup_assessment) is None
+    section = changes_section(explained(markup_assessment))
     worst = min(markup_assessment.verdict.signals, key=lambda shares: shares.usable_share).signal
     first = markup_assessment.budget.signals[0].signal.name
     assert [table.caption.partition(":")[0] for table in section.tables] == list(

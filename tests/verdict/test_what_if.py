@@ -7,6 +7,7 @@ import numpy as np
 import pytest
 
 from siteassess import Assessment, assess, read_site
+from siteassess.assessment import explained
 from siteassess.verdict.cures.what_if import Change
 
 HUNDREDTH_DB = 0.01
@@ -62,7 +63,7 @@ def assessed(tmp_path: Path) -> Callable[..., Assessment]:
         )
         (tmp_path / "site.toml").write_text(text, encoding="utf-8")
         (tmp_path / "horizon.csv").write_text(HORIZON, encoding="utf-8")
-        return assess(read_site(tmp_path / "site.toml"))
+        return explained(assess(read_site(tmp_path / "site.toml")))
 
     return of
 

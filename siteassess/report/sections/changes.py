@@ -14,8 +14,10 @@ if TYPE_CHECKING:
 __all__ = ["changes_section"]
 
 
-def changes_section(assessment: Assessment) -> Section:
-    """Changes for the first signal, and for the one that is usable least."""
+def changes_section(assessment: Assessment) -> Section | None:
+    """Changes for the first signal and for the one usable least; None where that was not asked for."""
+    if not assessment.what_if:
+        return None
     by_signal: dict[str, list[Change]] = {}
     for change in assessment.what_if:
         by_signal.setdefault(change.signal, []).append(change)
