@@ -4,9 +4,9 @@ import math
 from dataclasses import dataclass
 
 import numpy as np
-from numpy.typing import ArrayLike, NDArray
+from numpy.typing import NDArray
 
-__all__ = ["Dilution", "dilution_of_precision", "not_exceeded", "unit_vectors"]
+__all__ = ["Dilution", "dilution_of_precision", "not_exceeded"]
 
 FloatArray = NDArray[np.float64]
 
@@ -34,29 +34,6 @@ class Dilution:
     position: FloatArray
     time: FloatArray
     geometric: FloatArray
-
-
-def unit_vectors(azimuth_deg: ArrayLike, elevation_deg: ArrayLike) -> FloatArray:
-    """Unit vectors toward directions of the sky.
-
-    Parameters
-    ----------
-    azimuth_deg, elevation_deg : array_like, shape (...)
-        Azimuth clockwise from true north, elevation above the horizon.
-
-    Returns
-    -------
-    array, shape (3, ...)
-        East, north and up.
-
-    Examples
-    --------
-    >>> unit_vectors(90.0, 0.0).round(9).tolist()
-    [1.0, 0.0, 0.0]
-    """
-    azimuth_rad, elevation_rad = np.deg2rad(azimuth_deg), np.deg2rad(elevation_deg)
-    level = np.cos(elevation_rad)
-    return np.stack([level * np.sin(azimuth_rad), level * np.cos(azimuth_rad), np.sin(elevation_rad)])
 
 
 def dilution_of_precision(
@@ -96,7 +73,8 @@ def dilution_of_precision(
     --------
     Zenith and three satellites at 30 degrees elevation, 120 degrees apart:
 
-    >>> toward = unit_vectors([0.0, 0.0, 120.0, 240.0], [90.0, 30.0, 30.0, 30.0])
+    >>> from siteassess.angles import direction
+    >>> toward = direction([0.0, 0.0, 120.0, 240.0], [90.0, 30.0, 30.0, 30.0])
     >>> together = np.zeros(4, dtype=int)
     >>> dops = dilution_of_precision(toward, together, together, epochs=1)
     >>> round(float(dops.position[0]), 4), round(float(dops.geometric[0]), 4)

@@ -18,6 +18,7 @@ from numpy.typing import NDArray
 from scipy.special import erf, fresnel
 
 from siteassess import assess, read_site
+from siteassess.angles import direction
 from siteassess.constants import BOLTZMANN_J_PER_K, SPEED_OF_LIGHT_M_PER_S
 from siteassess.horizon.read import read_skyline
 from siteassess.horizon.shares import SkyShares, sky_shares
@@ -39,7 +40,7 @@ from siteassess.link_budget.power.signals import read_signals
 from siteassess.orbits.constellations import baseline_gps_orbits, nominal_orbits
 from siteassess.orbits.secular import secular_rates
 from siteassess.site_file.model import Part, Position
-from siteassess.sky_tracks.dilution import dilution_of_precision, not_exceeded, unit_vectors
+from siteassess.sky_tracks.dilution import dilution_of_precision, not_exceeded
 from siteassess.sky_tracks.frames import look_angles
 from siteassess.sky_tracks.refraction import apparent_elevation_deg
 from siteassess.sky_tracks.tracks import sky_tracks
@@ -239,7 +240,7 @@ def _visible_share(radius_m: float, mask_deg: float) -> float:
 
 def _dilution_rows() -> Iterator[Row]:
     source = "GPS SPS Performance Standard 2020, appendix B and its hand derivation"
-    toward = unit_vectors([0.0, 0.0, 120.0, 240.0], [90.0, 30.0, 30.0, 30.0])
+    toward = direction([0.0, 0.0, 120.0, 240.0], [90.0, 30.0, 30.0, 30.0])
     together = np.zeros(4, dtype=np.int64)
     dops = dilution_of_precision(toward, together, together, epochs=1)
     case = "zenith and three at 30 deg"
@@ -276,7 +277,7 @@ def _baseline_hdop(places: int = 240) -> FloatArray:
         )
         tracks = sky_tracks(orbits, position, days=1.0, step_s=300.0)
         satellite, epoch = np.nonzero(tracks.elevation_deg >= 5.0)
-        toward = unit_vectors(tracks.azimuth_deg[satellite, epoch], tracks.elevation_deg[satellite, epoch])
+        toward = direction(tracks.azimuth_deg[satellite, epoch], tracks.elevation_deg[satellite, epoch])
         epochs = len(tracks.time_s)
         hdop.append(dilution_of_precision(toward, epoch, np.zeros_like(epoch), epochs=epochs).horizontal)
     return np.concatenate(hdop)

@@ -8,8 +8,9 @@ import pytest
 from hypothesis import given, settings
 from hypothesis import strategies as st
 
+from siteassess.angles import direction
 from siteassess.orbits.constellations import baseline_gps_orbits
-from siteassess.sky_tracks.dilution import dilution_of_precision, unit_vectors
+from siteassess.sky_tracks.dilution import dilution_of_precision
 from siteassess.sky_tracks.tracks import sky_tracks
 
 HAND_CALCULATION = 1e-4
@@ -20,7 +21,7 @@ TWO_HUNDREDTHS = 0.02  # of the published figures, which have two decimals
 def one_sky(azimuth_deg, elevation_deg, system=None):
     number = len(azimuth_deg)
     system = np.zeros(number, dtype=int) if system is None else system
-    toward = unit_vectors(np.array(azimuth_deg, dtype=float), np.array(elevation_deg, dtype=float))
+    toward = direction(np.array(azimuth_deg, dtype=float), np.array(elevation_deg, dtype=float))
     return dilution_of_precision(toward, np.zeros(number, dtype=int), system, epochs=1)
 
 
@@ -74,7 +75,7 @@ def test_a_thousand_random_skies_agree_with_an_orthogonal_least_squares() -> Non
     azimuth_deg, elevation_deg, epoch, system = (
         np.concatenate(column) for column in zip(*skies, strict=True)
     )
-    dops = dilution_of_precision(unit_vectors(azimuth_deg, elevation_deg), epoch, system, epochs=1000)
+    dops = dilution_of_precision(direction(azimuth_deg, elevation_deg), epoch, system, epochs=1000)
     for index, sky in enumerate(skies):
         expected = by_least_squares(sky[0], sky[1], sky[3])
         for name, value in expected.items():
@@ -97,7 +98,7 @@ def test_published_distribution_of_hdop_over_globe_and_day() -> None:
         tracks = sky_tracks(orbits, place, days=1.0, step_s=300.0)
         satellite, epoch = np.nonzero(tracks.elevation_deg >= 5.0)
         dops = dilution_of_precision(
-            unit_vectors(tracks.azimuth_deg[satellite, epoch], tracks.elevation_deg[satellite, epoch]),
+            direction(tracks.azimuth_deg[satellite, epoch], tracks.elevation_deg[satellite, epoch]),
             epoch,
             np.zeros_like(epoch),
             epochs=len(tracks.time_s),
@@ -135,7 +136,7 @@ def test_a_system_with_one_satellite_tells_its_clock_only() -> None:
 
 def test_an_epoch_without_satellites_stands_between_others() -> None:
     azimuth_deg, elevation_deg = [0.0, 0.0, 120.0, 240.0], [90.0, 30.0, 30.0, 30.0]
-    toward = unit_vectors(azimuth_deg * 2, elevation_deg * 2)
+    toward = direction(azimuth_deg * 2, elevation_deg * 2)
     epoch, system = np.repeat([0, 2], 4), np.repeat([0, 1], 4)
     dops = dilution_of_precision(toward, epoch, system, epochs=4)
     assert np.isnan(dops.position).tolist() == [False, True, False, True]
