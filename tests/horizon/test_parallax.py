@@ -97,7 +97,7 @@ def test_one_survey_serves_two_spots_and_two_masts(write_site: Callable[..., Pat
     flat_m = float(np.hypot(corner_m[0], corner_m[1]))
     azimuth_deg = float(np.rad2deg(np.arctan2(corner_m[0], corner_m[1])))
     elevation_deg = float(np.rad2deg(np.arctan2(corner_m[2] - eye_m, flat_m)))
-    (tmp_path / "shared.csv").write_text(
+    (tmp_path / "common.csv").write_text(
         "azimuth_deg,elevation_deg,distance_m,obstacle\n"
         f"{azimuth_deg:.9f},{elevation_deg:.9f},{flat_m:.9f},hall\n100,10,30,hall\n",
         encoding="utf-8",
@@ -110,7 +110,7 @@ def test_one_survey_serves_two_spots_and_two_masts(write_site: Callable[..., Pat
         path = write_site(
             ("mast_height_m = 1.5", f"mast_height_m = {mast_m}"),
             ("complete = true", block),
-            ('file = "horizon.csv"', 'file = "../shared.csv"'),
+            ('file = "horizon.csv"', 'file = "../common.csv"'),
             folder=folder,
         )
         hall = read_skyline(read_site(path)).obstacles[0]
