@@ -4,9 +4,10 @@ from __future__ import annotations
 
 from typing import TYPE_CHECKING, Any
 
+from siteassess.report.disagreement_results import disagreement_records
 from siteassess.report.phrases import azimuth_range, compass_point, number, percent, plain
 from siteassess.report.plain_json import as_json, rounded
-from siteassess.report.sections.sources import disagreement_records, disagreement_sentence
+from siteassess.report.sections.sources import disagreement_sentence
 from siteassess.report.summary import PLAIN_SIGNS
 
 if TYPE_CHECKING:

@@ -6,11 +6,11 @@ import math
 from typing import TYPE_CHECKING, Any
 
 from siteassess.link_budget.chain.supply import preamplifier_voltage_v
+from siteassess.report.disagreement_results import disagreement_records
 from siteassess.report.explanation_results import causes_record, cures_record
 from siteassess.report.plain_json import as_json
 from siteassess.report.plain_json import rounded as _rounded
 from siteassess.report.sections.setting import CAUTIONS, assumptions
-from siteassess.report.sections.sources import disagreement_records
 from siteassess.report.time_results import time_record
 from siteassess.report.uncertainty_results import uncertainty_record
 

@@ -12,7 +12,7 @@ __all__ = ["legible_site"]
 
 AnyRecord = TypeVar("AnyRecord", bound=Record)
 
-NO_FILE = AntennaChoice(pattern="isotropic")
+NO_FILE = AntennaChoice.model_construct(pattern="isotropic")
 
 
 def legible_site(raw: Mapping[str, Any], path: Path) -> Site:

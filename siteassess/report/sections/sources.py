@@ -2,16 +2,15 @@
 
 from __future__ import annotations
 
-from typing import TYPE_CHECKING, Any
+from typing import TYPE_CHECKING
 
 from siteassess.report.phrases import azimuth_range, number, plain
 from siteassess.report.pieces import Table
-from siteassess.report.plain_json import rounded
 
 if TYPE_CHECKING:
     from siteassess.horizon.skyline import Disagreement, Skyline
 
-__all__ = ["disagreement_records", "disagreement_sentence", "disagreement_tables"]
+__all__ = ["disagreement_sentence", "disagreement_tables"]
 
 MOST_ROWS = 20
 
@@ -63,26 +62,6 @@ def disagreement_sentence(found: Disagreement) -> str:
         f"{plain(found.model)} {_shown(found.model_obstacle, found.model_elevation_deg)}; "
         f"errors explain {number(found.tolerance_deg)}°"
     )
-
-
-def disagreement_records(skyline: Skyline) -> list[dict[str, Any]]:
-    """All disagreements by fixed keys."""
-    return [
-        {
-            "survey": one.survey,
-            "model": one.model,
-            "from_deg": rounded(one.start_deg, "deg"),
-            "to_deg": rounded(one.end_deg, "deg"),
-            "azimuth_deg": rounded(one.azimuth_deg, "deg"),
-            "difference_deg": rounded(one.difference_deg, "deg"),
-            "survey_elevation_deg": rounded(one.survey_elevation_deg, "deg"),
-            "model_elevation_deg": rounded(one.model_elevation_deg, "deg"),
-            "tolerance_deg": rounded(one.tolerance_deg, "deg"),
-            "survey_obstacle": one.survey_obstacle or None,
-            "model_obstacle": one.model_obstacle or None,
-        }
-        for one in skyline.disagreements
-    ]
 
 
 def _shown(obstacle: str, elevation_deg: float) -> str:
