@@ -399,7 +399,7 @@ def _interruptible() -> Iterator[None]:
     signal.signal(signal.SIGINT, interrupt)
     try:
         yield
-    except Exception:
+    except Exception:  # which one depends on the library; it passes unless the user has interrupted
         if interrupted:
             raise KeyboardInterrupt from None
         raise

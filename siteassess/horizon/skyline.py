@@ -19,6 +19,7 @@ class _ReadOnlyArrays:
     __slots__ = ()
 
     def __post_init__(self) -> None:
+        # What inherits this is a dataclass, which the checker cannot see from here.
         for field in fields(self):  # type: ignore[arg-type]
             value = getattr(self, field.name)
             if isinstance(value, np.ndarray):

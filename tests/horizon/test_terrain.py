@@ -6,19 +6,17 @@ from pathlib import Path
 import matplotlib.cbook
 import numpy as np
 import pytest
+import rasterio
 from numpy.typing import NDArray
 from pyproj import Geod, Transformer
+from rasterio.transform import Affine
 from scipy.ndimage import map_coordinates
 
-rasterio = pytest.importorskip("rasterio")
-
-from rasterio.transform import Affine  # noqa: E402
-
-from siteassess.errors import InputError  # noqa: E402
-from siteassess.horizon.read import read_skyline  # noqa: E402
-from siteassess.horizon.skyline import Skyline  # noqa: E402
-from siteassess.horizon.view import outline_elevation_deg  # noqa: E402
-from siteassess.site_file.read import read_site  # noqa: E402
+from siteassess.errors import InputError
+from siteassess.horizon.read import read_skyline
+from siteassess.horizon.skyline import Skyline
+from siteassess.horizon.view import outline_elevation_deg
+from siteassess.site_file.read import read_site
 
 FloatArray = NDArray[np.float64]
 Assess = Callable[..., Skyline]
