@@ -387,8 +387,9 @@ def test_a_missing_file_is_said(tmp_path: Path) -> None:
 
 
 def test_another_vector_file_is_the_same_buildings(tmp_path: Path, read: Read) -> None:
-    pyogrio = pytest.importorskip("pyogrio")
-    shapely = pytest.importorskip("shapely")
+    import pyogrio
+    import shapely
+
     to_utm = pyproj.Transformer.from_crs("EPSG:4326", "EPSG:32631", always_xy=True)
     path = tmp_path / "yard.gpkg"
     pyogrio.raw.write(
@@ -408,7 +409,6 @@ def test_another_vector_file_is_the_same_buildings(tmp_path: Path, read: Read) -
 
 
 def test_another_vector_file_that_is_none_is_refused(tmp_path: Path) -> None:
-    pytest.importorskip("pyogrio")
     path, source = tmp_path / "yard.gpkg", HorizonSource(source="outlines", file="yard.gpkg")
     for content, problem in (
         (None, f"there is no such file; it was looked for as {path}"),

@@ -86,7 +86,6 @@ def test_another_source_opens_no_sky(sources: list[list[Obstacle]], further: lis
 
 @pytest.fixture(scope="module")
 def ridge() -> Skyline:
-    pytest.importorskip("rasterio")
     return read_site_skyline(Path(__file__).parents[2] / "example_sites" / "ridge_mast")[1]
 
 

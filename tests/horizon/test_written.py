@@ -179,7 +179,6 @@ def roundtrip(before: Skyline, tmp_path: Path) -> Skyline:
 
 
 def test_outlines_and_terrain_survive_too(tmp_path: Path) -> None:
-    pytest.importorskip("rasterio")
     from siteassess.horizon.read import read_site_skyline
 
     _, before = read_site_skyline("example_sites/ridge_mast")

@@ -28,7 +28,6 @@ def run(*arguments: object) -> Result:
 @pytest.fixture
 def ridge(tmp_path: Path) -> Path:
     """A copy of the example with three sources."""
-    pytest.importorskip("rasterio")
     return Path(shutil.copytree(ROOT / "example_sites" / "ridge_mast", tmp_path / "ridge"))
 
 
